@@ -1,0 +1,1 @@
+//! Exact and manufactured solutions with their source terms: expressions, derivatives, exact solvers, code writers.

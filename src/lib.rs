@@ -1,0 +1,1 @@
+//! Gridassay measures what a discretisation does, and weighs it against what its developer claims.
