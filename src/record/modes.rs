@@ -1,0 +1,97 @@
+//! What a Fourier study measured.
+
+use schemars::JsonSchema;
+use serde::{Deserialize, Serialize};
+
+use super::Parameters;
+
+/// A Fourier study.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+pub struct ModesRecord {
+    /// The equation's name.
+    pub equation: String,
+    /// The equation's parameters.
+    pub parameters: Parameters,
+    /// Cells in each direction.
+    pub cells: Vec<usize>,
+    /// Courant number a dt / h, where the equation has a speed.
+    pub courant: Option<f64>,
+    /// Diffusion number nu dt / h^2, where the equation has a diffusivity.
+    pub diffusion_number: Option<f64>,
+    /// The step.
+    pub step: f64,
+    /// Whether the linearity trial found the scheme linear and shift invariant; `null`: the trial could not be made.
+    pub linear: Option<bool>,
+    /// The figures of the linearity trial.
+    pub linearity: Option<Linearity>,
+    /// Uncertainty of G: the largest deviation of the linearity trial (rounding, or the noise of an iterative solver).
+    pub uncertainty: Option<f64>,
+    /// The modes, ascending in theta, branch by branch.
+    pub modes: Vec<ModeRecord>,
+    /// The coefficients of the stencil as built, where the impulse response is short.
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    pub stencil: Vec<StencilEntry>,
+    /// The leading error terms of the modified equation, where they could be read.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub modified_equation: Option<ModifiedEquation>,
+}
+
+/// The linearity and shift trial: deviations relative to the largest value.
+#[derive(Clone, Copy, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+pub struct Linearity {
+    /// Largest deviation of a step of a sum from the sum of the steps.
+    pub superposition: f64,
+    /// Largest deviation of a step of a shifted state from the shifted step.
+    pub shift: f64,
+    /// Largest deviation that still counts as rounding.
+    pub allowed: f64,
+}
+
+/// One mode of one branch. The convention is exp(i theta j) in space; the exact factor is exp(-i omega dt).
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+pub struct ModeRecord {
+    /// k h in \[-pi, pi\] for each direction.
+    pub theta: Vec<f64>,
+    /// The branch: a field's name, or the name of an exact branch such as `acoustic +`.
+    pub branch: String,
+    /// Amplification factor in one step, real and imaginary part.
+    pub amplification: [f64; 2],
+    /// Exact factor in one step, real and imaginary part; `null` for a branch that the equation does not have.
+    pub exact: Option<[f64; 2]>,
+    /// |G| - |G exact| in one step.
+    pub damping_error: Option<f64>,
+    /// arg G - arg G exact in one step, in radians, followed continuously from theta = 0; negative: the mode lags.
+    pub phase_error: Option<f64>,
+    /// Numerical over exact phase speed; `null` where the exact speed is zero.
+    pub phase_speed_ratio: Option<f64>,
+    /// Numerical over exact group speed; `null` where the exact speed is zero.
+    pub group_speed_ratio: Option<f64>,
+    /// Cells per wavelength; `null` at theta = 0.
+    pub points_per_wavelength: Option<f64>,
+}
+
+/// One coefficient of a one-step stencil: new value at j = sum of coefficient x old value at j + offset.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct StencilEntry {
+    /// Offset in cells for each direction.
+    pub offset: Vec<i64>,
+    /// Which component of the state (field, level, node) is computed.
+    #[serde(default)]
+    pub output: usize,
+    /// Which component of the state is read.
+    #[serde(default)]
+    pub input: usize,
+    /// The coefficient.
+    pub coefficient: f64,
+}
+
+/// The leading terms by which the scheme departs from the equation at small wavenumbers.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct ModifiedEquation {
+    /// The order of the departure from the equation under refinement at a constant Courant (or diffusion) number.
+    pub formal_order: Option<usize>,
+    /// Coefficients of the derivatives that the scheme adds, u_t + ... = sum of coefficient x d^n u / dx^n, with their n.
+    pub terms: Vec<(usize, f64)>,
+}
