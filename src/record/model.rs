@@ -183,6 +183,11 @@ pub struct VerdictRecord {
     pub evidence: Vec<String>,
 }
 
+/// The time now, UTC, RFC 3339 to the second.
+pub fn utc_now() -> String {
+    humantime::format_rfc3339_seconds(std::time::SystemTime::now()).to_string()
+}
+
 /// `value` where it is finite: the null rule of results files.
 pub fn finite(value: f64) -> Option<f64> {
     value.is_finite().then_some(value)

@@ -31,6 +31,9 @@ pub struct ModesRecord {
     /// The coefficients of the stencil as built, where the impulse response is short.
     #[serde(default, skip_serializing_if = "Vec::is_empty")]
     pub stencil: Vec<StencilEntry>,
+    /// G held against a formula, where one is claimed.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub claimed_symbol: Option<ClaimedSymbol>,
     /// The leading error terms of the modified equation, where they could be read.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub modified_equation: Option<ModifiedEquation>,
@@ -43,7 +46,9 @@ pub struct Linearity {
     pub superposition: f64,
     /// Largest deviation of a step of a shifted state from the shifted step.
     pub shift: f64,
-    /// Largest deviation that still counts as rounding.
+    /// Largest deviation of a step at another time from the same step at time 0.
+    pub time: f64,
+    /// Largest deviation that still counts as linear.
     pub allowed: f64,
 }
 
@@ -94,4 +99,37 @@ pub struct ModifiedEquation {
     pub formal_order: Option<usize>,
     /// Coefficients of the derivatives that the scheme adds, u_t + ... = sum of coefficient x d^n u / dx^n, with their n.
     pub terms: Vec<(usize, f64)>,
+}
+
+/// G as measured against G as claimed.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct ClaimedSymbol {
+    /// The formula.
+    pub formula: String,
+    /// At how many wavenumbers the two were compared.
+    pub compared: usize,
+    /// At how many they differ by more than rounding and the uncertainty of G allow.
+    pub disagreeing: usize,
+    /// The largest |measured - claimed|; `null` where the formula is not finite somewhere.
+    pub largest_difference: Option<f64>,
+    /// k h of the largest difference.
+    pub worst_theta: Option<f64>,
+    /// The difference that is allowed.
+    pub allowed: f64,
+    /// The neighbour whose coefficient differs most, where they disagree and the stencil is short.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub neighbour: Option<NeighbourDifference>,
+}
+
+/// A coefficient as built and as claimed.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct NeighbourDifference {
+    /// Offset in cells.
+    pub offset: i64,
+    /// As built.
+    pub built: f64,
+    /// As claimed.
+    pub claimed: f64,
 }

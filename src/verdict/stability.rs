@@ -1,0 +1,59 @@
+//! A claimed stable range against the measured one.
+
+use super::Judgement;
+use crate::claims::StabilityClaim;
+use crate::record::{StabilityRecord, StudyRecord};
+
+/// How far beyond a measured limit a claim may lie and still name that limit: claims are written in decimals, limits found by bisection.
+const SAME: f64 = 1e-6;
+
+/// Weighs a stable range.
+pub fn judge(claim: &StabilityClaim, study: &StudyRecord, record: &StabilityRecord) -> Judgement {
+    let words = record.number.words();
+    if let Some(stopped) = &study.stopped {
+        return Judgement::undecided(format!("the range was not measured: {stopped}"), "a scheme that can be run over the whole range");
+    }
+    if let Some(weak) = &record.weak_growth {
+        return Judgement::refuted(format!(
+            "no {words} is stable: the largest growth in a step is {:.3e} times the {words} to the power {:.2}, tenfold after {:.3e} steps at 0.1",
+            weak.coefficient, weak.power, weak.steps_to_tenfold
+        ));
+    }
+    if let Some(run) = record.confirmation.iter().find(|run| !run.agrees) {
+        return Judgement::undecided(
+            format!("the spectrum and a run of {} steps from noise at {words} {} disagree", run.steps, run.number),
+            "finding out why: a scheme that depends on what it was asked before, or is not linear",
+        );
+    }
+    match record.stable_up_to {
+        None => without_limit(claim, record),
+        Some(0.0) => Judgement::refuted(format!("no {words} is stable, however small")),
+        Some(limit) if limit < claim.up_to * (1.0 - SAME) => Judgement::refuted(format!(
+            "stable only up to {words} {limit:.9}, claimed up to {}{}",
+            claim.up_to,
+            worst(record)
+        )),
+        Some(limit) if claim.exactly && limit > claim.up_to * (1.0 + SAME) => {
+            Judgement::refuted(format!("stable up to {words} {limit:.9}, beyond the claimed limit {}", claim.up_to))
+        }
+        Some(limit) => Judgement::upheld(format!("stable up to {words} {limit:.9}{}", worst(record))),
+    }
+}
+
+fn without_limit(claim: &StabilityClaim, record: &StabilityRecord) -> Judgement {
+    let (words, end) = (record.number.words(), record.scanned_up_to);
+    match record.refused_from {
+        Some(refused) if refused < claim.up_to => Judgement::refuted(format!(
+            "the scheme itself refuses {words} {refused:.9} and more, claimed up to {}; every smaller one is stable",
+            claim.up_to
+        )),
+        _ if claim.exactly => {
+            Judgement::refuted(format!("no limit was found up to {words} {end}, beyond the claimed limit {}", claim.up_to))
+        }
+        _ => Judgement::upheld(format!("no limit was found up to {words} {end}, the end of the scan")),
+    }
+}
+
+fn worst(record: &StabilityRecord) -> String {
+    record.worst_theta.map_or_else(String::new, |theta| format!("; beyond it the mode at k h = {theta:.4} grows first"))
+}

@@ -1,0 +1,59 @@
+//! Claims in the words of the trade.
+
+use crate::claims::{ClaimKind, ModesClaim, OrderClaim, StabilityClaim};
+use crate::record::StepNumber;
+
+/// A claim as a sentence without its scheme.
+pub fn claim(kind: &ClaimKind) -> String {
+    match kind {
+        ClaimKind::Order(claim) => order(claim),
+        ClaimKind::Modes(claim) => modes(claim),
+        ClaimKind::Stability(claim) => stability(claim),
+    }
+}
+
+fn order(claim: &OrderClaim) -> String {
+    let of = claim.field.as_ref().map_or_else(String::new, |field| format!(" of `{field}`"));
+    format!(
+        "order {} in {}{of} on {}, refined in {}",
+        claim.expect,
+        norm(&claim.norm),
+        claim.request.problem.name(),
+        claim.request.refine.word()
+    )
+}
+
+/// A norm as it is written in papers.
+pub fn norm(name: &str) -> &str {
+    match name {
+        "l1" => "L1",
+        "l2" => "L2",
+        "linf" => "Linf",
+        other => other,
+    }
+}
+
+fn modes(claim: &ModesClaim) -> String {
+    let request = &claim.request;
+    let from = claim.from_points_per_wavelength;
+    let mut parts = Vec::new();
+    if let Some(within) = claim.phase_speed_error_within {
+        parts.push(format!("phase speed within {within} from {from} points per wavelength"));
+    }
+    if let Some(within) = claim.damping_error_within {
+        parts.push(format!("damping within {within} a step from {from} points per wavelength"));
+    }
+    if let Some(symbol) = &claim.symbol {
+        parts.push(format!("G = {symbol}"));
+    }
+    let courant = request.courant.map(|c| format!(" at Courant number {c}"));
+    let diffusion = request.diffusion_number.map(|r| format!(" at diffusion number {r}"));
+    let at: String = courant.into_iter().chain(diffusion).collect();
+    format!("{} for {}{at}", parts.join(" and "), request.equation)
+}
+
+fn stability(claim: &StabilityClaim) -> String {
+    let number = claim.request.number.map_or("step", StepNumber::words);
+    let exactly = if claim.exactly { " and no further" } else { "" };
+    format!("stable up to {number} {}{exactly} for {}", claim.up_to, claim.request.equation)
+}
