@@ -8,6 +8,8 @@
 //! * a number that is NaN or infinite never passes a comparison.
 
 pub mod compare;
+pub mod eigen;
 pub mod matrix;
 pub mod norms;
+pub mod powers;
 pub mod symbol;
