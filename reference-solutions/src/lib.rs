@@ -1,3 +1,3 @@
 //! Exact and manufactured solutions with their source terms: expressions, derivatives, exact solvers, code writers.
 
-pub mod exact;
+pub mod expression;
