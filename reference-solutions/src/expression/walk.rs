@@ -35,16 +35,21 @@ impl Expression {
     /// The simplest of the forms tried: as it is, with named parts opened, and with numbers multiplied into sums. Fewest operations
     /// wins, so that the result is never larger than what it was made from.
     pub fn simplified(&self) -> Expression {
-        let opened = self.without_names();
-        let distributed = opened.distributed();
-        let forms = [self.clone(), opened, distributed];
-        forms.into_iter().min_by_key(Expression::operations).expect("there are three forms")
+        Expression::simplified_together(std::slice::from_ref(self)).remove(0)
     }
 
-    /// Operations that one evaluation takes when equal parts are computed once.
-    pub fn operations(&self) -> usize {
-        let mut count = 0;
-        self.visit(&mut HashSet::new(), &mut |expression| {
+    /// The simplest form of several expressions that are evaluated together.
+    pub fn simplified_together(expressions: &[Expression]) -> Vec<Expression> {
+        let opened: Vec<Expression> = expressions.iter().map(Expression::without_names).collect();
+        let distributed: Vec<Expression> = opened.iter().map(Expression::distributed).collect();
+        let forms = [expressions.to_vec(), opened, distributed];
+        forms.into_iter().min_by_key(|form| Expression::operations(form)).expect("there are three forms")
+    }
+
+    /// Operations that one evaluation of `expressions` takes when equal parts are computed once.
+    pub fn operations(expressions: &[Expression]) -> usize {
+        let (mut count, mut seen) = (0, HashSet::new());
+        let mut add = |expression: &Expression| {
             count += match expression.node() {
                 Node::Sum(constant, terms) => {
                     let scaled = terms.iter().filter(|(c, _)| !c.is_one() && *c != Number::MINUS_ONE).count();
@@ -57,7 +62,8 @@ impl Expression {
                 Node::Power(..) | Node::Call(..) => 1,
                 _ => 0,
             };
-        });
+        };
+        expressions.iter().for_each(|expression| expression.visit(&mut seen, &mut add));
         count
     }
 
