@@ -3,3 +3,4 @@
 pub mod equation;
 pub mod exact;
 pub mod expression;
+pub mod problem;

@@ -9,12 +9,14 @@ mod dam_break;
 mod riemann;
 mod root;
 mod series;
+mod simple_wave;
 
 pub use characteristics::Characteristics;
 pub use cole_hopf::ColeHopf;
 pub use dam_break::DamBreak;
 pub use riemann::{GasState, Riemann, StarRegion};
 pub use series::{Series, SeriesKind};
+pub use simple_wave::SimpleWave;
 
 /// Why an exact solver cannot be set up or evaluated.
 #[derive(Debug, Clone, PartialEq, thiserror::Error)]
