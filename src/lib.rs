@@ -1,1 +1,3 @@
 //! Gridassay measures what a discretisation does, and weighs it against what its developer claims.
+
+pub mod host;
