@@ -2,3 +2,4 @@
 
 pub mod record;
 pub mod analysis;
+pub mod host;

@@ -1,2 +1,5 @@
 //! The command-line program.
-fn main() {}
+
+fn main() {
+    gridassay::host::run_child_if_asked();
+}

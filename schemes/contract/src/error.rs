@@ -17,6 +17,9 @@ pub enum SchemeError {
     /// Any other code: the scheme tried and could not.
     #[error("{0}")]
     Failed(String),
+    /// Code -32003, written by the Rust side of a plugin alone: the scheme panicked.
+    #[error("the scheme panicked: {0}")]
+    Panicked(String),
 }
 
 impl SchemeError {
@@ -26,6 +29,8 @@ impl SchemeError {
     pub const STEP_REFUSED: i32 = -32001;
     /// Code of [`SchemeError::NotPrepared`].
     pub const NOT_PREPARED: i32 = -32002;
+    /// Code of [`SchemeError::Panicked`].
+    pub const PANICKED: i32 = -32003;
     /// Code that this crate writes for [`SchemeError::Failed`]; any code without a meaning of its own reads as `Failed`.
     pub const FAILED: i32 = -32000;
 
@@ -36,6 +41,15 @@ impl SchemeError {
             Self::StepRefused(_) => Self::STEP_REFUSED,
             Self::NotPrepared => Self::NOT_PREPARED,
             Self::Failed(_) => Self::FAILED,
+            Self::Panicked(_) => Self::PANICKED,
+        }
+    }
+
+    /// The message that goes with the code: [`SchemeError::from_code`] makes the same error of the two again.
+    pub fn message(&self) -> &str {
+        match self {
+            Self::NotOffered(text) | Self::StepRefused(text) | Self::Failed(text) | Self::Panicked(text) => text,
+            Self::NotPrepared => "no case has been prepared yet",
         }
     }
 
@@ -45,7 +59,14 @@ impl SchemeError {
             Self::NOT_OFFERED => Self::NotOffered(message.into()),
             Self::STEP_REFUSED => Self::StepRefused(message.into()),
             Self::NOT_PREPARED => Self::NotPrepared,
+            Self::PANICKED => Self::Panicked(message.into()),
             _ => Self::Failed(message.into()),
         }
     }
+}
+
+/// The text of a panic, for people.
+pub fn panic_message(panic: &(dyn std::any::Any + Send)) -> String {
+    let text = panic.downcast_ref::<&str>().map(|text| (*text).to_owned());
+    text.or_else(|| panic.downcast_ref::<String>().cloned()).unwrap_or_else(|| "without a message".to_owned())
 }

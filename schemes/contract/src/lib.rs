@@ -41,8 +41,10 @@
 //! ```
 
 mod case;
+pub mod conversation;
 mod description;
 mod error;
+mod fields;
 mod grid;
 mod harness;
 mod scheme;
@@ -52,7 +54,8 @@ pub use description::{
     ArrayEncoding, BoundaryKind, CellRule, Description, GridKind, Offer, Operation, ParameterRange, Placement,
     Position, Range, Values,
 };
-pub use error::SchemeError;
+pub use error::{SchemeError, panic_message};
+pub use fields::equation_fields;
 pub use grid::Grid;
 pub use harness::{BoundaryData, Callback, Harness, NoCallbacks, Side};
 pub use scheme::{Advance, Fields, March, Nodes, Scheme, Solution};
