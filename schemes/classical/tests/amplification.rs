@@ -2,11 +2,14 @@
 //! Fourier mode on 64 cells, at four Courant numbers of either sign, and must give mode times factor within 1e-13.
 
 mod common;
+#[path = "common/waves.rs"]
+mod waves;
 
-use common::{complex_step, fourier_mode, periodic};
+use common::periodic;
 use gridassay_classical::scheme;
 use gridassay_scheme::{Advance, NoCallbacks};
 use num_complex::Complex64;
+use waves::{complex_step, fourier_mode};
 
 const CELLS: usize = 64;
 const COURANT_NUMBERS: [f64; 4] = [0.1, 0.5, 0.9, 1.0];
