@@ -11,5 +11,6 @@ pub mod compare;
 pub mod eigen;
 pub mod matrix;
 pub mod norms;
+pub mod order;
 pub mod powers;
 pub mod symbol;
