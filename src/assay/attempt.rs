@@ -6,7 +6,7 @@
 
 use crate::claims::{ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim, StabilityRequest};
 use crate::host::Session;
-use crate::record::{Parameters, Study, StudyRecord};
+use crate::record::{OrderRecord, Parameters, Study, StudyRecord};
 use crate::studies::setting::generic_parameters;
 use crate::studies::{Made, modes, order, stability};
 use crate::verdict::{self, Judgement};
@@ -33,7 +33,8 @@ pub struct Place<'a> {
 
 /// Tries a claim about an order of accuracy.
 pub fn attempt_order(session: &mut Session, claim: &OrderClaim, place: Place<'_>) -> Attempt {
-    let make = |session: &mut Session, request: &OrderRequest| order::run(session, request, claim, place.seed);
+    let enough = |record: &OrderRecord| verdict::order::decides(claim, record);
+    let make = |session: &mut Session, request: &OrderRequest| order::run(session, request, Some(&enough), place.seed);
     let mirrored = mirrored_order(&claim.request);
     let studies = both(session, place, &claim.request, mirrored.as_ref(), make);
     let judge = |study: &StudyRecord| match &study.study {

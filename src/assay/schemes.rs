@@ -78,7 +78,7 @@ pub fn session_record(session: &Session) -> SchemeRecord {
         name: identity.name.clone(),
         version: identity.version.clone(),
         route: identity.route.to_string(),
-        digest: identity.digest.clone(),
+        digest: Some(identity.digest.clone()).filter(|digest| !digest.is_empty()),
         fault: None,
     }
 }

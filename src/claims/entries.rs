@@ -42,7 +42,8 @@ impl Reader<'_> {
         let final_time = match &entry.final_time {
             Some(time) if *time.get_ref() > problem.start_time() => *time.get_ref(),
             Some(time) => {
-                let message = format!("`final_time` is {}, not after the start at {}", time.get_ref(), problem.start_time());
+                let message =
+                    format!("`final_time` is {}, not after the start at {}", time.get_ref(), problem.start_time());
                 return Err(self.at(time.span(), message));
             }
             None => problem.final_time(),
@@ -76,14 +77,20 @@ impl Reader<'_> {
     }
 
     /// The levels of a ladder, each finer than the one before.
-    fn cells(&self, cells: &Spanned<Vec<CellsEntry>>, dimensions: usize, least: usize) -> Result<Vec<Vec<usize>>, ClaimsError> {
+    fn cells(
+        &self,
+        cells: &Spanned<Vec<CellsEntry>>,
+        dimensions: usize,
+        least: usize,
+    ) -> Result<Vec<Vec<usize>>, ClaimsError> {
         let mut levels = Vec::new();
         for level in cells.get_ref() {
             let level = match level {
                 CellsEntry::One(x) => in_proportion(*x, dimensions),
                 CellsEntry::Each(each) if each.len() == dimensions => each.clone(),
                 CellsEntry::Each(each) => {
-                    let message = format!("the level {each:?} has {} directions, the problem has {dimensions}", each.len());
+                    let message =
+                        format!("the level {each:?} has {} directions, the problem has {dimensions}", each.len());
                     return Err(self.at(cells.span(), message));
                 }
             };
@@ -96,7 +103,8 @@ impl Reader<'_> {
             return Err(self.at(cells.span(), "a ladder needs at least two levels, and three to decide anything"));
         }
         if let Some(pair) = levels.windows(2).find(|pair| pair[1][0] <= pair[0][0]) {
-            let message = format!("the ladder goes from {} to {} cells; write it from coarse to fine", pair[0][0], pair[1][0]);
+            let message =
+                format!("the ladder goes from {} to {} cells; write it from coarse to fine", pair[0][0], pair[1][0]);
             return Err(self.at(cells.span(), message));
         }
         Ok(levels)
@@ -107,7 +115,8 @@ impl Reader<'_> {
             None => Ok("l2".to_owned()),
             Some(norm) if Norms::NAMES.contains(&norm.get_ref().as_str()) => Ok(norm.get_ref().clone()),
             Some(norm) => {
-                Err(self.at(norm.span(), format!("there is no norm `{}`; there are `l1`, `l2` and `linf`", norm.get_ref())))
+                Err(self
+                    .at(norm.span(), format!("there is no norm `{}`; there are `l1`, `l2` and `linf`", norm.get_ref())))
             }
         }
     }
@@ -122,7 +131,8 @@ impl Reader<'_> {
 
     pub(super) fn modes(&self, spanned: &Spanned<ModesEntry>) -> Result<ModesClaim, ClaimsError> {
         let entry = spanned.get_ref();
-        let positive = |value: &Option<Spanned<f64>>, key| value.as_ref().map(|value| self.positive(value, key)).transpose();
+        let positive =
+            |value: &Option<Spanned<f64>>, key| value.as_ref().map(|value| self.positive(value, key)).transpose();
         let claim = ModesClaim {
             request: ModesRequest {
                 equation: self.equation(&entry.equation)?,
@@ -138,11 +148,14 @@ impl Reader<'_> {
             symbol: entry.symbol.as_ref().map(|formula| self.symbol(formula)).transpose()?,
         };
         if claim.request.courant.is_none() && claim.request.diffusion_number.is_none() {
-            return Err(self.at(spanned.span(), "a study of modes needs a step: give `courant` or `diffusion_number`, or both"));
+            return Err(
+                self.at(spanned.span(), "a study of modes needs a step: give `courant` or `diffusion_number`, or both")
+            );
         }
         let claims = [claim.phase_speed_error_within, claim.damping_error_within];
         if claims.iter().all(Option::is_none) && claim.symbol.is_none() {
-            let message = "[[modes]] claims nothing; give `phase_speed_error_within`, `damping_error_within` or `symbol`";
+            let message =
+                "[[modes]] claims nothing; give `phase_speed_error_within`, `damping_error_within` or `symbol`";
             return Err(self.at(spanned.span(), message));
         }
         Ok(claim)
@@ -151,7 +164,9 @@ impl Reader<'_> {
     pub(super) fn stability(&self, spanned: &Spanned<StabilityEntry>) -> Result<StabilityClaim, ClaimsError> {
         let entry = spanned.get_ref();
         let (number, up_to, held) = match (&entry.courant_up_to, &entry.diffusion_number_up_to) {
-            (Some(courant), None) => (StepNumber::Courant, self.positive(courant, "courant_up_to")?, &entry.diffusion_number),
+            (Some(courant), None) => {
+                (StepNumber::Courant, self.positive(courant, "courant_up_to")?, &entry.diffusion_number)
+            }
             (None, Some(diffusion)) => {
                 (StepNumber::DiffusionNumber, self.positive(diffusion, "diffusion_number_up_to")?, &entry.courant)
             }

@@ -98,9 +98,7 @@ impl Reader<'_> {
     fn schemes(&self, file: &ClaimsFile) -> Result<BTreeMap<String, SchemeChoice>, ClaimsError> {
         match (&file.scheme, file.schemes.is_empty()) {
             (Some(entry), true) => Ok(BTreeMap::from([(ONLY_SCHEME.to_owned(), self.scheme(entry)?)])),
-            (None, false) => {
-                file.schemes.iter().map(|(name, entry)| Ok((name.clone(), self.scheme(entry)?))).collect()
-            }
+            (None, false) => file.schemes.iter().map(|(name, entry)| Ok((name.clone(), self.scheme(entry)?))).collect(),
             (Some(entry), false) => Err(self.at(
                 entry.span(),
                 "names one scheme by [scheme] and others by [schemes]; give the one a name too: [schemes.NAME]",
@@ -116,12 +114,12 @@ impl Reader<'_> {
         let scheme = entry.get_ref();
         let route = match (&scheme.command, &scheme.plugin, &scheme.classical) {
             (Some(command), None, None) if command.is_empty() => {
-                return Err(self.at(entry.span(), "`command` is empty; write for example [\"python3\", \"my_scheme.py\"]"));
+                return Err(
+                    self.at(entry.span(), "`command` is empty; write for example [\"python3\", \"my_scheme.py\"]")
+                );
             }
             (Some(command), None, None) => RouteChoice::Command(command.clone()),
-            (None, Some(plugin), None) => {
-                RouteChoice::Plugin { path: self.folder.join(plugin), name: scheme.name.clone() }
-            }
+            (None, Some(plugin), None) => RouteChoice::Plugin { path: plugin.into(), name: scheme.name.clone() },
             (None, None, Some(classical)) => {
                 self.known_classical(entry.span(), classical)?;
                 RouteChoice::Classical(classical.clone())
@@ -153,7 +151,10 @@ impl Reader<'_> {
         let units = [("ms", 1e-3), ("min", 60.0), ("s", 1.0), ("h", 3600.0)];
         let seconds = with_unit(text.get_ref(), &units).filter(|seconds| *seconds > 0.0 && *seconds <= 1e9);
         seconds.map(Duration::from_secs_f64).ok_or_else(|| {
-            let message = format!("`{}` is no duration; write for example \"60s\", \"500ms\", \"5min\" or \"2h\"", text.get_ref());
+            let message = format!(
+                "`{}` is no duration; write for example \"60s\", \"500ms\", \"5min\" or \"2h\"",
+                text.get_ref()
+            );
             self.at(text.span(), message)
         })
     }
@@ -162,7 +163,8 @@ impl Reader<'_> {
         let units = [("KiB", 1024.0), ("MiB", 1048576.0), ("GiB", 1073741824.0)];
         let bytes = with_unit(text.get_ref(), &units).filter(|bytes| *bytes >= 1.0 && *bytes < 1e18);
         bytes.map(|bytes| bytes as u64).ok_or_else(|| {
-            let message = format!("`{}` is no amount of memory; write for example \"512MiB\" or \"4GiB\"", text.get_ref());
+            let message =
+                format!("`{}` is no amount of memory; write for example \"512MiB\" or \"4GiB\"", text.get_ref());
             self.at(text.span(), message)
         })
     }
@@ -202,7 +204,8 @@ impl Reader<'_> {
     }
 
     pub(super) fn equation(&self, equation: &Spanned<String>) -> Result<String, ClaimsError> {
-        let names: Vec<String> = gridassay_reference::equation::all().iter().map(|known| known.name().to_owned()).collect();
+        let names: Vec<String> =
+            gridassay_reference::equation::all().iter().map(|known| known.name().to_owned()).collect();
         if names.contains(equation.get_ref()) {
             return Ok(equation.get_ref().clone());
         }

@@ -15,6 +15,8 @@ pub use model::{
     ClaimsRecord, FORMAT, Parameters, Results, RunRecord, SchemeRecord, Study, StudyRecord, VERSION, Verdict,
     VerdictRecord, finite,
 };
-pub use modes::{ClaimedSymbol, Linearity, ModeRecord, ModesRecord, ModifiedEquation, NeighbourDifference, StencilEntry};
+pub use modes::{
+    ClaimedSymbol, Linearity, ModeRecord, ModesRecord, ModifiedEquation, NeighbourDifference, StencilEntry,
+};
 pub use order::{Level, Norms, Observed, OrderRecord, Refinement};
 pub use stability::{Confirmation, StabilityRecord, StepNumber, WeakGrowth};

@@ -54,8 +54,27 @@ pub struct OrderRecord {
     pub step_power: Option<f64>,
     /// The grids and steps, coarse to fine.
     pub levels: Vec<Level>,
+    /// By field: the norms of the exact solution on the finest level, by which levels that resolve nothing are known; empty where the
+    /// step alone is refined.
+    #[serde(default, skip_serializing_if = "BTreeMap::is_empty")]
+    pub solution_size: BTreeMap<String, Norms>,
     /// By field, then by norm (`l1`, `l2`, `linf`): the observed order.
     pub observed: BTreeMap<String, BTreeMap<String, Observed>>,
+}
+
+impl OrderRecord {
+    /// The ladder of one field in one norm: (h, error, floor), coarse to fine, without levels that have no errors at all (the finest
+    /// step, where the step alone is refined). An error that is not finite is NaN, a floor that was not measured is 0.
+    pub fn series(&self, field: &str, norm: &str) -> Vec<(f64, f64, f64)> {
+        let read = |table: &BTreeMap<String, Norms>| table.get(field).and_then(|norms| norms.get(norm));
+        let one = |level: &Level| (level.h, read(&level.errors).unwrap_or(f64::NAN), read(&level.floor).unwrap_or(0.0));
+        self.levels.iter().filter(|level| !level.errors.is_empty()).map(one).collect()
+    }
+
+    /// The size of the exact solution of one field in one norm; 0 where it is not known.
+    pub fn size(&self, field: &str, norm: &str) -> f64 {
+        self.solution_size.get(field).and_then(|norms| norms.get(norm)).unwrap_or(0.0)
+    }
 }
 
 /// One level of a ladder.

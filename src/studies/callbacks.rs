@@ -21,9 +21,10 @@ impl<'a> ProblemHarness<'a> {
     pub fn new(problem: &'a Problem, layout: &'a Layout, names: &[String]) -> Result<Self, String> {
         let index = |name: &String| {
             let known = problem.fields();
-            known.iter().position(|field| field == name).ok_or_else(|| {
-                format!("the scheme's field `{name}` is not among the problem's: {}", known.join(", "))
-            })
+            known
+                .iter()
+                .position(|field| field == name)
+                .ok_or_else(|| format!("the scheme's field `{name}` is not among the problem's: {}", known.join(", ")))
         };
         Ok(Self { problem, layout, fields: names.iter().map(index).collect::<Result<_, _>>()? })
     }

@@ -1,5 +1,6 @@
 //! The case that a scheme is asked to prepare, from a problem or from an equation on a periodic grid.
 
+use gridassay_reference::equation::Equation;
 use gridassay_reference::problem::{BoundaryKind as ProblemBoundary, Problem};
 use gridassay_scheme::{ArrayEncoding, BoundaryKind, Callback, Case, Grid, Offer, Parameter, SideKinds};
 
@@ -56,9 +57,13 @@ pub fn kinds(case: &Case) -> Vec<BoundaryKind> {
     kinds
 }
 
-/// The names of the fields that an offer carries: its own, or the equation's.
-pub fn fields(offer: &Offer, dimensions: usize) -> Vec<String> {
-    offer.fields.clone().unwrap_or_else(|| gridassay_reference::equation::fields(&offer.equation, dimensions))
+/// The names of the fields that an offer carries: its own, or the equation's; those of the problem where it defines the equation itself.
+pub fn fields(offer: &Offer, dimensions: usize, problem: Option<&Problem>) -> Vec<String> {
+    let of_equation = || match Equation::named(&offer.equation) {
+        Ok(equation) => equation.fields(dimensions),
+        Err(_) => problem.map(|problem| problem.fields().to_vec()).unwrap_or_default(),
+    };
+    offer.fields.clone().unwrap_or_else(of_equation)
 }
 
 /// The harness's own kind for a problem's.

@@ -73,7 +73,8 @@ mod tests {
     #[test]
     fn the_indices_of_all_values_of_all_cells_are_the_whole_array() {
         let cellwise = Cellwise { cells: vec![3, 2], per_direction: 2 };
-        let mut all: Vec<usize> = (0..6).flat_map(|cell| (0..4).map(move |value| (cell, value))).map(|(c, v)| cellwise.index(c, v)).collect();
+        let mut all: Vec<usize> =
+            (0..6).flat_map(|cell| (0..4).map(move |value| (cell, value))).map(|(c, v)| cellwise.index(c, v)).collect();
         all.sort_unstable();
         assert_eq!(all, (0..24).collect::<Vec<_>>());
         // Cell (1, 1), its second value in x and first in y: column 3 of row 2 of an array of 6 columns.

@@ -2,10 +2,10 @@
 
 use gridassay_scheme::Fields;
 
+use super::Stop;
 use super::cellwise::Cellwise;
 use super::linearity::{Levels, step};
 use super::setting::Setting;
-use super::Stop;
 use crate::analysis::symbol::{Grid, ImpulseResponses};
 use crate::host::Session;
 

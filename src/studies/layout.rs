@@ -32,7 +32,9 @@ impl Layout {
     pub fn new(offer: &Offer, case: &Case, fields: &[String], nodes: Option<&Nodes>) -> Result<Self, String> {
         let nodes = match (offer.values, nodes) {
             (Values::CellNodes, None) => {
-                return Err("the scheme offers `cell_nodes` but answered `prepare` without `offsets` and `weights`".to_owned());
+                return Err(
+                    "the scheme offers `cell_nodes` but answered `prepare` without `offsets` and `weights`".to_owned()
+                );
             }
             (Values::CellNodes, Some(nodes)) => Some(nodes),
             _ => None,
@@ -150,7 +152,8 @@ impl Axis {
 
     /// The several values of a cell all stand for that cell; the quadrature's weights share its width among them.
     fn in_cells(grid: &Grid, axis: usize, nodes: &Nodes) -> Self {
-        let mut axes = Self { at: grid.cell_nodes(axis, nodes), lower: Vec::new(), upper: Vec::new(), widths: Vec::new() };
+        let mut axes =
+            Self { at: grid.cell_nodes(axis, nodes), lower: Vec::new(), upper: Vec::new(), widths: Vec::new() };
         for cell in 0..grid.cells[axis] {
             let (lower, upper) = (grid.edge(axis, cell), grid.edge(axis, cell + 1));
             for weight in &nodes.weights {
@@ -207,7 +210,9 @@ mod tests {
         }
         offer.values = Values::CellNodes;
         let nodes = Nodes { offsets: vec![0.2, 0.8], weights: vec![0.5, 0.5] };
-        assert!((measure_of(&offer, &case(&[7], BoundaryKind::Periodic), Some(&nodes)) - 1.0).abs() < 8.0 * f64::EPSILON);
+        assert!(
+            (measure_of(&offer, &case(&[7], BoundaryKind::Periodic), Some(&nodes)) - 1.0).abs() < 8.0 * f64::EPSILON
+        );
     }
 
     #[test]

@@ -2,10 +2,10 @@
 
 use gridassay_scheme::{Advance, Fields, NoCallbacks};
 
+use super::Stop;
 use super::cellwise::Cellwise;
 use super::jitter::Jitter;
 use super::setting::Setting;
-use super::Stop;
 use crate::host::Session;
 use crate::record::Linearity;
 

@@ -7,12 +7,12 @@ pub mod impulse;
 pub mod jitter;
 pub mod layout;
 pub mod linearity;
-pub mod modes;
+
 pub mod order;
 pub mod selection;
 pub mod setting;
 pub mod speed;
-pub mod stability;
+
 mod made;
 mod stop;
 

@@ -74,7 +74,8 @@ fn shortfall(offer: &Offer, need: &Need<'_>) -> Result<Operation, (usize, String
     }
     if let Some(cells) = need.cells.iter().find(|cells| !offer.cells.admits(**cells)) {
         let rule = offer.cells;
-        let sentence = format!("the scheme takes at least {} cells in multiples of {}, not {cells}", rule.minimum, rule.multiple);
+        let sentence =
+            format!("the scheme takes at least {} cells in multiples of {}, not {cells}", rule.minimum, rule.multiple);
         return Err((7, sentence));
     }
     if !offer.grids.contains(&need.grid) {
@@ -134,8 +135,14 @@ mod tests {
         ];
         let description = Description::new("s", "1", offers);
         let parameters = Parameters::from([("velocity".to_owned(), vec![-0.8])]);
-        assert_eq!(choose(&description, &need("advection", &parameters)).unwrap_err(), "the scheme does not offer `velocity` = -0.8");
-        assert_eq!(choose(&description, &need("euler", &parameters)).unwrap_err(), "the scheme offers `diffusion`, not `euler`");
+        assert_eq!(
+            choose(&description, &need("advection", &parameters)).unwrap_err(),
+            "the scheme does not offer `velocity` = -0.8"
+        );
+        assert_eq!(
+            choose(&description, &need("euler", &parameters)).unwrap_err(),
+            "the scheme offers `diffusion`, not `euler`"
+        );
         let forwards = Parameters::from([("velocity".to_owned(), vec![0.8])]);
         assert_eq!(choose(&description, &need("advection", &forwards)).unwrap().1, Operation::Advance);
     }

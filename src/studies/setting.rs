@@ -43,7 +43,13 @@ impl Setting {
     ///
     /// # Errors
     /// Numbers that do not go with the equation, or a scheme without a fitting offer.
-    pub fn new(session: &Session, equation: &str, fixed: &Parameters, cells: &[usize], numbers: Numbers) -> Result<Self, Stop> {
+    pub fn new(
+        session: &Session,
+        equation: &str,
+        fixed: &Parameters,
+        cells: &[usize],
+        numbers: Numbers,
+    ) -> Result<Self, Stop> {
         let dimensions = cells.len();
         let upper: Vec<f64> = (0..dimensions).map(|axis| LOWER[axis] + LENGTH[axis]).collect();
         let grid = Grid::uniform(cells, &LOWER[..dimensions], &upper);
@@ -61,7 +67,7 @@ impl Setting {
             grid: GridKind::Uniform,
         };
         let (offer, _) = choose(session.description(), &need).map_err(Stop::NotOffered)?;
-        let names = case::fields(offer, dimensions);
+        let names = case::fields(offer, dimensions, None);
         Ok(Self { offer: offer.clone(), names, case, parameters, step, numbers })
     }
 
@@ -75,7 +81,12 @@ impl Setting {
 }
 
 /// Parameters, step and realised numbers.
-fn resolve(equation: &str, fixed: &Parameters, grid: &Grid, numbers: Numbers) -> Result<(Parameters, f64, Numbers), Stop> {
+fn resolve(
+    equation: &str,
+    fixed: &Parameters,
+    grid: &Grid,
+    numbers: Numbers,
+) -> Result<(Parameters, f64, Numbers), Stop> {
     let mut parameters = generic_parameters(equation, grid.dimensions());
     for (name, values) in fixed {
         let Some(known) = parameters.get(name) else {
@@ -95,12 +106,18 @@ fn resolve(equation: &str, fixed: &Parameters, grid: &Grid, numbers: Numbers) ->
         (Some(courant), _, Some(rate), _) => courant / rate,
         (None, Some(number), _, Some(rate)) => number / rate,
         (Some(_), _, None, _) => {
-            return Err(Stop::Request(format!("`courant` is given, but nothing moves in `{equation}`; give `diffusion_number`")));
+            return Err(Stop::Request(format!(
+                "`courant` is given, but nothing moves in `{equation}`; give `diffusion_number`"
+            )));
         }
         (_, Some(_), _, None) => {
-            return Err(Stop::Request(format!("`diffusion_number` is given, but nothing diffuses in `{equation}`; give `courant`")));
+            return Err(Stop::Request(format!(
+                "`diffusion_number` is given, but nothing diffuses in `{equation}`; give `courant`"
+            )));
         }
-        (None, None, _, _) => return Err(Stop::Request("no step is given; give `courant` or `diffusion_number`".to_owned())),
+        (None, None, _, _) => {
+            return Err(Stop::Request("no step is given; give `courant` or `diffusion_number`".to_owned()));
+        }
     };
     if let (Some(_), Some(number)) = (numbers.courant, numbers.diffusion) {
         // Both numbers at once: the step follows from the speed, so the diffusivity follows from the step.
@@ -108,7 +125,8 @@ fn resolve(equation: &str, fixed: &Parameters, grid: &Grid, numbers: Numbers) ->
             return Err(Stop::Request(format!("`diffusion_number` is given, but nothing diffuses in `{equation}`")));
         }
         if fixed.contains_key("diffusivity") {
-            let message = "`courant`, `diffusion_number` and `diffusivity` cannot all be given: two of them fix the third";
+            let message =
+                "`courant`, `diffusion_number` and `diffusivity` cannot all be given: two of them fix the third";
             return Err(Stop::Request(message.to_owned()));
         }
         parameters.insert("diffusivity".to_owned(), vec![number / (step * spreading_of(1.0))]);
@@ -125,7 +143,8 @@ fn resolve(equation: &str, fixed: &Parameters, grid: &Grid, numbers: Numbers) ->
 fn crossings(equation: &str, parameters: &Parameters, grid: &Grid) -> Option<f64> {
     let sound = if equation == "acoustics" { parameters["sound_speed"][0] } else { 0.0 };
     let velocity = parameters.get("velocity")?;
-    let rate = (0..grid.dimensions()).map(|axis| (velocity[axis].abs() + sound) / grid.spacing(axis)).fold(0.0, f64::max);
+    let rate =
+        (0..grid.dimensions()).map(|axis| (velocity[axis].abs() + sound) / grid.spacing(axis)).fold(0.0, f64::max);
     (rate > 0.0).then_some(rate)
 }
 

@@ -22,7 +22,9 @@ pub fn crossings(problem: &Problem, cells: &[usize]) -> Result<Option<f64>, Stop
 pub fn spreading(problem: &Problem, cells: &[usize]) -> Option<f64> {
     let parameter = |name: &str| problem.parameters().get(name).map(|values| values[0]);
     let diffusivity = match problem.equation() {
-        "diffusion" | "advection_diffusion" => parameter("diffusivity").or_else(|| largest_coefficient(problem, "diffusivity")),
+        "diffusion" | "advection_diffusion" => {
+            parameter("diffusivity").or_else(|| largest_coefficient(problem, "diffusivity"))
+        }
         "burgers" | "incompressible" => parameter("viscosity"),
         _ => None,
     }?;

@@ -100,6 +100,14 @@ impl Ladder {
         Ladder::new(sizes.iter().zip(errors).map(|(&h, &error)| Level { h, error, floor }).collect())
     }
 
+    /// A ladder from triples of size, error and floor.
+    ///
+    /// # Errors
+    /// As for [`Ladder::new`].
+    pub fn from_series(series: &[(f64, f64, f64)]) -> Result<Self, LadderError> {
+        Ladder::new(series.iter().map(|&(h, error, floor)| Level { h, error, floor }).collect())
+    }
+
     /// The same ladder with the size of the solution in the norm of the errors, by which unresolved levels are known.
     #[must_use]
     pub fn with_solution_size(mut self, size: f64) -> Self {

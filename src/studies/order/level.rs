@@ -53,7 +53,7 @@ pub fn run(session: &mut Session, problem: &Problem, rung: &Rung, until: f64, se
     };
     let description = session.description().clone();
     let (offer, operation) = choose(&description, &need).map_err(Stop::NotOffered)?;
-    let names = case::fields(offer, case.dimensions);
+    let names = case::fields(offer, case.dimensions, Some(problem));
     let probe = Layout::new(offer, &case, &names, None).ok();
     let nodes = match &probe {
         // The layout is known before `prepare`, so `prepare` may already ask back.
