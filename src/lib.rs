@@ -5,6 +5,7 @@ pub mod analysis;
 pub mod claims;
 
 pub mod host;
+pub mod dossier;
 pub mod record;
 pub mod studies;
 pub mod verdict;

@@ -78,6 +78,14 @@ pub fn write_results(path: &Path, results: &Results) -> Result<(), RecordError> 
 /// # Errors
 /// The file cannot be written.
 pub fn write_text(path: &Path, text: &str) -> Result<(), RecordError> {
+    write_bytes(path, text.as_bytes())
+}
+
+/// Writes `bytes` to `path`, whole or not at all.
+///
+/// # Errors
+/// The file cannot be written.
+pub fn write_bytes(path: &Path, bytes: &[u8]) -> Result<(), RecordError> {
     let failed = |source| RecordError::Io { path: path.into(), action: "written", source };
     let folder = path.parent().filter(|folder| !folder.as_os_str().is_empty()).unwrap_or(Path::new("."));
     let mut builder = tempfile::Builder::new();
@@ -88,7 +96,7 @@ pub fn write_text(path: &Path, text: &str) -> Result<(), RecordError> {
         builder.permissions(std::fs::Permissions::from_mode(0o644));
     }
     let mut file = builder.tempfile_in(folder).map_err(failed)?;
-    file.write_all(text.as_bytes()).map_err(failed)?;
+    file.write_all(bytes).map_err(failed)?;
     file.persist(path).map_err(|error| failed(error.error))?;
     Ok(())
 }

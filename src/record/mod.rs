@@ -10,9 +10,9 @@ mod modes;
 mod order;
 mod stability;
 
-pub use file::{RecordError, read_results, write_results, write_text};
+pub use file::{RecordError, read_results, write_bytes, write_results, write_text};
 pub use model::{
-    ClaimsRecord, FORMAT, Parameters, Results, RunRecord, SchemeRecord, Study, StudyRecord, VERSION, Verdict,
+    Claimed, ClaimsRecord, FORMAT, Parameters, Results, RunRecord, SchemeRecord, Study, StudyRecord, VERSION, Verdict,
     VerdictRecord, finite,
 };
 pub use modes::{

@@ -172,6 +172,9 @@ pub struct VerdictRecord {
     pub scheme: String,
     /// The claim in words.
     pub text: String,
+    /// The number that was claimed, where the claim has one: pages draw it beside what was measured.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub claimed: Option<Claimed>,
     /// What became of it.
     pub verdict: Verdict,
     /// Why, in a sentence with its numbers.
@@ -181,6 +184,25 @@ pub struct VerdictRecord {
     pub decided_by: Option<String>,
     /// Ids of the studies that the verdict rests on.
     pub evidence: Vec<String>,
+}
+
+/// The number in a claim.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Claimed {
+    /// What it is a value of: `order`, `stable_up_to`, `phase_speed_error`, ...
+    pub quantity: String,
+    /// The value.
+    pub value: f64,
+    /// How far the measurement may miss it, where the verdict's rule has such a figure.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub tolerance: Option<f64>,
+    /// The field it is about, where there are several.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub field: Option<String>,
+    /// The norm it is about: `l1`, `l2` or `linf`.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub norm: Option<String>,
 }
 
 /// The time now, UTC, RFC 3339 to the second.

@@ -63,6 +63,10 @@ pub struct ModeRecord {
     pub amplification: [f64; 2],
     /// Exact factor in one step, real and imaginary part; `null` for a branch that the equation does not have.
     pub exact: Option<[f64; 2]>,
+    /// |G|, the modulus of the amplification factor.
+    pub modulus: f64,
+    /// |G exact|, the modulus of the exact factor; `null` where there is none.
+    pub exact_modulus: Option<f64>,
     /// |G| - |G exact| in one step.
     pub damping_error: Option<f64>,
     /// arg G - arg G exact in one step, in radians, followed continuously from theta = 0; negative: the mode lags.

@@ -1,0 +1,255 @@
+//! What a study found and how it was set up, as short statements that several outputs share.
+
+use serde::Serialize;
+
+use super::clean::visible;
+use super::words;
+use crate::record::{ModesRecord, Observed, OrderRecord, Parameters, StabilityRecord, Study, StudyRecord};
+
+/// A piece of a statement. Numbers stay numbers until an output rounds them for reading.
+#[derive(Clone, Debug, PartialEq, Serialize)]
+#[serde(rename_all = "lowercase")]
+pub(crate) enum Part {
+    Text(String),
+    Number(f64),
+    Count(u64),
+}
+
+/// A labelled statement.
+#[derive(Clone, Debug, PartialEq, Serialize)]
+pub(crate) struct Fact {
+    pub label: String,
+    pub parts: Vec<Part>,
+}
+
+fn text(text: impl Into<String>) -> Part {
+    Part::Text(text.into())
+}
+
+fn fact(label: impl Into<String>, parts: Vec<Part>) -> Fact {
+    Fact { label: label.into(), parts }
+}
+
+/// The heading of a study.
+pub(crate) fn heading(study: &StudyRecord) -> Vec<Part> {
+    match &study.study {
+        Study::Order(record) => vec![text(format!("Order of accuracy on {}", visible(&record.problem)))],
+        Study::Modes(record) => {
+            let mut parts = vec![text(format!("Fourier modes of {}", visible(&record.equation)))];
+            if let Some(courant) = record.courant {
+                parts.extend([text(", Courant number "), Part::Number(courant)]);
+            }
+            if let Some(number) = record.diffusion_number {
+                parts.extend([text(", diffusion number "), Part::Number(number)]);
+            }
+            parts
+        }
+        Study::Stability(record) => {
+            vec![text(format!("Stable range of the {}, {}", record.number.words(), visible(&record.equation)))]
+        }
+    }
+}
+
+/// What a study found.
+pub(crate) fn findings(study: &StudyRecord) -> Vec<Fact> {
+    match &study.study {
+        Study::Order(record) => order_findings(record),
+        Study::Modes(record) => modes_findings(record),
+        Study::Stability(record) => stability_findings(record),
+    }
+}
+
+/// How a study was set up.
+pub(crate) fn settings(study: &StudyRecord) -> Vec<Fact> {
+    match &study.study {
+        Study::Order(record) => order_settings(record),
+        Study::Modes(record) => modes_settings(record),
+        Study::Stability(record) => stability_settings(record),
+    }
+}
+
+fn order_findings(record: &OrderRecord) -> Vec<Fact> {
+    let mut facts = Vec::new();
+    let several = record.observed.len() > 1;
+    for (field, norms) in &record.observed {
+        for (norm, observed) in norms {
+            let name = words::norm_name(norm);
+            let of_field = if several { format!(", {}", visible(field)) } else { String::new() };
+            facts.push(fact(format!("Observed order in {name}{of_field}"), observed_parts(record, observed)));
+        }
+    }
+    facts
+}
+
+fn observed_parts(record: &OrderRecord, observed: &Observed) -> Vec<Part> {
+    let mut parts = match observed.order {
+        Some(order) => vec![Part::Number(order)],
+        None => vec![text("not determined")],
+    };
+    if let Some([low, high]) = observed.interval {
+        parts.extend([text(", interval "), Part::Number(low), text(" to "), Part::Number(high)]);
+    }
+    let used: Vec<_> = observed.used.iter().filter_map(|&index| record.levels.get(index)).collect();
+    if let (Some(first), Some(last), true) = (used.first(), used.last(), observed.order.is_some()) {
+        parts.push(text(format!(", from {} levels, ", words::count(used.len()))));
+        parts.extend(cells_parts(&first.cells));
+        parts.push(text(" to "));
+        parts.extend(cells_parts(&last.cells));
+        parts.push(text(" cells"));
+    }
+    if let Some(note) = &observed.note {
+        parts.push(text(format!(". {}", visible(note))));
+    }
+    parts
+}
+
+/// Cells in each direction, as in `64 × 32`.
+pub(crate) fn cells_parts(cells: &[usize]) -> Vec<Part> {
+    let mut parts = Vec::new();
+    for (index, &count) in cells.iter().enumerate() {
+        if index > 0 {
+            parts.push(text(" × "));
+        }
+        parts.push(Part::Count(count as u64));
+    }
+    parts
+}
+
+fn modes_findings(record: &ModesRecord) -> Vec<Fact> {
+    let mut facts = Vec::new();
+    let linear = match record.linear {
+        Some(true) => "linear and shift invariant: one impulse gives the factor at every wavenumber",
+        Some(false) => "not linear or not shift invariant: each wavenumber was tried by itself at small amplitude",
+        None => "could not be tried",
+    };
+    facts.push(fact("Linearity", vec![text(linear)]));
+    if let Some(trial) = record.linearity {
+        let parts = vec![
+            text("superposition "),
+            Part::Number(trial.superposition),
+            text(", shift "),
+            Part::Number(trial.shift),
+            text("; rounding allows "),
+            Part::Number(trial.allowed),
+        ];
+        facts.push(fact("Largest deviations of the trial", parts));
+    }
+    if let Some(uncertainty) = record.uncertainty {
+        facts.push(fact("Uncertainty of G", vec![Part::Number(uncertainty)]));
+    }
+    if let Some(equation) = &record.modified_equation {
+        if let Some(order) = equation.formal_order {
+            facts.push(fact("Order read from small wavenumbers", vec![Part::Count(order as u64)]));
+        }
+        for (derivative, coefficient) in &equation.terms {
+            let parts = vec![Part::Number(*coefficient), text(" × derivative of order "), Part::Count(*derivative as u64)];
+            facts.push(fact("The scheme adds", parts));
+        }
+    }
+    facts
+}
+
+fn stability_findings(record: &StabilityRecord) -> Vec<Fact> {
+    let words = record.number.words();
+    let limit = match record.stable_up_to {
+        Some(0.0) => vec![text("no step is stable")],
+        Some(limit) => vec![text(format!("{words} ")), Part::Number(limit)],
+        None if record.scan.is_empty() => vec![text("not determined")],
+        None => vec![text(format!("no limit found up to {words} ")), Part::Number(record.scanned_up_to)],
+    };
+    let mut facts = vec![fact("Stable up to", limit)];
+    if record.intervals.len() > 1 {
+        let mut parts = Vec::new();
+        for (index, [low, high]) in record.intervals.iter().enumerate() {
+            parts.push(text(if index > 0 { "; " } else { "" }));
+            parts.extend([Part::Number(*low), text(" to "), Part::Number(*high)]);
+        }
+        facts.push(fact("The stable set has holes", parts));
+    }
+    if let Some(theta) = record.worst_theta {
+        facts.push(fact("Mode that grows first", vec![text("θ = "), Part::Number(theta)]));
+    }
+    if let Some(weak) = record.weak_growth {
+        let parts = vec![
+            text("max |G| − one = "),
+            Part::Number(weak.coefficient),
+            text(" × (number to the power "),
+            Part::Number(weak.power),
+            text("); tenfold after "),
+            Part::Number(weak.steps_to_tenfold),
+            text(" steps at a tenth"),
+        ];
+        facts.push(fact("Weak growth", parts));
+    }
+    if let Some(bound) = record.refused_from {
+        facts.push(fact("The scheme itself refuses steps from", vec![Part::Number(bound)]));
+    }
+    facts
+}
+
+fn order_settings(record: &OrderRecord) -> Vec<Fact> {
+    let mut facts = vec![
+        fact("Problem", vec![text(visible(&record.problem))]),
+        fact("Equation", vec![text(visible(&record.equation))]),
+        fact("Refined", vec![text(record.refine.word())]),
+        fact("Operation", vec![text(visible(&record.operation))]),
+    ];
+    if let Some([from, to]) = record.times {
+        facts.push(fact("Time", vec![Part::Number(from), text(" to "), Part::Number(to)]));
+    }
+    numbers(&mut facts, " on the coarsest level", record.courant, record.diffusion_number);
+    if let Some(power) = record.step_power {
+        facts.push(fact("Step falls with cell width to the power", vec![Part::Number(power)]));
+    }
+    parameters(&mut facts, &record.parameters);
+    facts
+}
+
+fn modes_settings(record: &ModesRecord) -> Vec<Fact> {
+    let mut facts = vec![
+        fact("Equation", vec![text(visible(&record.equation))]),
+        fact("Cells", cells_parts(&record.cells)),
+        fact("Step", vec![Part::Number(record.step)]),
+    ];
+    numbers(&mut facts, "", record.courant, record.diffusion_number);
+    parameters(&mut facts, &record.parameters);
+    facts
+}
+
+fn stability_settings(record: &StabilityRecord) -> Vec<Fact> {
+    let mut grids = Vec::new();
+    for (index, &cells) in record.cells.iter().enumerate() {
+        grids.push(text(if index > 0 { ", " } else { "" }));
+        grids.push(Part::Count(cells as u64));
+    }
+    let mut facts = vec![
+        fact("Equation", vec![text(visible(&record.equation))]),
+        fact("Grids of the impulses", grids),
+        fact("Scanned up to", vec![text(format!("{} ", record.number.words())), Part::Number(record.scanned_up_to)]),
+    ];
+    if let Some(held) = record.held {
+        facts.push(fact("Other number, held fixed", vec![Part::Number(held)]));
+    }
+    parameters(&mut facts, &record.parameters);
+    facts
+}
+
+fn numbers(facts: &mut Vec<Fact>, place: &str, courant: Option<f64>, diffusion: Option<f64>) {
+    if let Some(courant) = courant {
+        facts.push(fact(format!("Courant number{place}"), vec![Part::Number(courant)]));
+    }
+    if let Some(diffusion) = diffusion {
+        facts.push(fact(format!("Diffusion number{place}"), vec![Part::Number(diffusion)]));
+    }
+}
+
+fn parameters(facts: &mut Vec<Fact>, parameters: &Parameters) {
+    for (name, components) in parameters {
+        let mut parts = Vec::new();
+        for (index, &component) in components.iter().enumerate() {
+            parts.push(text(if index > 0 { ", " } else { "" }));
+            parts.push(Part::Number(component));
+        }
+        facts.push(fact(format!("Parameter {}", visible(name)), parts));
+    }
+}
