@@ -14,12 +14,14 @@ pub mod kernels;
 mod lexer;
 mod number;
 mod parse;
+pub mod program;
 mod walk;
 
 pub use error::{EvaluateError, ParseError, ParseProblem};
 pub use function::Function;
 pub use number::Number;
 pub use parse::Scope;
+pub use program::{Input, Kind, Plan, Program};
 
 use std::cmp::Ordering;
 use std::sync::Arc;
