@@ -88,7 +88,7 @@ fn plane_schemes_have_their_closed_forms_in_all_quadrants() {
                 let (p, q) = (TAU * mx as f64 / 12.0, TAU * my as f64 / 10.0);
                 let (x, y) = (fourier_mode(mx, 12), fourier_mode(my, 10));
                 let wave: Vec<Complex64> = y.iter().flat_map(|y| x.iter().map(move |x| x * y)).collect();
-                let (new, _) = complex_step(scheme.as_mut(), step, &[wave.clone()], &[]);
+                let (new, _) = complex_step(scheme.as_mut(), step, std::slice::from_ref(&wave), &[]);
                 let i = Complex64::i();
                 let g = match name {
                     "upwind-2d" => {
@@ -161,10 +161,11 @@ fn legendre_matrix(degree: usize, courant: f64, sign: f64, theta: f64) -> Vec<Ve
         let stiffness = if i > j && (i - j) % 2 == 1 { 2.0 } else { 0.0 };
         let shift = Complex64::from_polar(1.0, -sign * theta);
         // Values of the polynomials at the outflow end are 1 (a > 0) or the parity (a < 0), and the other way at the inflow end.
-        let (outflow, inflow): (fn(f64) -> f64, fn(f64) -> f64) =
-            if sign > 0.0 { (|_| 1.0, |p| p) } else { (|p| p, |_| 1.0) };
-        let faces =
-            sign * (-outflow(parity(i)) * outflow(parity(j)) + shift * inflow(parity(i)) * outflow(parity(j)));
+        let at_upper_end = |_: f64| 1.0;
+        let at_lower_end = |parity: f64| parity;
+        let outflow = |p: f64| if sign > 0.0 { at_upper_end(p) } else { at_lower_end(p) };
+        let inflow = |p: f64| if sign > 0.0 { at_lower_end(p) } else { at_upper_end(p) };
+        let faces = -outflow(parity(i)) * outflow(parity(j)) + shift * inflow(parity(i)) * outflow(parity(j));
         courant * (2 * i + 1) as f64 * (sign * stiffness + faces)
     };
     (0..=degree).map(|i| (0..=degree).map(|j| entry(i, j)).collect()).collect()
