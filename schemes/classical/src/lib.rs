@@ -12,10 +12,13 @@
 pub mod advection;
 pub mod advection_diffusion;
 pub mod diffusion;
+pub mod discontinuous_galerkin;
 pub mod finite_volume;
 pub mod numerics;
 pub mod one_step;
+pub mod plane;
 pub mod poisson;
 pub mod registry;
+pub mod systems;
 
 pub use registry::{names, scheme};

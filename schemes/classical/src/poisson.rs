@@ -1,25 +1,44 @@
 //! -(k u')' = S with constant k.
 
-use gridassay_scheme::{Case, Fields, Harness, Nodes, Offer, Operation, SchemeError, Solution};
+use gridassay_scheme::{BoundaryKind, Case, Fields, Harness, Nodes, Offer, Operation, SchemeError, Solution};
 
 use crate::advection_diffusion::steady::SteadyCentral;
 use crate::one_step::{OneStep, not_offered};
 
-/// The Poisson equation by second-order central differences at nodes, solved directly; values and gradients prescribed at the walls. Second order.
-///
-/// Source: common practice (LeVeque 2007, Finite Difference Methods for Ordinary and Partial Differential Equations, ch. 2).
-#[derive(Clone, Debug, Default)]
+/// The Poisson equation by central differences at nodes, solved directly.
+#[derive(Clone, Debug)]
 pub struct PoissonCentral {
-    steady: SteadyCentral,
+    /// The scheme's name.
+    pub name: &'static str,
+    /// Kinds of walls that are taken.
+    pub kinds: &'static [BoundaryKind],
+    /// The discrete equations.
+    pub steady: SteadyCentral,
+}
+
+impl PoissonCentral {
+    /// Second order, with values and gradients prescribed. Source: common practice (LeVeque 2007, Finite Difference Methods for Ordinary and Partial
+    /// Differential Equations, ch. 2).
+    pub fn second_order() -> Self {
+        let kinds = &[BoundaryKind::Value, BoundaryKind::Gradient];
+        Self { name: "poisson-central2", kinds, steady: SteadyCentral::default() }
+    }
+
+    /// Fourth order, with values prescribed: -k (u_{j+1} - 2 u_j + u_{j-1}) / h^2 = (S_{j-1} + 10 S_j + S_{j+1}) / 12.
+    /// Source: Collatz 1960, The Numerical Treatment of Differential Equations (Mehrstellenverfahren; Numerov 1924).
+    pub fn fourth_order() -> Self {
+        let steady = SteadyCentral::with_source_average(1.0 / 12.0);
+        Self { name: "poisson-compact4", kinds: &[BoundaryKind::Value], steady }
+    }
 }
 
 impl OneStep for PoissonCentral {
     fn name(&self) -> String {
-        "poisson-central2".to_owned()
+        self.name.to_owned()
     }
 
     fn offers(&self) -> Vec<Offer> {
-        SteadyCentral::offers(&["poisson"])
+        SteadyCentral::offers(&["poisson"], self.kinds)
     }
 
     fn prepare(&mut self, case: &Case, _: &mut dyn Harness) -> Result<Option<Nodes>, SchemeError> {

@@ -8,10 +8,12 @@ use crate::advection::implicit::ImplicitAdvection;
 use crate::advection::leapfrog::Leapfrog;
 use crate::advection::maccormack::MacCormack;
 use crate::advection::one_step::{self, ExplicitAdvection};
+use crate::advection_diffusion::burgers::BurgersCentral;
 use crate::advection_diffusion::central::CentralSpace;
 use crate::advection_diffusion::compact::CompactSpace;
 use crate::diffusion::du_fort_frankel::DuFortFrankel;
 use crate::diffusion::one_step::OneStepDiffusion;
+use crate::discontinuous_galerkin::DiscontinuousGalerkin;
 use crate::finite_volume::reconstruction::{Muscl, Reconstruction, UPWIND1, UPWIND2, UPWIND3, UPWIND5};
 use crate::finite_volume::scalar::{Meaning, NumericalFlux, ScalarLaw, godunov_burgers, local_lax_friedrichs_burgers};
 use crate::finite_volume::weno::Weno5;
@@ -19,7 +21,11 @@ use crate::numerics::limiters::{minmod, monotonised_central, superbee, van_leer}
 use crate::numerics::method_of_lines::{MethodOfLines, Space};
 use crate::numerics::runge_kutta::{RK1, RK2, RK3, RK4, SSPRK2, SSPRK3, Tableau};
 use crate::one_step::{OneStep, Repeated};
+use crate::plane::{PlaneScheme, diffusion_2d, lax_wendroff_2d, upwind_2d};
 use crate::poisson::PoissonCentral;
+use crate::systems::acoustics::{AcousticsStaggered, AcousticsUpwind};
+use crate::systems::euler::EulerSpace;
+use crate::systems::riemann::{hllc, rusanov};
 
 type Maker = Box<dyn Fn() -> Box<dyn Scheme> + Send + Sync>;
 
@@ -53,7 +59,8 @@ fn one_step_schemes() -> Vec<Maker> {
     makers.push(Box::new(|| boxed(OneStepDiffusion::crank_nicolson())));
     makers.push(Box::new(|| boxed(OneStepDiffusion::implicit_euler())));
     makers.push(Box::new(|| boxed(DuFortFrankel::default())));
-    makers.push(Box::new(|| boxed(PoissonCentral::default())));
+    makers.push(Box::new(|| boxed(PoissonCentral::second_order())));
+    makers.push(Box::new(|| boxed(PoissonCentral::fourth_order())));
     makers
 }
 
@@ -69,6 +76,7 @@ fn advection_diffusion_schemes() -> Vec<Maker> {
     makers.extend(lines(CentralSpace::sixth_order, &both));
     makers.extend(lines(CompactSpace::pade4, &both));
     makers.extend(lines(CompactSpace::compact6, &both));
+    makers.extend(lines(BurgersCentral::default, &[RK4]));
     makers
 }
 
@@ -110,11 +118,39 @@ fn conservation_law_schemes() -> Vec<Maker> {
     makers
 }
 
+fn plane_schemes() -> Vec<Maker> {
+    vec![
+        Box::new(|| boxed(PlaneScheme::new("upwind-2d", "advection", upwind_2d))),
+        Box::new(|| boxed(PlaneScheme::new("lax-wendroff-2d", "advection", lax_wendroff_2d))),
+        Box::new(|| boxed(PlaneScheme::new("diffusion-2d", "diffusion", diffusion_2d))),
+    ]
+}
+
+fn galerkin(degree: usize, name: &'static str, tableau: Tableau) -> Box<dyn Scheme> {
+    boxed(MethodOfLines::new(DiscontinuousGalerkin::new(degree), tableau).named(name))
+}
+
+fn systems() -> Vec<Maker> {
+    vec![
+        Box::new(|| boxed(AcousticsUpwind::default())),
+        Box::new(|| boxed(AcousticsStaggered::default())),
+        Box::new(|| galerkin(1, "dg-p1", SSPRK2)),
+        Box::new(|| galerkin(2, "dg-p2", SSPRK3)),
+        Box::new(|| galerkin(3, "dg-p3", RK4)),
+        Box::new(|| boxed(MethodOfLines::new(EulerSpace::new("euler", rusanov, None), RK1).named("euler-rusanov"))),
+        Box::new(|| {
+            boxed(MethodOfLines::new(EulerSpace::new("euler", hllc, Some(van_leer)), SSPRK2).named("euler-muscl-hllc"))
+        }),
+    ]
+}
+
 /// Every scheme under the name that it gives itself.
 static SCHEMES: LazyLock<Vec<(String, Maker)>> = LazyLock::new(|| {
     let mut makers = one_step_schemes();
     makers.extend(advection_diffusion_schemes());
     makers.extend(conservation_law_schemes());
+    makers.extend(plane_schemes());
+    makers.extend(systems());
     makers.into_iter().map(|make| (make().describe().name, make)).collect()
 });
 

@@ -175,7 +175,10 @@ impl Space for CentralSpace {
         let minimum = if self.weights.order == 2 { 3 } else { self.closure_order + 2 };
         let mut offers = advection_diffusion_offers(&[BoundaryKind::Periodic, BoundaryKind::Value], minimum);
         if self.weights.order == 2 {
-            offers.extend(SteadyCentral::offers(&["advection_diffusion", "diffusion"]));
+            offers.extend(SteadyCentral::offers(
+                &["advection_diffusion", "diffusion"],
+                &[BoundaryKind::Value, BoundaryKind::Gradient],
+            ));
         }
         offers
     }

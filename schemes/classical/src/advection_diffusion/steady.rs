@@ -17,16 +17,22 @@ pub struct SteadyCentral {
     kinds: [Option<BoundaryKind>; 2],
     source: bool,
     cells: usize,
+    /// Weight of the source's second difference that is added to the source: 0, or 1/12 for fourth order where a = 0.
+    pub source_average: f64,
 }
 
 impl SteadyCentral {
-    /// An offer to solve each of the equations between walls.
-    pub fn offers(equations: &[&str]) -> Vec<Offer> {
-        let kinds = [BoundaryKind::Value, BoundaryKind::Gradient];
+    /// The equations with that part of the source's second difference added to the source.
+    pub fn with_source_average(source_average: f64) -> Self {
+        Self { source_average, ..Self::default() }
+    }
+
+    /// An offer to solve each of the equations between walls of those kinds.
+    pub fn offers(equations: &[&str], kinds: &[BoundaryKind]) -> Vec<Offer> {
         let positive = [Some(f64::MIN_POSITIVE), None];
         let offer = |equation: &&str| {
             let parameter = if *equation == "poisson" { "conductivity" } else { "diffusivity" };
-            node_offer(equation, &[Operation::Solve], &kinds, 2).with_parameter(parameter, positive)
+            node_offer(equation, &[Operation::Solve], kinds, 2).with_parameter(parameter, positive)
         };
         equations.iter().map(offer).collect()
     }
@@ -35,7 +41,9 @@ impl SteadyCentral {
     pub fn prepare(&mut self, case: &Case, velocity: f64, diffusivity: f64) {
         let kind = |end: usize| (!case.is_periodic(0)).then(|| case.boundaries[0][end].of("u"));
         let (spacing, kinds) = (case.grid.spacing(0), [kind(0), kind(1)]);
-        *self = Self { velocity, diffusivity, spacing, kinds, source: case.source, cells: case.grid.cells[0] };
+        let source_average = self.source_average;
+        let (source, cells) = (case.source, case.grid.cells[0]);
+        *self = Self { velocity, diffusivity, spacing, kinds, source, cells, source_average };
     }
 
     /// Solves the system.
@@ -50,7 +58,11 @@ impl SteadyCentral {
             ));
         }
         let n = self.cells + 1;
-        let mut right = if self.source { harness.source(0.0, None)?.swap_remove(0) } else { vec![0.0; n] };
+        let source = if self.source { harness.source(0.0, None)?.swap_remove(0) } else { vec![0.0; n] };
+        let mut right = source.clone();
+        for (value, s) in right[1..].iter_mut().zip(source.windows(3)) {
+            *value += self.source_average * ((s[2] - s[1]) - (s[1] - s[0]));
+        }
         let (half, nu) = (0.5 * self.velocity / self.spacing, self.diffusivity / self.spacing.powi(2));
         let (mut lower, mut diagonal, mut upper) = (vec![-half - nu; n], vec![2.0 * nu; n], vec![half - nu; n]);
         for (end, kind) in self.kinds.into_iter().enumerate() {
