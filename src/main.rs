@@ -1,10 +1,5 @@
 //! The command-line program.
 
-use std::process::ExitCode;
-
-use clap::Parser;
-
-fn main() -> ExitCode {
+fn main() {
     gridassay::host::run_child_if_asked();
-    gridassay::commands::Program::parse().run()
 }

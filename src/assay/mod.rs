@@ -1,9 +1,11 @@
 //! One run from a plan to its results: opens the schemes, asks for the studies, has them judged, keeps the record.
 
 mod attempt;
+mod expect;
 pub mod progress;
 mod run;
 pub mod schemes;
 
 pub use attempt::{Attempt, Place, attempt_modes, attempt_order, attempt_stability};
+pub use expect::{Expectation, expect};
 pub use run::{run, single};

@@ -33,8 +33,9 @@ pub fn run(
         let evidence = attempt.studies.iter().map(|study| study.id.clone()).collect();
         let Judgement { verdict, reason, decided_by } = attempt.judgement;
         results.studies.extend(attempt.studies);
-        let (claim, scheme) = (claim.id.clone(), claim.scheme.clone());
-        results.verdicts.push(VerdictRecord { claim, scheme, text, verdict, reason, decided_by, evidence });
+        let (claim, scheme, kind) = (claim.id.clone(), claim.scheme.clone(), &claim.kind);
+        let claimed = words::claimed(kind);
+        results.verdicts.push(VerdictRecord { claim, scheme, text, claimed, verdict, reason, decided_by, evidence });
         results.overall = Verdict::overall(results.verdicts.iter().map(|record| record.verdict));
         results.run.seconds = begun.elapsed().as_secs_f64();
         name_schemes(&mut results, plan, &mut schemes);

@@ -142,7 +142,8 @@ fn modes_findings(record: &ModesRecord) -> Vec<Fact> {
             facts.push(fact("Order read from small wavenumbers", vec![Part::Count(order as u64)]));
         }
         for (derivative, coefficient) in &equation.terms {
-            let parts = vec![Part::Number(*coefficient), text(" × derivative of order "), Part::Count(*derivative as u64)];
+            let parts =
+                vec![Part::Number(*coefficient), text(" × derivative of order "), Part::Count(*derivative as u64)];
             facts.push(fact("The scheme adds", parts));
         }
     }

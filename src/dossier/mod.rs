@@ -69,6 +69,16 @@ pub fn write_dossier(folder: &Path, results: &Results) -> Result<(), DossierErro
     outcomes.into_iter().collect()
 }
 
+/// Makes `folder` ready before long work begins: created where it is missing, and tried for writing. Answers the path of its results file.
+///
+/// # Errors
+/// The folder cannot be created or written to.
+pub fn prepare_folder(folder: &Path) -> Result<PathBuf, DossierError> {
+    create_folder(folder)?;
+    tempfile::tempfile_in(folder).map_err(|source| DossierError::Folder { path: folder.into(), source })?;
+    Ok(folder.join(RESULTS_FILE))
+}
+
 fn write_output(folder: &Path, dossier: &Dossier<'_>, exporter: &dyn Exporter) -> Result<(), DossierError> {
     for file in exporter.export(dossier)? {
         let path = folder.join(file.path);

@@ -55,9 +55,8 @@ fn find_program(program: &str, folder: &Path) -> Option<PathBuf> {
     }
     let paths = std::env::var_os("PATH")?;
     let candidates = std::env::split_paths(<_ as AsRef<OsStr>>::as_ref(&paths)).map(|part| part.join(program));
-    let executable = |path: &PathBuf| {
-        path.metadata().is_ok_and(|data| data.is_file() && data.permissions().mode() & 0o111 != 0)
-    };
+    let executable =
+        |path: &PathBuf| path.metadata().is_ok_and(|data| data.is_file() && data.permissions().mode() & 0o111 != 0);
     candidates.into_iter().find(executable)
 }
 

@@ -25,7 +25,9 @@ pub enum HostError {
         known: String,
     },
     /// The equation is none of the contract's, and the offer does not name its fields.
-    #[error("the offer of `{equation}` does not list its fields and the contract does not know them; add `fields` to the offer")]
+    #[error(
+        "the offer of `{equation}` does not list its fields and the contract does not know them; add `fields` to the offer"
+    )]
     FieldsUnknown {
         /// The equation.
         equation: String,
@@ -126,7 +128,9 @@ pub enum FaultKind {
         limit: u64,
     },
     /// More processes than the limit.
-    #[error("had {found} processes at once and was ended; the limit is {limit}, raise `process_limit` if that is meant")]
+    #[error(
+        "had {found} processes at once and was ended; the limit is {limit}, raise `process_limit` if that is meant"
+    )]
     TooManyProcesses {
         /// How many there were.
         found: u32,

@@ -50,7 +50,8 @@ impl Layout {
             return Ok(None);
         }
         let word = |at: usize| u64::from_le_bytes(input[at..at + 8].try_into().expect("eight bytes"));
-        let broken = || FaultKind::Library { reason: "its child process wrote over the pipe to the harness".to_owned() };
+        let broken =
+            || FaultKind::Library { reason: "its child process wrote over the pipe to the harness".to_owned() };
         let (first, count) = (word(0), word(8) as usize);
         let (magic, head) = (first as u32, (first >> 32) as usize);
         if magic != MAGIC || count > 1 << 16 {

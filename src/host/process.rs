@@ -51,8 +51,7 @@ impl Process {
     /// Starts `command` in `folder` under a guard, which is the program `executable`.
     pub fn start(executable: &Path, command: &[OsString], folder: &Path, limits: Limits) -> Result<Self, FaultKind> {
         let (control, theirs) = UnixStream::pair().map_err(FaultKind::System)?;
-        let orders =
-            Orders { control: theirs.as_raw_fd(), memory: limits.memory, processes: limits.processes };
+        let orders = Orders { control: theirs.as_raw_fd(), memory: limits.memory, processes: limits.processes };
         let orders = serde_json::to_string(&orders).expect("orders are plain data");
         let mut builder = Command::new(executable);
         builder.arg(guard::ARGUMENT).arg(orders).args(command).current_dir(folder).process_group(0);
@@ -314,8 +313,12 @@ fn system(error: rustix::io::Errno) -> FaultKind {
 fn not_started(reason: io::Error, folder: &Path) -> FaultKind {
     let remedy = match reason.kind() {
         _ if !folder.as_os_str().is_empty() && !folder.is_dir() => "its working folder does not exist",
-        io::ErrorKind::NotFound => "check the name of the program, and the interpreter in its first line if it is a script",
-        io::ErrorKind::PermissionDenied => "make the file executable (chmod +x), or name its interpreter in the command",
+        io::ErrorKind::NotFound => {
+            "check the name of the program, and the interpreter in its first line if it is a script"
+        }
+        io::ErrorKind::PermissionDenied => {
+            "make the file executable (chmod +x), or name its interpreter in the command"
+        }
         io::ErrorKind::OutOfMemory => "raise `memory_limit`",
         _ if reason.raw_os_error() == Some(8) => "name the interpreter in the command, or begin the script with #!",
         _ => "try the command by hand",

@@ -136,12 +136,12 @@ impl Session {
                 let Advance { time, step, steps, state, earlier } = request;
                 let (shape, shapes) = (lengths(state), earlier.iter().map(|level| lengths(level)).collect::<Vec<_>>());
                 let request = Advance { time, step, steps, state: &mut *state, earlier: &mut *earlier };
-                guarded(|| scheme.advance(request, harness))
-                    .and_then(|()| same_shape("state", state, &shape))
-                    .and_then(|()| {
+                guarded(|| scheme.advance(request, harness)).and_then(|()| same_shape("state", state, &shape)).and_then(
+                    |()| {
                         let mut levels = earlier.iter().zip(&shapes);
                         levels.try_for_each(|(level, shape)| same_shape("earlier", level, shape))
-                    })
+                    },
+                )
             }
             Runner::Process(remote) => remote.advance(request, harness),
             Runner::Gone => Err(Failure::Refused(SchemeError::NotPrepared)),
@@ -231,9 +231,7 @@ impl Session {
 /// Starts a process and has it describe itself.
 fn start(source: &SchemeSource) -> Result<(Remote, Description), HostError> {
     let (command, form): (Vec<OsString>, Form) = match &source.route {
-        Route::Command(command) => {
-            (command.iter().map(OsString::from).collect(), Form::Lines(ArrayEncoding::Text))
-        }
+        Route::Command(command) => (command.iter().map(OsString::from).collect(), Form::Lines(ArrayEncoding::Text)),
         Route::Plugin { .. } | Route::Classical(_) => (Vec::new(), Form::Frames),
     };
     let program = executable::executable()?;
@@ -311,9 +309,8 @@ fn same_shape(place: &str, fields: &[Vec<f64>], expected: &[usize]) -> Result<()
 
 /// Nodes are needed exactly where the offer says `cell_nodes`, and must be a quadrature.
 fn check_nodes(description: &Description, case: &Case, nodes: Option<Nodes>) -> Result<Option<Nodes>, Failure> {
-    let misfit = |reason: String| {
-        Failure::from(MessageError::Misfit { place: "the answer to `prepare`".to_owned(), reason })
-    };
+    let misfit =
+        |reason: String| Failure::from(MessageError::Misfit { place: "the answer to `prepare`".to_owned(), reason });
     let several = |offer: &Offer| offer.values == gridassay_scheme::Values::CellNodes;
     let needed = description.offer_for(case).is_some_and(several);
     let Some(nodes) = nodes else {

@@ -26,7 +26,8 @@ impl Tail {
         let bytes: Vec<u8> = self.0.iter().copied().collect();
         let text = String::from_utf8_lossy(&bytes);
         let lines: Vec<&str> = text.lines().filter(|line| !line.trim().is_empty()).collect();
-        let shown: Vec<String> = lines[lines.len().saturating_sub(LINES)..].iter().map(|line| printable(line)).collect();
+        let shown: Vec<String> =
+            lines[lines.len().saturating_sub(LINES)..].iter().map(|line| printable(line)).collect();
         shown.join("\n")
     }
 }

@@ -13,7 +13,7 @@ mod stability;
 pub use file::{RecordError, read_results, write_bytes, write_results, write_text};
 pub use model::{
     Claimed, ClaimsRecord, FORMAT, Parameters, Results, RunRecord, SchemeRecord, Study, StudyRecord, VERSION, Verdict,
-    VerdictRecord, finite,
+    VerdictRecord, finite, utc_now,
 };
 pub use modes::{
     ClaimedSymbol, Linearity, ModeRecord, ModesRecord, ModifiedEquation, NeighbourDifference, StencilEntry,

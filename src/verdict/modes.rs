@@ -7,7 +7,10 @@ use crate::record::{ModeRecord, ModesRecord, StudyRecord};
 /// Weighs what is claimed about modes.
 pub fn judge(claim: &ModesClaim, study: &StudyRecord, record: &ModesRecord) -> Judgement {
     if let Some(stopped) = &study.stopped {
-        return Judgement::undecided(format!("the modes were not measured: {stopped}"), "a scheme that can be run on this case");
+        return Judgement::undecided(
+            format!("the modes were not measured: {stopped}"),
+            "a scheme that can be run on this case",
+        );
     }
     if record.linear == Some(false) {
         return Judgement::undecided(
@@ -54,7 +57,9 @@ fn bounded(
         );
     };
     let uncertainty = record.uncertainty.unwrap_or(0.0);
-    let says = format!("the largest {words} of waves of {from} and more cells is {worst:.3e} (at {points:.1} cells), claimed within {within}");
+    let says = format!(
+        "the largest {words} of waves of {from} and more cells is {worst:.3e} (at {points:.1} cells), claimed within {within}"
+    );
     // The uncertainty of G moves a phase-speed ratio by itself over theta x Courant number, of the order of itself over 2 pi / points.
     let slack = uncertainty * points;
     if !(worst - slack).is_finite() {
@@ -64,7 +69,10 @@ fn bounded(
     } else if worst - slack > within {
         Judgement::refuted(says)
     } else {
-        Judgement::undecided(format!("{says}; G is uncertain by {uncertainty:.1e}"), "an implicit part that is solved more tightly")
+        Judgement::undecided(
+            format!("{says}; G is uncertain by {uncertainty:.1e}"),
+            "an implicit part that is solved more tightly",
+        )
     }
 }
 
@@ -72,14 +80,20 @@ fn symbol_judged(symbol: &crate::record::ClaimedSymbol) -> Judgement {
     let formula = &symbol.formula;
     let (count, total) = (symbol.disagreeing, symbol.compared);
     let Some(worst) = symbol.largest_difference else {
-        return Judgement::undecided(format!("the claimed symbol `{formula}` could not be evaluated"), "a formula that is finite for every theta");
+        return Judgement::undecided(
+            format!("the claimed symbol `{formula}` could not be evaluated"),
+            "a formula that is finite for every theta",
+        );
     };
     if count == 0 {
         let says = format!("G agrees with `{formula}` at all {total} wavenumbers, within {worst:.1e}");
         return Judgement::upheld(says);
     }
     let neighbour = symbol.neighbour.as_ref().map_or_else(String::new, |entry| {
-        format!("; the coefficient of the neighbour at offset {} is {} as built and {} as claimed", entry.offset, entry.built, entry.claimed)
+        format!(
+            "; the coefficient of the neighbour at offset {} is {} as built and {} as claimed",
+            entry.offset, entry.built, entry.claimed
+        )
     });
     Judgement::refuted(format!(
         "G differs from `{formula}` at {count} of {total} wavenumbers, by up to {worst:.3e} (at k h = {:.4}){neighbour}",

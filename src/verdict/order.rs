@@ -30,7 +30,8 @@ pub fn judge(claim: &OrderClaim, study: &StudyRecord, record: &OrderRecord) -> J
 
 /// Whether a record decides the claim: what ends the lengthening of a ladder.
 pub fn decides(claim: &OrderClaim, record: &OrderRecord) -> bool {
-    let fields = record.levels.first().map(|level| level.errors.keys().cloned().collect::<Vec<_>>()).unwrap_or_default();
+    let fields =
+        record.levels.first().map(|level| level.errors.keys().cloned().collect::<Vec<_>>()).unwrap_or_default();
     let about = fields.iter().filter(|field| claim.field.as_ref().is_none_or(|about| about == *field));
     about.map(|field| judge_field(claim, record, field)).all(|judgement| judgement.decided_by.is_none())
 }
@@ -49,8 +50,6 @@ fn judge_field(claim: &OrderClaim, record: &OrderRecord, field: &str) -> Judgeme
     match judged.outcome {
         Outcome::Upheld => Judgement::upheld(reason),
         Outcome::Refuted => Judgement::refuted(reason),
-        Outcome::Undecided => {
-            Judgement::undecided(reason, judged.reason.remedy().unwrap_or("a finer ladder"))
-        }
+        Outcome::Undecided => Judgement::undecided(reason, judged.reason.remedy().unwrap_or("a finer ladder")),
     }
 }

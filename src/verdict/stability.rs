@@ -11,7 +11,10 @@ const SAME: f64 = 1e-6;
 pub fn judge(claim: &StabilityClaim, study: &StudyRecord, record: &StabilityRecord) -> Judgement {
     let words = record.number.words();
     if let Some(stopped) = &study.stopped {
-        return Judgement::undecided(format!("the range was not measured: {stopped}"), "a scheme that can be run over the whole range");
+        return Judgement::undecided(
+            format!("the range was not measured: {stopped}"),
+            "a scheme that can be run over the whole range",
+        );
     }
     if let Some(weak) = &record.weak_growth {
         return Judgement::refuted(format!(
@@ -47,9 +50,10 @@ fn without_limit(claim: &StabilityClaim, record: &StabilityRecord) -> Judgement 
             "the scheme itself refuses {words} {refused:.9} and more, claimed up to {}; every smaller one is stable",
             claim.up_to
         )),
-        _ if claim.exactly => {
-            Judgement::refuted(format!("no limit was found up to {words} {end}, beyond the claimed limit {}", claim.up_to))
-        }
+        _ if claim.exactly => Judgement::refuted(format!(
+            "no limit was found up to {words} {end}, beyond the claimed limit {}",
+            claim.up_to
+        )),
         _ => Judgement::upheld(format!("no limit was found up to {words} {end}, the end of the scan")),
     }
 }

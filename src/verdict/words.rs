@@ -1,7 +1,7 @@
 //! Claims in the words of the trade.
 
 use crate::claims::{ClaimKind, ModesClaim, OrderClaim, StabilityClaim};
-use crate::record::StepNumber;
+use crate::record::{Claimed, StepNumber};
 
 /// A claim as a sentence without its scheme.
 pub fn claim(kind: &ClaimKind) -> String {
@@ -9,6 +9,30 @@ pub fn claim(kind: &ClaimKind) -> String {
         ClaimKind::Order(claim) => order(claim),
         ClaimKind::Modes(claim) => modes(claim),
         ClaimKind::Stability(claim) => stability(claim),
+    }
+}
+
+/// The number in a claim; `None` where it is a formula.
+pub fn claimed(kind: &ClaimKind) -> Option<Claimed> {
+    let bare = |quantity: &str, value| Claimed {
+        quantity: quantity.to_owned(),
+        value,
+        tolerance: None,
+        field: None,
+        norm: None,
+    };
+    match kind {
+        ClaimKind::Order(claim) => Some(Claimed {
+            tolerance: Some(claim.tolerance),
+            field: claim.field.clone(),
+            norm: Some(claim.norm.clone()),
+            ..bare("order", claim.expect)
+        }),
+        ClaimKind::Modes(claim) => {
+            let phase = claim.phase_speed_error_within.map(|within| bare("phase_speed_error", within));
+            phase.or(claim.damping_error_within.map(|within| bare("damping_error", within)))
+        }
+        ClaimKind::Stability(claim) => Some(bare("stable_up_to", claim.up_to)),
     }
 }
 

@@ -13,7 +13,9 @@ fn folder(name: &str) -> PathBuf {
 
 #[test]
 fn a_dossier_holds_its_files() {
-    for (name, results) in [("one", sample::one_scheme()), ("many", sample::many_schemes(11)), ("hostile", sample::hostile())] {
+    for (name, results) in
+        [("one", sample::one_scheme()), ("many", sample::many_schemes(11)), ("hostile", sample::hostile())]
+    {
         let folder = folder(name);
         let start = std::time::Instant::now();
         write_dossier(&folder, &results).unwrap();

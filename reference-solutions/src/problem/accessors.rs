@@ -196,6 +196,9 @@ impl Problem {
 
 impl std::fmt::Debug for Problem {
     fn fmt(&self, out: &mut std::fmt::Formatter<'_>) -> std::fmt::Result {
-        out.debug_struct("Problem").field("name", &self.name()).field("parameters", self.parameters()).finish_non_exhaustive()
+        out.debug_struct("Problem")
+            .field("name", &self.name())
+            .field("parameters", self.parameters())
+            .finish_non_exhaustive()
     }
 }

@@ -66,7 +66,10 @@ mod tests {
     #[test]
     fn fields_follow_the_table_of_equations() {
         assert_eq!(equation_fields("acoustics", 2).unwrap(), ["p", "u", "v"]);
-        assert_eq!(equation_fields("euler", 3).unwrap(), ["density", "momentum_x", "momentum_y", "momentum_z", "energy"]);
+        assert_eq!(
+            equation_fields("euler", 3).unwrap(),
+            ["density", "momentum_x", "momentum_y", "momentum_z", "energy"]
+        );
         assert_eq!(equation_fields("incompressible", 2).unwrap(), ["u", "v", "p"]);
         assert_eq!(equation_fields("shallow_water", 1).unwrap(), ["depth", "discharge_x"]);
         assert_eq!(equation_fields("somebody's own", 1), None);

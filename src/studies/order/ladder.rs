@@ -46,7 +46,9 @@ pub fn rungs(request: &OrderRequest, steady: bool) -> Result<Vec<Rung>, Stop> {
         // Whole numbers of steps in exact proportion keep the Courant number the same on all levels.
         let steps = (first as f64 * factor).round();
         if steps > MOST_STEPS as f64 {
-            let message = format!("a level of {cells:?} cells would take {steps} steps, more than {MOST_STEPS}; choose a larger step or an earlier final time");
+            let message = format!(
+                "a level of {cells:?} cells would take {steps} steps, more than {MOST_STEPS}; choose a larger step or an earlier final time"
+            );
             return Err(Stop::Request(message));
         }
         Ok(Rung { cells, step: Some(duration / steps), steps: Some(steps as usize) })
@@ -92,7 +94,8 @@ fn steps_on_coarsest(request: &OrderRequest, cells: &[usize], duration: f64) -> 
     // A hair below the whole number: 0.5 / 0.05 must be 10 steps, not 11.
     let steps = (duration / step * (1.0 - 8.0 * f64::EPSILON)).ceil().max(1.0);
     if steps > MOST_STEPS as f64 {
-        let message = format!("the step {step:e} would take {steps:e} steps on the coarsest level; choose a larger one");
+        let message =
+            format!("the step {step:e} would take {steps:e} steps on the coarsest level; choose a larger one");
         return Err(Stop::Request(message));
     }
     Ok(steps as usize)

@@ -57,7 +57,9 @@ pub fn run(session: &mut Session, problem: &Problem, rung: &Rung, until: f64, se
     let probe = Layout::new(offer, &case, &names, None).ok();
     let nodes = match &probe {
         // The layout is known before `prepare`, so `prepare` may already ask back.
-        Some(layout) => session.prepare(&case, &mut ProblemHarness::new(problem, layout, &names).map_err(Stop::Request)?)?,
+        Some(layout) => {
+            session.prepare(&case, &mut ProblemHarness::new(problem, layout, &names).map_err(Stop::Request)?)?
+        }
         None => session.prepare(&case, &mut gridassay_scheme::NoCallbacks)?,
     };
     let layout = Layout::new(offer, &case, &names, nodes.as_ref()).map_err(Stop::Request)?;

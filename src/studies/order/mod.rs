@@ -26,7 +26,12 @@ const MOST_CELLS: usize = 1 << 21;
 
 /// Runs a ladder. Where the person named none, the harness lengthens its own until `enough` says that the record decides, or the
 /// budget is spent.
-pub fn run(session: &mut Session, request: &OrderRequest, enough: Option<&dyn Fn(&OrderRecord) -> bool>, seed: u64) -> Made {
+pub fn run(
+    session: &mut Session,
+    request: &OrderRequest,
+    enough: Option<&dyn Fn(&OrderRecord) -> bool>,
+    seed: u64,
+) -> Made {
     let mut record = empty(request);
     let mut notes = Vec::new();
     let ended = measure(session, request, enough, seed, &mut record, &mut notes);
@@ -124,7 +129,8 @@ fn push_difference(record: &mut OrderRecord, rung: &Rung, before: Option<&Answer
         level.errors = by_field(&answer.names, level::differences(&answer.layout, &before.state, &answer.state));
         let own = level::differences(&before.layout, &before.shaken, &before.state);
         let next = level::differences(&answer.layout, &answer.shaken, &answer.state);
-        let sum = |(a, b): (Norms, Norms)| Norms { l1: add(a.l1, b.l1), l2: add(a.l2, b.l2), linf: add(a.linf, b.linf) };
+        let sum =
+            |(a, b): (Norms, Norms)| Norms { l1: add(a.l1, b.l1), l2: add(a.l2, b.l2), linf: add(a.linf, b.linf) };
         level.floor = by_field(&answer.names, own.into_iter().zip(next).map(sum).collect());
         level.note = level::not_finite(&answer.names, &before.state);
     }

@@ -7,8 +7,10 @@ use crate::record::{Norms, Observed, OrderRecord, finite};
 
 /// The observed order of every field in every norm.
 pub fn observed(record: &OrderRecord) -> BTreeMap<String, BTreeMap<String, Observed>> {
-    let fields = record.levels.first().map(|level| level.errors.keys().cloned().collect::<Vec<_>>()).unwrap_or_default();
-    let of_field = |field: &String| Norms::NAMES.iter().map(|norm| ((*norm).to_owned(), one(record, field, norm))).collect();
+    let fields =
+        record.levels.first().map(|level| level.errors.keys().cloned().collect::<Vec<_>>()).unwrap_or_default();
+    let of_field =
+        |field: &String| Norms::NAMES.iter().map(|norm| ((*norm).to_owned(), one(record, field, norm))).collect();
     fields.iter().map(|field| (field.clone(), of_field(field))).collect()
 }
 

@@ -145,9 +145,7 @@ pub fn read_base64(text: &[u8], out: &mut Vec<f64>) -> Result<(), ArrayError> {
     out.clear();
     out.resize(length / 8, 0.0);
     let bytes: &mut [u8] = bytemuck::cast_slice_mut(out);
-    base64_simd::STANDARD
-        .decode(text, base64_simd::Out::from_slice(bytes))
-        .map_err(|_| ArrayError::NotBase64)?;
+    base64_simd::STANDARD.decode(text, base64_simd::Out::from_slice(bytes)).map_err(|_| ArrayError::NotBase64)?;
     #[cfg(target_endian = "big")]
     out.iter_mut().for_each(|value| *value = f64::from_bits(value.to_bits().swap_bytes()));
     Ok(())

@@ -69,7 +69,9 @@ impl Message {
                 Body::Request { method, params }
             }
             (None, Some(result), None) => Body::Answer(result),
-            (None, None, Some(error)) => message.error(&error).ok_or_else(|| rule("`error` lacks a code and a message"))?,
+            (None, None, Some(error)) => {
+                message.error(&error).ok_or_else(|| rule("`error` lacks a code and a message"))?
+            }
             (None, Some(_), Some(_)) => return Err(rule("it has both `result` and `error`")),
             _ => return Err(rule("it has no `method`, `result` or `error`")),
         };
@@ -266,7 +268,9 @@ pub fn number(object: &serde_json::Map<String, Value>, key: &str, place: &str) -
 /// There is none, or it is no count.
 pub fn count(object: &serde_json::Map<String, Value>, key: &str, place: &str) -> Result<usize, MessageError> {
     let value = member(object, key, place)?;
-    let whole = value.as_u64().or_else(|| value.as_f64().filter(|v| v.fract() == 0.0 && (0.0..9e15).contains(v)).map(|v| v as u64));
+    let whole = value
+        .as_u64()
+        .or_else(|| value.as_f64().filter(|v| v.fract() == 0.0 && (0.0..9e15).contains(v)).map(|v| v as u64));
     let wrong = || wrong_type(&format!("{place}.{key}"), value, "a whole number of 0 or more");
     usize::try_from(whole.ok_or_else(wrong)?).map_err(|_| wrong())
 }

@@ -135,12 +135,7 @@ impl Server<'_> {
         }
     }
 
-    fn work<T: Transport>(
-        &mut self,
-        method: &str,
-        work: &mut Work<'_>,
-        asker: &mut Asker<'_, T>,
-    ) -> Result<Reply, No>
+    fn work<T: Transport>(&mut self, method: &str, work: &mut Work<'_>, asker: &mut Asker<'_, T>) -> Result<Reply, No>
     where
         ServeError: Into<T::Error>,
     {
@@ -157,8 +152,7 @@ impl Server<'_> {
                 let params = work.object()?;
                 let (time, step) = (number(params, "time", "params")?, number(params, "step", "params")?);
                 let steps = count(params, "steps", "params")?;
-                let request =
-                    Advance { time, step, steps, state: &mut work.state, earlier: &mut work.earlier };
+                let request = Advance { time, step, steps, state: &mut work.state, earlier: &mut work.earlier };
                 self.scheme.advance(request, asker)?;
                 Ok(Reply { earlier: self.levels > 1, ..Reply::state("state") })
             }
@@ -235,7 +229,10 @@ impl Server<'_> {
 }
 
 fn unnamed(offer: &Offer) -> SchemeError {
-    SchemeError::Failed(format!("the offer of `{}` must list its fields: the contract does not know them", offer.equation))
+    SchemeError::Failed(format!(
+        "the offer of `{}` must list its fields: the contract does not know them",
+        offer.equation
+    ))
 }
 
 /// A request being worked on.
