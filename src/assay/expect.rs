@@ -206,7 +206,7 @@ fn settle(attempt: Attempt, claim: &str) {
     if attempt.judgement.verdict == Verdict::Upheld {
         return;
     }
-    let shown: Vec<String> = attempt.studies.iter().map(|study| terminal::study(study, false)).collect();
+    let shown: Vec<String> = attempt.studies.iter().map(|study| terminal::study_text(study, false)).collect();
     let decided_by = attempt.judgement.decided_by.map_or_else(String::new, |by| format!("\nwhat would decide it: {by}"));
     let (word, reason) = (attempt.judgement.verdict.word(), attempt.judgement.reason);
     panic!("the claim `{claim}` is {word}: {reason}{decided_by}\n{}", shown.join("\n"));

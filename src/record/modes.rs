@@ -6,7 +6,7 @@ use serde::{Deserialize, Serialize};
 use super::Parameters;
 
 /// A Fourier study.
-#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
 pub struct ModesRecord {
     /// The equation's name.
     pub equation: String,
@@ -26,6 +26,10 @@ pub struct ModesRecord {
     pub linearity: Option<Linearity>,
     /// Uncertainty of G: the largest deviation of the linearity trial (rounding, or the noise of an iterative solver).
     pub uncertainty: Option<f64>,
+    /// How far the approximate dispersion relation of a nonlinear scheme moves when waves of size 1 become waves of size 0.001, as the largest
+    /// |difference of G|; `null` for a linear scheme.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub amplitude_dependence: Option<f64>,
     /// The modes, ascending in theta, branch by branch.
     pub modes: Vec<ModeRecord>,
     /// The coefficients of the stencil as built, where the impulse response is short.
@@ -50,6 +54,28 @@ pub struct Linearity {
     pub time: f64,
     /// Largest deviation that still counts as linear.
     pub allowed: f64,
+}
+
+impl Linearity {
+    /// Whether all deviations still count as linear, shift invariant and independent of time; NaN does not.
+    pub fn is_linear(&self) -> bool {
+        [self.superposition, self.shift, self.time].iter().all(|deviation| *deviation <= self.allowed)
+    }
+
+    /// What fails, as a sentence.
+    pub fn failing(&self) -> String {
+        let parts = [
+            ("is not linear (a step of a sum differs from the sum of the steps by", self.superposition),
+            ("is not the same at every position (a step of a shifted state differs from the shifted step by", self.shift),
+            ("depends on the time (a later step differs by", self.time),
+        ];
+        let fails = |(words, deviation): &(&str, f64)| {
+            // Written so that NaN fails.
+            (!(*deviation <= self.allowed)).then(|| format!("{words} {deviation:.1e} of the largest value)"))
+        };
+        let failing: Vec<String> = parts.iter().filter_map(fails).collect();
+        format!("the scheme {}", failing.join(", "))
+    }
 }
 
 /// One mode of one branch. The convention is exp(i theta j) in space; the exact factor is exp(-i omega dt).
@@ -77,6 +103,9 @@ pub struct ModeRecord {
     pub group_speed_ratio: Option<f64>,
     /// Cells per wavelength; `null` at theta = 0.
     pub points_per_wavelength: Option<f64>,
+    /// Share of the wave's energy that one step moves to other wavenumbers; `null` for a linear scheme, which moves none.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub leaked: Option<f64>,
 }
 
 /// One coefficient of a one-step stencil: new value at j = sum of coefficient x old value at j + offset.

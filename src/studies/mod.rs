@@ -7,11 +7,13 @@ pub mod impulse;
 pub mod jitter;
 pub mod layout;
 pub mod linearity;
-
+pub mod modes;
+pub mod noise;
 pub mod order;
 pub mod selection;
 pub mod setting;
 pub mod speed;
+pub mod stability;
 
 mod made;
 mod stop;

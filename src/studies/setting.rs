@@ -80,6 +80,14 @@ impl Setting {
     }
 }
 
+/// The number of cells nearest above `wanted` that the scheme's rule for `equation` admits.
+pub fn admitted(session: &Session, equation: &str, wanted: usize) -> usize {
+    let rule = session.description().offers.iter().find(|offer| offer.equation == equation).map(|offer| offer.cells);
+    let rule = rule.unwrap_or_default();
+    let multiple = rule.multiple.max(1);
+    wanted.max(rule.minimum).div_ceil(multiple) * multiple
+}
+
 /// Parameters, step and realised numbers.
 fn resolve(
     equation: &str,

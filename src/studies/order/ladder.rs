@@ -101,11 +101,11 @@ fn steps_on_coarsest(request: &OrderRequest, cells: &[usize], duration: f64) -> 
     Ok(steps as usize)
 }
 
-/// Courant number 0.4 and diffusion number 0.2, whichever gives the smaller step: inside the stable range of the usual explicit schemes,
-/// and no dyadic fraction, which would hide single-precision truncation.
+/// The problem's own Courant and diffusion number, else 0.4 and 0.2, whichever gives the smaller step: inside the stable range of the
+/// usual explicit schemes, and no dyadic fraction, which would hide single-precision truncation.
 fn default_step(problem: &Problem, cells: &[usize]) -> Result<f64, Stop> {
-    let moving = speed::crossings(problem, cells)?.map(|rate| 0.4 / rate);
-    let spreading = speed::spreading(problem, cells).map(|rate| 0.2 / rate);
+    let moving = speed::crossings(problem, cells)?.map(|rate| problem.courant_number().unwrap_or(0.4) / rate);
+    let spreading = speed::spreading(problem, cells).map(|rate| problem.diffusion_number().unwrap_or(0.2) / rate);
     moving.into_iter().chain(spreading).reduce(f64::min).ok_or_else(|| {
         Stop::Request(format!("the problem `{}` has neither a speed nor a diffusivity; give `step`", problem.name()))
     })

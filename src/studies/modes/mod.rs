@@ -1,0 +1,60 @@
+//! The Fourier study: what one step does to every mode that a periodic grid holds.
+
+mod claimed;
+mod linear;
+mod nonlinear;
+mod quantities;
+
+use super::setting::{Numbers, Setting};
+use super::{Made, Stop, linearity};
+use crate::claims::ModesRequest;
+use crate::host::Session;
+use crate::record::{ModesRecord, Study};
+use crate::studies::cellwise::Cellwise;
+
+/// Measures the modes; where a symbol is claimed as a formula, holds G against it.
+pub fn run(session: &mut Session, request: &ModesRequest, symbol: Option<&str>, seed: u64) -> Made {
+    let mut record = ModesRecord {
+        equation: request.equation.clone(),
+        parameters: request.parameters.clone(),
+        cells: request.cells.clone(),
+        courant: request.courant,
+        diffusion_number: request.diffusion_number,
+        ..ModesRecord::default()
+    };
+    let mut notes = Vec::new();
+    let ended = measure(session, request, symbol, seed, &mut record, &mut notes);
+    Made::new(Study::Modes(record), ended, notes)
+}
+
+fn measure(
+    session: &mut Session,
+    request: &ModesRequest,
+    symbol: Option<&str>,
+    seed: u64,
+    record: &mut ModesRecord,
+    notes: &mut Vec<String>,
+) -> Result<(), Stop> {
+    let numbers = Numbers { courant: request.courant, diffusion: request.diffusion_number };
+    let setting = Setting::new(session, &request.equation, &request.parameters, &request.cells, numbers)?;
+    record.parameters = setting.parameters.clone();
+    record.courant = setting.numbers.courant;
+    record.diffusion_number = setting.numbers.diffusion;
+    record.step = setting.step;
+    let nodes = setting.prepare(session)?;
+    let cellwise = Cellwise::new(&setting.offer, nodes.as_ref(), &request.cells);
+    let trial = linearity::trial(session, &setting, &cellwise, seed)?;
+    let worst = trial.superposition.max(trial.shift).max(trial.time);
+    record.linear = Some(trial.is_linear());
+    record.uncertainty = Some(worst);
+    record.linearity = Some(trial);
+    if !trial.is_linear() {
+        notes.push(format!("{}: what follows is its approximate dispersion relation (Pirozzoli 2006)", trial.failing()));
+        return nonlinear::measure(session, &setting, record);
+    }
+    linear::measure(session, &setting, &cellwise, record)?;
+    if let Some(formula) = symbol {
+        record.claimed_symbol = Some(claimed::compare(formula, record)?);
+    }
+    Ok(())
+}

@@ -1,0 +1,211 @@
+//! The largest growth in one step over all wavenumbers, as a function of the Courant or diffusion number.
+
+use num_complex::Complex64;
+
+use super::numbers;
+use crate::analysis::eigen::{Excess, modulus_excess, spectral_excess};
+use crate::analysis::matrix::Matrix;
+use crate::analysis::stability::{StencilGrowth, Worst, worst_theta};
+use crate::analysis::symbol::{SampledSymbol, Stencil};
+use crate::claims::StabilityRequest;
+use crate::host::Session;
+use crate::record::{Parameters, StepNumber, finite};
+use crate::studies::cellwise::Cellwise;
+use crate::studies::setting::{Setting, admitted};
+use crate::studies::{Stop, impulse, linearity};
+
+/// Cells of the grids on which impulses are run: the first holds any usual stencil; the others are asked where the response is not short, so that
+/// more wavenumbers than one grid holds are tried. The worst theta of central differences is on a grid only when its cells divide by four.
+const GRIDS: [usize; 4] = [96, 88, 92, 100];
+
+/// Rounding of G by a step and a transform, relative to its size.
+const ROUNDING: f64 = 256.0 * f64::EPSILON;
+
+/// The growth of one scheme.
+pub struct Growth<'a> {
+    session: &'a mut Session,
+    request: &'a StabilityRequest,
+    number: StepNumber,
+    cells: Vec<usize>,
+    parameters: Parameters,
+    not_linear: Option<String>,
+    noise: f64,
+    prepared: Option<(Setting, Cellwise)>,
+    scanned: Vec<(f64, Option<f64>)>,
+    refused_from: Option<f64>,
+    used_all_grids: bool,
+}
+
+impl<'a> Growth<'a> {
+    /// Tries linearity at a small step; the scheme's rounding noise is that of the trial.
+    ///
+    /// # Errors
+    /// The scheme offers no such case, refused or failed.
+    pub fn new(session: &'a mut Session, request: &'a StabilityRequest, number: StepNumber, seed: u64) -> Result<Self, Stop> {
+        let cells = grids(session, &request.equation);
+        // A generic small step: linearity is a property of the scheme, not of the step.
+        let small = numbers(number, 0.0731_f64.min(0.5 * request.scan_to), request.held);
+        let setting = Setting::new(session, &request.equation, &request.parameters, &cells[..1], small)?;
+        let nodes = setting.prepare(session)?;
+        let cellwise = Cellwise::new(&setting.offer, nodes.as_ref(), &cells[..1]);
+        let trial = linearity::trial(session, &setting, &cellwise, seed)?;
+        let noise = trial.superposition.max(trial.shift).max(f64::EPSILON);
+        Ok(Self {
+            session,
+            request,
+            number,
+            cells,
+            parameters: setting.parameters.clone(),
+            not_linear: (!trial.is_linear()).then(|| trial.failing()),
+            noise,
+            prepared: Some((setting, cellwise)),
+            scanned: Vec::new(),
+            refused_from: None,
+            used_all_grids: false,
+        })
+    }
+
+    /// The equation's parameters as used; one that follows from the numbers is that of the linearity trial.
+    pub fn parameters(&self) -> Parameters {
+        self.parameters.clone()
+    }
+
+    /// Why the scheme has no amplification factor, where it has none.
+    pub fn not_linear(&self) -> Option<String> {
+        self.not_linear.clone()
+    }
+
+    /// The grids that were used.
+    pub fn cells(&self) -> Vec<usize> {
+        if self.used_all_grids { self.cells.clone() } else { self.cells[..1].to_vec() }
+    }
+
+    /// (number, largest modulus) as tried, ascending.
+    pub fn scanned(&self) -> Vec<(f64, Option<f64>)> {
+        let mut scanned = self.scanned.clone();
+        scanned.sort_by(|a, b| a.0.total_cmp(&b.0));
+        scanned.dedup_by(|a, b| a.0 == b.0);
+        scanned
+    }
+
+    /// The smallest number that the scheme itself refused.
+    pub fn refused_from(&self) -> Option<f64> {
+        self.refused_from
+    }
+
+    /// The largest |G| - 1 at `value`; infinite where the scheme refuses the step or blows up within it.
+    ///
+    /// # Errors
+    /// The scheme failed.
+    pub fn excess(&mut self, value: f64) -> Result<Excess, Stop> {
+        let unbounded = Excess { value: f64::INFINITY, uncertainty: 0.0 };
+        match self.worst(value) {
+            Ok(worst) => {
+                self.scanned.push((value, finite(1.0 + worst.excess.value)));
+                Ok(worst.excess)
+            }
+            Err(stop) if stop.is_step_refused() => {
+                self.refused_from = Some(self.refused_from.map_or(value, |from| from.min(value)));
+                Ok(unbounded)
+            }
+            Err(Stop::Analysis(_)) => {
+                self.scanned.push((value, None));
+                Ok(unbounded)
+            }
+            Err(stop) => Err(stop),
+        }
+    }
+
+    /// k h of the mode that grows most at `value`; `None` where nothing grows or the scheme refuses.
+    ///
+    /// # Errors
+    /// The scheme failed.
+    pub fn worst_theta(&mut self, value: f64) -> Result<Option<f64>, Stop> {
+        match self.worst(value) {
+            Ok(worst) => Ok(finite(worst.theta.abs()).filter(|_| worst.excess.value > worst.excess.uncertainty)),
+            Err(stop) if stop.is_step_refused() => Ok(None),
+            Err(stop) => Err(stop),
+        }
+    }
+
+    fn worst(&mut self, value: f64) -> Result<Worst, Stop> {
+        let responses = self.responses(self.cells[0], value)?;
+        let m = responses.components();
+        // Coefficients below rounding are those of an implicit scheme whose response decays but never ends.
+        let largest = (0..m * m).flat_map(|p| responses.response(p / m, p % m)).fold(0.0_f64, |a, b| a.max(b.abs()));
+        if let Some(stencil) = Stencil::from_responses(&responses, 0.0) {
+            return self.worst_of(&stencil);
+        }
+        if let Some(stencil) = Stencil::from_responses(&responses, f64::EPSILON * largest) {
+            let noise = (self.noise * largest).max(ROUNDING * largest).max(stencil.dropped());
+            return worst_theta(|theta| excess_of(&stencil.symbol([theta, 0.0, 0.0]), noise), m > 1);
+        }
+        self.used_all_grids = true;
+        let mut worst = sampled(&SampledSymbol::from_responses(&responses), self.noise)?;
+        for cells in self.cells[1..].to_vec() {
+            let other = sampled(&SampledSymbol::from_responses(&self.responses(cells, value)?), self.noise)?;
+            if other.excess.value - other.excess.uncertainty > worst.excess.value - worst.excess.uncertainty {
+                worst = other;
+            }
+        }
+        Ok(worst)
+    }
+
+    fn worst_of(&self, stencil: &Stencil) -> Result<Worst, Stop> {
+        match StencilGrowth::new(stencil, self.noise) {
+            Some(growth) => Ok(growth.worst()),
+            None => worst_theta(|theta| excess_of(&stencil.symbol([theta, 0.0, 0.0]), self.noise), true),
+        }
+    }
+
+    /// Impulse responses on `cells` at `value`; the scheme is asked to prepare only where the case differs from the last.
+    fn responses(&mut self, cells: usize, value: f64) -> Result<crate::analysis::symbol::ImpulseResponses, Stop> {
+        let numbers = numbers(self.number, value, self.request.held);
+        let (equation, fixed) = (&self.request.equation, &self.request.parameters);
+        let setting = Setting::new(self.session, equation, fixed, &[cells], numbers)?;
+        let same = self.prepared.as_ref().is_some_and(|(before, _)| before.case == setting.case);
+        let cellwise = match (&self.prepared, same) {
+            (Some((_, cellwise)), true) => cellwise.clone(),
+            _ => {
+                let nodes = setting.prepare(self.session)?;
+                Cellwise::new(&setting.offer, nodes.as_ref(), &[cells])
+            }
+        };
+        let responses = impulse::responses(self.session, &setting, &cellwise)?;
+        self.prepared = Some((setting, cellwise));
+        Ok(responses)
+    }
+}
+
+/// Grids close to the wanted ones that the scheme admits.
+fn grids(session: &Session, equation: &str) -> Vec<usize> {
+    let mut grids: Vec<usize> = GRIDS.iter().map(|cells| admitted(session, equation, *cells)).collect();
+    grids.dedup();
+    grids
+}
+
+/// The spectral radius of a block less one; `noise` is the uncertainty of its entries.
+fn excess_of(block: &Matrix, noise: f64) -> Result<Excess, Stop> {
+    match block.size() {
+        1 => Ok(scalar_excess(block.at(0, 0), noise)),
+        _ => spectral_excess(block, noise).map_err(|error| Stop::Analysis(error.to_string())),
+    }
+}
+
+fn scalar_excess(factor: Complex64, noise: f64) -> Excess {
+    Excess { value: modulus_excess(factor), uncertainty: noise.max(ROUNDING * factor.norm()) }
+}
+
+/// The worst wavenumber of a grid.
+fn sampled(symbol: &SampledSymbol, noise: f64) -> Result<Worst, Stop> {
+    let mut worst: Option<Worst> = None;
+    for at in 0..symbol.grid().count() {
+        let excess = excess_of(&symbol.block(at), noise)?;
+        let found = Worst { theta: symbol.grid().theta(at)[0], excess };
+        let score = |worst: &Worst| worst.excess.value - worst.excess.uncertainty;
+        if worst.as_ref().is_none_or(|worst| score(&found) > score(worst)) {
+            worst = Some(found);
+        }
+    }
+    worst.ok_or_else(|| Stop::Analysis("a grid without cells has no modes".to_owned()))
+}
