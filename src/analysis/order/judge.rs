@@ -150,6 +150,7 @@ impl fmt::Display for Reason {
             Reason::NotSettled { finest, change, trend } => {
                 let doing = match trend {
                     Trend::Scattered => "jump up and down",
+                    Trend::Turning => "have just turned",
                     _ if *change < 0.0 => "are still falling",
                     _ => "are still rising",
                 };

@@ -2,7 +2,7 @@
 
 use super::fit::{Interval, LineFit, fit_line};
 use super::ladder::{Ladder, Level, SetAside};
-use super::trend::{Slope, Trend, change_per_halving, trend};
+use super::trend::{Slope, Trend, change_per_halving, trend, unrest};
 
 /// Settings of the rule.
 #[derive(Debug, Clone, Copy, PartialEq)]
@@ -119,7 +119,7 @@ fn grows(ladder: &Ladder, usable: &[usize], slopes: &[Slope]) -> bool {
 fn conclude(observed: &mut Observed, ladder: &Ladder, usable: &[usize], settings: Settings) {
     let slopes = observed.spaced_slopes.clone();
     let last = slopes[slopes.len() - 1];
-    let size = observed.change.abs();
+    let size = unrest(&slopes);
     let quiet = (0.1 * settings.tolerance).max(2.0 * last.uncertainty);
     let trend = trend(&slopes, quiet);
     let goal = if let Trend::Converging { limit, .. } = trend { limit } else { last.order };
@@ -130,23 +130,20 @@ fn conclude(observed: &mut Observed, ladder: &Ladder, usable: &[usize], settings
     let fit = if count >= 2 { fit(ladder, &range, settings.confidence) } else { None };
     let recent: Vec<f64> = slopes.iter().rev().take(3).map(|s| s.order).collect();
     let rising = observed.change > 0.0;
-    let onward = if rising { HALVINGS * size } else { 0.0 };
+    let onward = if rising { HALVINGS * observed.change } else { 0.0 };
     let (settled, order, interval) = match (trend, fit) {
         (Trend::Pair, Some(fit)) => {
             let seen = Interval::around(&[recent[0], recent[1], last.order + onward], last.uncertainty);
             (true, Some(fit.slope), seen.hull(fit.interval))
         }
-        (Trend::Level, Some(fit)) => {
+        (Trend::Level | Trend::Scattered, Some(fit)) => {
             (true, Some(fit.slope), Interval::around(&[last.order], size + last.uncertainty).hull(fit.interval))
-        }
-        (Trend::Scattered, Some(fit)) => {
-            (true, Some(fit.slope), Interval::around(&[last.order], last.uncertainty).hull(fit.interval))
         }
         (Trend::Converging { limit, .. }, fit) => {
             let seen = Interval::around(&[last.order, limit], size + last.uncertainty);
             (fit.is_some() && size <= settings.tolerance, Some(limit), seen)
         }
-        (Trend::Running, _) => {
+        (Trend::Running | Trend::Turning, _) => {
             let ahead = last.order + HALVINGS * observed.change;
             (false, None, Interval::around(&[&recent[..], &[ahead]].concat(), size + last.uncertainty))
         }

@@ -40,8 +40,10 @@ pub enum Trend {
         /// The limit.
         limit: f64,
     },
-    /// They jump up and down.
+    /// They jump up and down, without their jumps growing.
     Scattered,
+    /// They have just turned, with a change that does not die out: what follows is open.
+    Turning,
     /// They change in one direction, and the changes do not die out.
     Running,
 }
@@ -57,6 +59,14 @@ pub fn change_per_halving(slopes: &[Slope]) -> f64 {
     (last.order - before.order) / (before.place() - last.place())
 }
 
+/// How much the last slope may still be off: the larger of its last change each halving and a quarter of the one before.
+///
+/// A second-order approach divides changes by four each halving; a last change that is smaller may be so by chance.
+pub fn unrest(slopes: &[Slope]) -> f64 {
+    let earlier = &slopes[..slopes.len().saturating_sub(1)];
+    change_per_halving(slopes).abs().max(0.25 * change_per_halving(earlier).abs())
+}
+
 /// The trend of the last three slopes; changes of at most `quiet` each halving count as none.
 pub fn trend(slopes: &[Slope], quiet: f64) -> Trend {
     let [.., a, b, c] = slopes else { return Trend::Pair };
@@ -68,16 +78,28 @@ pub fn trend(slopes: &[Slope], quiet: f64) -> Trend {
         let [a, b, c] = [a, b, c].map(|s| s.share(q, unit));
         (c - b) / (b - a)
     };
+    let dies_out = second.abs() < ratio(SLOWEST) * first.abs();
     if second * first < 0.0 {
-        return if is_quiet { Trend::Level } else { Trend::Scattered };
+        return match (is_quiet, dies_out || zigzags(slopes)) {
+            (true, _) => Trend::Level,
+            (false, true) => Trend::Scattered,
+            (false, false) => Trend::Turning,
+        };
     }
-    if first == 0.0 || second.abs() >= ratio(SLOWEST) * first.abs() {
+    if !dies_out {
         return if is_quiet { Trend::Level } else { Trend::Running };
     }
     let rate = solve(|q| second / first - ratio(q));
     // At the fastest rate, or with no change at all, the last slope is the limit to within its last change.
     let remaining = second * c.share(rate, unit) / (b.share(rate, unit) - c.share(rate, unit));
     Trend::Converging { rate, limit: c.order + remaining }
+}
+
+/// Whether the last four slopes change direction twice, the last change being no outlier: noise, and not one term taking over from another.
+fn zigzags(slopes: &[Slope]) -> bool {
+    let [.., a, b, c, d] = slopes else { return false };
+    let [first, second, third] = [b.order - a.order, c.order - b.order, d.order - c.order];
+    first * second < 0.0 && second * third < 0.0 && third.abs() <= 2.0 * first.abs().max(second.abs())
 }
 
 /// Root in [SLOWEST, FASTEST] of a function that rises through zero there, or the end that it comes nearest to.
@@ -139,7 +161,12 @@ mod tests {
         for orders in [[2.0, 1.95, 1.85], [2.0, 2.1, 2.3], [1.5, 1.6, 1.7], [2.0, 1.9, 1.81]] {
             assert_eq!(trend(&halved(&orders), 0.01), Trend::Running, "{orders:?}");
         }
-        assert_eq!(trend(&halved(&[2.0, 3.0, 2.0]), 0.01), Trend::Scattered);
+        for orders in [&[2.0, 3.0, 2.5][..], &[2.0, 2.05, 1.98, 2.04]] {
+            assert_eq!(trend(&halved(orders), 0.01), Trend::Scattered, "{orders:?}");
+        }
+        for orders in [&[2.2, 2.1, 2.18][..], &[2.0, 1.95, 2.0], &[2.0, 1.99, 2.0, 1.93]] {
+            assert_eq!(trend(&halved(orders), 0.01), Trend::Turning, "{orders:?}");
+        }
         for orders in [[2.0, 2.0, 2.0], [2.0, 2.001, 1.999], [2.0, 1.999, 1.995]] {
             assert_eq!(trend(&halved(&orders), 0.01), Trend::Level, "{orders:?}");
         }

@@ -109,10 +109,9 @@ fn a_response_that_fills_the_grid_has_no_stencil_until_it_decays() {
 fn two_components_are_a_block() {
     // Leapfrog as a two-level scheme, (new, old) from (old, older): [[-2 i c sin theta, 1], [1, 0]].
     let c = 0.5;
-    let none = vec![0.0; 4];
     let side = |s: f64| vec![s * c, 0.0, 0.0, 0.0];
     let neighbours = [([-1, 0, 0], side(1.0)), ([0, 0, 0], vec![0.0, 1.0, 1.0, 0.0]), ([1, 0, 0], side(-1.0))];
-    assert!(Stencil::from_neighbours(1, 2, &[([0, 0, 0], none[..3].to_vec())]).is_none());
+    assert!(Stencil::from_neighbours(1, 2, &[([0, 0, 0], vec![0.0; 3])]).is_none());
     let built = Stencil::from_neighbours(1, 2, &neighbours).unwrap();
     let responses = respond(&built, &[20], &[9]);
     assert_eq!(Stencil::from_responses(&responses, 0.0).unwrap(), built);
