@@ -1,6 +1,5 @@
 //! Digests of what was run: a result is traced to these bytes.
 
-use std::ffi::OsStr;
 use std::fs::File;
 use std::io::{self, Read};
 use std::os::unix::fs::PermissionsExt;
@@ -48,13 +47,19 @@ pub(super) fn command_files(command: &[String], folder: &Path) -> Vec<(String, S
     files
 }
 
+/// A file with its digest; a file that cannot be read has none.
+pub(super) fn named_file(path: &Path, folder: &Path) -> Vec<(String, String)> {
+    let digest = file_digest(&folder.join(path)).ok();
+    digest.map(|digest| (path.display().to_string(), digest)).into_iter().collect()
+}
+
 /// Where a program is: as it is named where the name has a slash, else on the search path.
 fn find_program(program: &str, folder: &Path) -> Option<PathBuf> {
     if program.contains('/') {
         return Some(folder.join(program));
     }
     let paths = std::env::var_os("PATH")?;
-    let candidates = std::env::split_paths(<_ as AsRef<OsStr>>::as_ref(&paths)).map(|part| part.join(program));
+    let candidates = std::env::split_paths(&paths).map(|part| part.join(program));
     let executable =
         |path: &PathBuf| path.metadata().is_ok_and(|data| data.is_file() && data.permissions().mode() & 0o111 != 0);
     candidates.into_iter().find(executable)

@@ -38,6 +38,9 @@ pub enum HostError {
          set GRIDASSAY_EXECUTABLE to the path of gridassay, or use the scheme in process"
     )]
     NoExecutable,
+    /// A crate's folder did not become a library.
+    #[error(transparent)]
+    Build(#[from] super::BuildError),
 }
 
 impl From<SchemeError> for HostError {

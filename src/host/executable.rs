@@ -3,7 +3,7 @@
 use std::path::{Path, PathBuf};
 use std::sync::Mutex;
 
-use super::{HostError, guard};
+use super::{HostError, guard, plugin_child};
 
 /// The variable that names the gridassay program for programs that are another.
 pub const EXECUTABLE_VARIABLE: &str = "GRIDASSAY_EXECUTABLE";
@@ -21,6 +21,7 @@ pub fn run_child_if_asked() {
     let mut arguments = std::env::args_os().skip(1);
     match arguments.next().as_deref().and_then(|first| first.to_str()) {
         Some(guard::ARGUMENT) => guard::run(arguments.collect()),
+        Some(plugin_child::ARGUMENT) => plugin_child::run(),
         _ => {
             if let Ok(path) = std::env::current_exe() {
                 set_executable(&path);

@@ -12,7 +12,9 @@ use gridassay_scheme::{
 use super::process::Process;
 use super::remote::{Failure, Remote, check_description};
 use super::wire::{Form, Wire};
-use super::{Fault, FaultKind, HostError, Identity, Route, SchemeSource, digest, executable};
+use super::{
+    Fault, FaultKind, HostError, Identity, Route, SchemeSource, crate_folder, digest, executable, plugin_child,
+};
 
 /// One conversation with one scheme. After a fault the next [`prepare`](Session::prepare) starts a fresh process.
 pub struct Session {
@@ -44,18 +46,20 @@ impl Session {
             session.identity.route = source.route.key();
             return Ok(session);
         }
+        let source = &built(source)?;
         let files = match &source.route {
             Route::Command(command) => digest::command_files(command, &source.folder),
-            _ => Vec::new(),
+            Route::Plugin { path, .. } => digest::named_file(path, &source.folder),
+            Route::Classical(_) => Vec::new(),
         };
-        let (remote, description) = start(source)?;
+        let Started { remote, description, flush_to_zero } = start(source)?;
         let identity = Identity {
             name: description.name.clone(),
             version: description.version.clone(),
             route: source.route.key(),
             digest: digest::joint_digest(&files),
             files,
-            flush_to_zero: None,
+            flush_to_zero,
         };
         let runner = Runner::Process(Box::new(remote));
         let source = Some(source.clone());
@@ -108,7 +112,7 @@ impl Session {
         let mut case = case.clone();
         case.arrays = self.encoding();
         if let (Runner::Gone, Some(source)) = (&self.runner, &self.source) {
-            let (remote, description) = start(source)?;
+            let Started { remote, description, .. } = start(source)?;
             if description != self.description {
                 let reason = "after a restart it is another than before".to_owned();
                 return Err(fault(source, FaultKind::BadDescription { reason }, "start-up", remote));
@@ -228,29 +232,60 @@ impl Session {
     }
 }
 
+/// A crate's folder becomes the library that is built of it; everything else stays as it is.
+fn built(source: &SchemeSource) -> Result<SchemeSource, HostError> {
+    let mut source = source.clone();
+    if let Route::Plugin { path, .. } = &mut source.route {
+        let folder = source.folder.join(&*path);
+        if folder.is_dir() {
+            *path = crate_folder::build(&folder)?;
+        }
+    }
+    Ok(source)
+}
+
+/// A process that has described itself.
+struct Started {
+    remote: Remote,
+    description: Description,
+    flush_to_zero: Option<bool>,
+}
+
 /// Starts a process and has it describe itself.
-fn start(source: &SchemeSource) -> Result<(Remote, Description), HostError> {
+fn start(source: &SchemeSource) -> Result<Started, HostError> {
+    let program = executable::executable()?;
     let (command, form): (Vec<OsString>, Form) = match &source.route {
         Route::Command(command) => (command.iter().map(OsString::from).collect(), Form::Lines(ArrayEncoding::Text)),
-        Route::Plugin { .. } | Route::Classical(_) => (Vec::new(), Form::Frames),
+        _ => (vec![program.clone().into(), plugin_child::ARGUMENT.into()], Form::Frames),
     };
-    let program = executable::executable()?;
     let process = Process::start(&program, &command, &source.folder, source.limits).map_err(|kind| {
         let (scheme, during) = (shown(source), "start-up".to_owned());
         HostError::Fault(Box::new(Fault { kind, scheme, during, stderr: String::new() }))
     })?;
     let mut remote = Remote::new(Wire::new(process, form));
-    let described = remote.describe().and_then(|found| {
-        check_description(&found)?;
-        Ok(found)
-    });
-    match described {
-        Ok(description) => Ok((remote, description)),
+    match introduce(source, &mut remote) {
+        Ok((description, flush_to_zero)) => Ok(Started { remote, description, flush_to_zero }),
+        Err(kind) => Err(fault(source, kind, "start-up", remote)),
+    }
+}
+
+/// Loads the library of a plugin, and asks who the scheme is.
+fn introduce(source: &SchemeSource, remote: &mut Remote) -> Result<(Description, Option<bool>), FaultKind> {
+    let mut flush_to_zero = None;
+    if let Route::Plugin { path, name } = &source.route {
+        let path = source.folder.join(path);
+        flush_to_zero = match remote.load(&path.to_string_lossy(), name.as_deref()) {
+            Ok(flushes) => Some(flushes),
+            Err(Failure::Refused(error)) => return Err(FaultKind::Library { reason: error.message().to_owned() }),
+            Err(Failure::Fault(kind)) => return Err(kind),
+        };
+    }
+    match remote.describe() {
+        Ok(description) => check_description(&description).map(|()| (description, flush_to_zero)),
         Err(Failure::Refused(error)) => {
-            let reason = format!("it answers `describe` with an error: {error}");
-            Err(fault(source, FaultKind::BadDescription { reason }, "start-up", remote))
+            Err(FaultKind::BadDescription { reason: format!("it answers `describe` with an error: {error}") })
         }
-        Err(Failure::Fault(kind)) => Err(fault(source, kind, "start-up", remote)),
+        Err(Failure::Fault(kind)) => Err(kind),
     }
 }
 

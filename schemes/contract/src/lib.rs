@@ -40,6 +40,7 @@
 //! }
 //! ```
 
+pub mod abi;
 mod case;
 pub mod conversation;
 mod description;
