@@ -21,6 +21,8 @@ pub struct OneStepDiffusion {
     pub implicit_part: f64,
     /// The part of the step by which the boundary data of the new time are late; 0 in a right scheme.
     pub boundary_delay: f64,
+    /// The part of a cell that belongs to a node on a wall with a prescribed gradient; 1/2 in a right scheme.
+    pub wall_volume: f64,
     case: Prepared,
     system: System,
     increment: Vec<f64>,
@@ -46,7 +48,7 @@ impl OneStepDiffusion {
     /// The scheme with that implicit part.
     pub fn new(name: &'static str, implicit_part: f64) -> Self {
         let (case, increment) = (Prepared::default(), Vec::new());
-        Self { name, implicit_part, boundary_delay: 0.0, case, system: System::Explicit, increment }
+        Self { name, implicit_part, boundary_delay: 0.0, wall_volume: 0.5, case, system: System::Explicit, increment }
     }
 
     /// Explicit Euler, p = 0: first order in time, second where r stays fixed; stable for r <= 1/2.
@@ -104,7 +106,8 @@ impl OneStepDiffusion {
                     let new = if p == 0.0 { 0.0 } else { harness.boundary(new_time, side, 0)?.gradient[0][0] };
                     let gradient = (1.0 - p) * old + p * new;
                     let source = if self.case.source { self.increment[wall] } else { 0.0 };
-                    self.increment[wall] = source + 2.0 * r * ((u[inner] - u[wall]) + self.case.spacing * gradient);
+                    self.increment[wall] =
+                        source + r / self.wall_volume * ((u[inner] - u[wall]) + self.case.spacing * gradient);
                 }
                 None => {}
             }
@@ -164,7 +167,8 @@ impl OneStep for OneStepDiffusion {
             if kind == Some(BoundaryKind::Value) {
                 (diagonal[row], neighbour[row]) = (1.0, 0.0);
             } else {
-                neighbour[row] = 2.0 * off;
+                neighbour[row] = off / self.wall_volume;
+                diagonal[row] = 1.0 - neighbour[row];
             }
         }
         self.system = System::Walls(Tridiagonal::new(&lower, &diagonal, &upper));
