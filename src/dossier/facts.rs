@@ -72,13 +72,25 @@ fn order_findings(record: &OrderRecord) -> Vec<Fact> {
     let mut facts = Vec::new();
     let several = record.observed.len() > 1;
     for (field, norms) in &record.observed {
-        for (norm, observed) in norms {
-            let name = words::norm_name(norm);
-            let of_field = if several { format!(", {}", visible(field)) } else { String::new() };
-            facts.push(fact(format!("Observed order in {name}{of_field}"), observed_parts(record, observed)));
+        let of_field = if several { format!(", {}", visible(field)) } else { String::new() };
+        for (names, parts) in alike(norms.iter().map(|(norm, observed)| (norm, observed_parts(record, observed)))) {
+            facts.push(fact(format!("Observed order in {names}{of_field}"), parts));
         }
     }
     facts
+}
+
+/// Neighbouring norms of which the same is said, said once.
+fn alike<'a>(norms: impl Iterator<Item = (&'a String, Vec<Part>)>) -> Vec<(String, Vec<Part>)> {
+    let mut said: Vec<(String, Vec<Part>)> = Vec::new();
+    for (norm, parts) in norms {
+        let name = words::norm_name(norm);
+        match said.last_mut() {
+            Some((names, last)) if *last == parts => *names = format!("{names}, {name}"),
+            _ => said.push((name.into(), parts)),
+        }
+    }
+    said
 }
 
 fn observed_parts(record: &OrderRecord, observed: &Observed) -> Vec<Part> {
@@ -98,7 +110,7 @@ fn observed_parts(record: &OrderRecord, observed: &Observed) -> Vec<Part> {
         parts.push(text(" cells"));
     }
     if let Some(note) = &observed.note {
-        parts.push(text(format!(". {}", visible(note))));
+        parts.push(text(format!(": {}", visible(note))));
     }
     parts
 }

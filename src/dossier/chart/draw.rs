@@ -98,8 +98,9 @@ impl Sheet<'_, '_> {
     fn draw(mut self) -> Result<(), DrawError> {
         let (width, height) = (f64::from(self.size.width), f64::from(self.size.height));
         self.canvas.fill(Frame { left: 0.0, top: 0.0, right: width, bottom: height }, PAPER)?;
-        let top = self.legend()?;
         let letters = self.size.text;
+        let labels = self.chart.marks.iter().filter(|mark| mark.axis == Across::X).count();
+        let top = self.legend()? + letters * 1.35 * labels as f64;
         self.frame = Frame { left: letters * 5.2, top, right: width - letters, bottom: height - letters * 3.6 };
         self.bands()?;
         self.axes()?;
@@ -183,11 +184,13 @@ impl Sheet<'_, '_> {
                 Across::X => {
                     let x = self.across(mark.value);
                     self.canvas.line(&[(x, frame.top), (x, frame.bottom)], 1.6, INK)?;
-                    let y = frame.top + letters * (0.9 + 1.3 * row);
-                    let left_side = x > (frame.left + frame.right) / 2.0;
-                    let (at, hang) = if left_side { (x - 6.0, Hang::Right) } else { (x + 6.0, Hang::Left) };
-                    self.canvas.text(&mark.label, (at, y), letters * 0.94, hang, INK)?;
+                    // Labels stand above the chart, where no curve crosses them.
                     row += 1.0;
+                    let y = frame.top - letters * (1.35 * row - 0.6);
+                    self.canvas.line(&[(x, y + letters * 0.6), (x, frame.top)], 1.6, INK)?;
+                    let leftwards = x > (frame.left + frame.right) / 2.0;
+                    let (at, hang) = if leftwards { (x + 2.0, Hang::Right) } else { (x - 2.0, Hang::Left) };
+                    self.canvas.text(&mark.label, (at, y), letters * 0.94, hang, INK)?;
                 }
             }
         }
