@@ -3,7 +3,7 @@
 // Without scripts the drawn figure stays.
 
 const SVG = "http://www.w3.org/2000/svg";
-const SIZE = { width: 460, height: 300, left: 66, right: 13, top: 12, bottom: 46 };
+const SIZE = { left: 66, right: 13, top: 12, bottom: 46 };
 
 function element(parent, name, attributes = {}, text = null) {
   const space = parent.namespaceURI === SVG || name === "svg" ? SVG : "http://www.w3.org/1999/xhtml";
@@ -119,6 +119,16 @@ class Chart {
     this.legend();
     this.buttons();
     this.listen();
+    // As wide as its place, so that letters have their size on a phone too; again when the place changes or is unfolded.
+    new ResizeObserver(() => this.fit()).observe(this.drawing);
+    this.fit();
+  }
+
+  fit() {
+    const width = Math.min(Math.max(this.drawing.clientWidth || 460, 280), 620);
+    if (width === this.width) return;
+    this.width = width;
+    this.height = Math.round(width * 0.52 + 62);
     this.draw();
   }
 
@@ -171,9 +181,9 @@ class Chart {
     for (const [key, value] of Object.entries({ tabindex: 0, role: "slider", "aria-label": this.data.title, "aria-orientation": "horizontal" })) {
       drawing.setAttribute(key, value);
     }
-    drawing.addEventListener("pointermove", (event) => {
+    const point = (event) => {
       const box = drawing.getBoundingClientRect();
-      const x = ((event.clientX - box.left) / box.width) * SIZE.width;
+      const x = ((event.clientX - box.left) / box.width) * this.width;
       const stops = this.stops();
       let best = null;
       stops.forEach((value, index) => {
@@ -181,7 +191,9 @@ class Chart {
         if (best === null || distance < best[0]) best = [distance, index];
       });
       this.show(best && best[1]);
-    });
+    };
+    drawing.addEventListener("pointermove", point);
+    drawing.addEventListener("pointerdown", point);
     drawing.addEventListener("pointerleave", () => { if (document.activeElement !== drawing) this.show(null); });
     drawing.addEventListener("keydown", (event) => {
       const last = this.stops().length - 1;
@@ -224,17 +236,17 @@ class Chart {
     return axes;
   }
 
-  across(value) { return SIZE.left + place(this.axes.x, value) * (SIZE.width - SIZE.left - SIZE.right); }
+  across(value) { return SIZE.left + place(this.axes.x, value) * (this.width - SIZE.left - SIZE.right); }
 
-  down(value) { return SIZE.height - SIZE.bottom - place(this.axes.y, value) * (SIZE.height - this.top - SIZE.bottom); }
+  down(value) { return this.height - SIZE.bottom - place(this.axes.y, value) * (this.height - this.top - SIZE.bottom); }
 
   draw() {
     this.axes = this.currentAxes();
     const svg = document.createElementNS(SVG, "svg");
-    svg.setAttribute("viewBox", `0 0 ${SIZE.width} ${SIZE.height}`);
+    svg.setAttribute("viewBox", `0 0 ${this.width} ${this.height}`);
     svg.setAttribute("class", "plot");
     svg.setAttribute("aria-hidden", "true");
-    const [left, right, top, bottom] = [SIZE.left, SIZE.width - SIZE.right, this.top, SIZE.height - SIZE.bottom];
+    const [left, right, top, bottom] = [SIZE.left, this.width - SIZE.right, this.top, this.height - SIZE.bottom];
     const clip = element(element(svg, "defs"), "clipPath", { id: `clip-${this.data.id}` });
     element(clip, "rect", { x: left, y: top - 4, width: right - left + 4, height: bottom - top + 8 });
     for (const band of this.data.bands) {
@@ -252,7 +264,7 @@ class Chart {
       element(svg, "text", { x: left - 8, y: y + 4.5, "text-anchor": "end" }, label);
     }
     element(svg, "path", { class: "axis", d: `M${left} ${top}V${bottom}H${right}` });
-    element(svg, "text", { class: "title", x: (left + right) / 2, y: SIZE.height - 6, "text-anchor": "middle" }, this.data.x.label);
+    element(svg, "text", { class: "title", x: (left + right) / 2, y: this.height - 6, "text-anchor": "middle" }, this.data.x.label);
     const middle = (top + bottom) / 2;
     element(svg, "text", { x: 13, y: middle, "text-anchor": "middle", transform: `rotate(-90 13 ${middle})` }, this.data.y.label);
     const inner = element(svg, "g", { "clip-path": `url(#clip-${this.data.id})` });
@@ -286,7 +298,7 @@ class Chart {
     const path = places.map(([x, y], i) => `${i ? "L" : "M"}${x.toFixed(2)} ${y.toFixed(2)}`).join("");
     element(parent, "path", { d: path, fill: "none", stroke: colour(series), "stroke-width": series.role === "measured" ? 1.8 : 1.5, "stroke-dasharray": dashes[series.role] ?? "none", "stroke-linejoin": "round" });
     if (series.role !== "measured") return;
-    const shown = places.filter(([x]) => x >= SIZE.left - 1 && x <= SIZE.width - SIZE.right + 1);
+    const shown = places.filter(([x]) => x >= SIZE.left - 1 && x <= this.width - SIZE.right + 1);
     const every = Math.max(Math.ceil(shown.length / 20), 1);
     const first = every > 1 ? Math.floor((series.slot * every) / 3) : 0;
     for (let i = first; i < shown.length; i += every) marker(parent, series.slot, ...shown[i], colour(series));
@@ -307,7 +319,7 @@ class Chart {
       return;
     }
     const x = stops[index], across = this.across(x);
-    element(this.cursor, "path", { class: "cursor", d: `M${across} ${this.top}V${SIZE.height - SIZE.bottom}` });
+    element(this.cursor, "path", { class: "cursor", d: `M${across} ${this.top}V${this.height - SIZE.bottom}` });
     const say = (name, value) => {
       const span = element(this.readout, "span", {}, `${name} `);
       element(span, "data", { value: String(value) }, typeset(value));
@@ -318,7 +330,7 @@ class Chart {
       if (point === undefined) continue;
       say(series.name, point[1]);
       const y = this.down(point[1]);
-      if (y >= this.top - 1 && y <= SIZE.height - SIZE.bottom + 1) {
+      if (y >= this.top - 1 && y <= this.height - SIZE.bottom + 1) {
         element(this.cursor, "circle", { cx: across, cy: y, r: 5.5, fill: "none", stroke: colour(series), "stroke-width": 1.6 });
       }
     }

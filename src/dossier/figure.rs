@@ -45,7 +45,8 @@ impl Figure {
     /// The drawing cannot be turned into pixels.
     pub(crate) fn png(&self) -> Result<Vec<u8>, DossierError> {
         let failed = |reason: String| DossierError::Figure { figure: self.chart.id.clone(), reason };
-        let options = usvg::Options { fontdb: FONTS.clone(), font_family: "Assay Sans".into(), ..usvg::Options::default() };
+        let options =
+            usvg::Options { fontdb: FONTS.clone(), font_family: "Assay Sans".into(), ..usvg::Options::default() };
         let tree = usvg::Tree::from_str(&self.svg, &options).map_err(|error| failed(error.to_string()))?;
         let size = tree.size();
         let (width, height) = ((size.width() * SHARPNESS) as u32, (size.height() * SHARPNESS) as u32);

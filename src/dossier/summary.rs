@@ -75,7 +75,13 @@ fn reasons(out: &mut String, results: &Results) {
     for verdict in open.iter().take(MOST) {
         let scheme = if several { format!("{}, ", sentence(&verdict.scheme)) } else { String::new() };
         let name = format!("{scheme}{}", sentence(&verdict.claim));
-        let _ = write!(out, "- {} **{name}** {}: {}", mark(verdict.verdict), verdict.verdict.word(), sentence(&verdict.reason));
+        let _ = write!(
+            out,
+            "- {} **{name}** {}: {}",
+            mark(verdict.verdict),
+            verdict.verdict.word(),
+            sentence(&verdict.reason)
+        );
         if let Some(by) = &verdict.decided_by {
             let _ = write!(out, " What would decide it: {}", sentence(by));
         }

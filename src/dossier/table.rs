@@ -169,7 +169,13 @@ fn modes_tables(record: &ModesRecord, most: usize) -> Vec<Table> {
         })
         .collect();
     let of = (rows.len() < record.modes.len()).then_some(record.modes.len());
-    vec![Table { id: "modes".into(), caption: "Modes, per step; speeds relative to the exact ones".into(), columns, rows, of }]
+    vec![Table {
+        id: "modes".into(),
+        caption: "Modes, per step; speeds relative to the exact ones".into(),
+        columns,
+        rows,
+        of,
+    }]
 }
 
 fn stability_tables(record: &StabilityRecord, most: usize) -> Vec<Table> {

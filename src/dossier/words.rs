@@ -45,7 +45,8 @@ pub(crate) fn norm_name(norm: &str) -> &'static str {
 
 /// The norms of which any level has a number, for one field.
 pub(crate) fn norms_present(record: &OrderRecord, field: &str) -> Vec<&'static str> {
-    let has = |norm: &str| record.levels.iter().any(|level| level.errors.get(field).and_then(|n| n.get(norm)).is_some());
+    let has =
+        |norm: &str| record.levels.iter().any(|level| level.errors.get(field).and_then(|n| n.get(norm)).is_some());
     let present: Vec<_> = Norms::NAMES.into_iter().filter(|norm| has(norm)).collect();
     // A field without any number still gets its table, with the norms empty.
     if present.is_empty() { Norms::NAMES.to_vec() } else { present }

@@ -111,7 +111,9 @@ pub fn order(scheme: &Scheme, cells: &[usize], c: f64) -> OrderRecord {
         let observed = Observed {
             order,
             interval: order.map(|order| [order - 0.013_7, order + 0.011_9]),
-            note: order.is_none().then(|| "two levels give one slope, and one slope cannot show that it has settled".into()),
+            note: order
+                .is_none()
+                .then(|| "two levels give one slope, and one slope cannot show that it has settled".into()),
             used: (0..levels.len()).collect(),
             slopes,
         };
@@ -217,7 +219,9 @@ pub fn one_scheme() -> Results {
     let mut stopped = study("order-3", scheme.name, Study::Order(order(scheme, &[32], 0.5)));
     stopped.stopped = Some("The scheme ended with signal 11 on 64 cells, after 12 of 45 steps.".into());
     let mut noted = study("order-1", scheme.name, Study::Order(order(scheme, &[32, 64, 128, 256], 0.5)));
-    noted.notes.push("The velocity is positive throughout: an upwind switch that never switches would not be seen.".into());
+    noted
+        .notes
+        .push("The velocity is positive throughout: an upwind switch that never switches would not be seen.".into());
     let studies = vec![
         noted,
         study("order-2", scheme.name, Study::Order(order(scheme, &[32, 64], 0.5))),
@@ -250,7 +254,14 @@ pub fn one_scheme() -> Results {
             "Two levels give one slope, and one slope cannot show that it has settled.",
             &["order-2"],
         ),
-        verdict("order-4", scheme.name, "Order 2 on 32, 64, 128 cells", Verdict::Undecided, "The scheme crashed.", &["order-3"]),
+        verdict(
+            "order-4",
+            scheme.name,
+            "Order 2 on 32, 64, 128 cells",
+            Verdict::Undecided,
+            "The scheme crashed.",
+            &["order-3"],
+        ),
         verdict(
             "modes-1",
             scheme.name,
@@ -286,10 +297,24 @@ pub fn many_schemes(count: usize) -> Results {
         studies.push(study(&id("modes"), name, Study::Modes(modes(scheme, 256, 0.5))));
         studies.push(study(&id("stability"), name, Study::Stability(stability(scheme))));
         let outcome = if index % 5 == 3 { Verdict::Refuted } else { Verdict::Upheld };
-        verdicts.push(verdict(&id("order"), name, "Order 2 in L2 on travelling-sine", outcome, "As measured.", &[&id("order")]));
+        verdicts.push(verdict(
+            &id("order"),
+            name,
+            "Order 2 in L2 on travelling-sine",
+            outcome,
+            "As measured.",
+            &[&id("order")],
+        ));
         verdicts.push(verdict(&id("modes"), name, "Never amplifies", Verdict::Upheld, "As measured.", &[&id("modes")]));
         let outcome = if index % 7 == 2 { Verdict::Undecided } else { Verdict::Upheld };
-        verdicts.push(verdict(&id("stability"), name, "Stable up to Courant number 1", outcome, "As scanned.", &[&id("stability")]));
+        verdicts.push(verdict(
+            &id("stability"),
+            name,
+            "Stable up to Courant number 1",
+            outcome,
+            "As scanned.",
+            &[&id("stability")],
+        ));
         schemes.insert(name.to_owned(), scheme_record(name));
     }
     let mut results = frame(scheme_record("classical schemes"), studies, verdicts);
@@ -298,7 +323,8 @@ pub fn many_schemes(count: usize) -> Results {
 }
 
 /// What a hostile or careless scheme may put into its names and sentences.
-pub const HOSTILE: &str = "<script>alert(1)</script>\u{1b}[31m\u{0}|`x`\n\"'&amp; 100% $a_1^2$ \\input{x} #1 @all \u{202e}x";
+pub const HOSTILE: &str =
+    "<script>alert(1)</script>\u{1b}[31m\u{0}|`x`\n\"'&amp; 100% $a_1^2$ \\input{x} #1 @all \u{202e}x";
 
 /// Results in which every text is hostile, numbers are missing, and nothing is measured twice.
 pub fn hostile() -> Results {
@@ -314,7 +340,10 @@ pub fn hostile() -> Results {
         level.note = Some(text.clone());
     }
     order.levels[1].errors.insert("u".into(), Norms::default());
-    order.observed.insert(text.clone(), BTreeMap::from([("l1".into(), Observed { note: Some(text.clone()), ..Observed::default() })]));
+    order.observed.insert(
+        text.clone(),
+        BTreeMap::from([("l1".into(), Observed { note: Some(text.clone()), ..Observed::default() })]),
+    );
     order.parameters.insert(text.clone(), vec![1.0, -2.0]);
     let mut modes = modes(scheme, 16, 0.5);
     modes.linear = None;

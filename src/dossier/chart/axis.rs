@@ -42,7 +42,8 @@ impl Axis {
         let [low, high] = self.range;
         let rough = (high - low) / 5.0;
         let magnitude = 10f64.powf(rough.log10().floor());
-        let nice = [1.0, 2.0, 2.5, 5.0, 10.0].into_iter().find(|nice| nice * magnitude >= rough * 0.999).unwrap_or(10.0);
+        let nice =
+            [1.0, 2.0, 2.5, 5.0, 10.0].into_iter().find(|nice| nice * magnitude >= rough * 0.999).unwrap_or(10.0);
         let step = nice * magnitude;
         let mut decimals = (-step.log10().floor()).max(0.0) as usize;
         if nice == 2.5 {

@@ -88,7 +88,14 @@ impl<'a> Canvas<'a> {
         self.area.draw(&Rectangle::new(corners, colour.filled()))
     }
 
-    pub(super) fn text(&self, text: &str, at: (f64, f64), size: f64, hang: Hang, colour: RGBColor) -> Result<(), DrawError> {
+    pub(super) fn text(
+        &self,
+        text: &str,
+        at: (f64, f64),
+        size: f64,
+        hang: Hang,
+        colour: RGBColor,
+    ) -> Result<(), DrawError> {
         let (horizontal, turn) = match hang {
             Hang::Left => (HPos::Left, FontTransform::None),
             Hang::Centre => (HPos::Center, FontTransform::None),

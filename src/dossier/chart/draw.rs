@@ -161,7 +161,11 @@ impl Sheet<'_, '_> {
             self.canvas.line(&[(frame.left - 4.0, y), (frame.left, y)], 1.0, INK)?;
             self.canvas.text(&tick.label, (frame.left - 7.0, y), letters, Hang::Right, INK)?;
         }
-        self.canvas.line(&[(frame.left, frame.top), (frame.left, frame.bottom), (frame.right, frame.bottom)], 1.0, INK)?;
+        self.canvas.line(
+            &[(frame.left, frame.top), (frame.left, frame.bottom), (frame.right, frame.bottom)],
+            1.0,
+            INK,
+        )?;
         let middle = (frame.left + frame.right) / 2.0;
         self.canvas.text(&self.chart.x.label, (middle, frame.bottom + letters * 2.7), letters, Hang::Centre, INK)?;
         let middle = (frame.top + frame.bottom) / 2.0;

@@ -127,7 +127,8 @@ fn phase_speed(id: &str, curves: &[Curve<'_>]) -> Option<Chart> {
     Some(Chart {
         id: format!("{id}-phase-speed"),
         title: "Phase speed, numerical over exact".into(),
-        description: "Numerical phase speed divided by the exact one over the wavenumber; the exact ratio is one.".into(),
+        description: "Numerical phase speed divided by the exact one over the wavenumber; the exact ratio is one."
+            .into(),
         x: theta_axis(curves),
         y: Axis {
             label: "phase speed / exact phase speed".into(),

@@ -28,9 +28,7 @@ static LAYOUT: LazyLock<Environment<'static>> = LazyLock::new(|| {
     layout.set_undefined_behavior(UndefinedBehavior::Strict);
     layout.set_auto_escape_callback(|_| AutoEscape::Html);
     layout.set_formatter(|out, state, value| match value.as_str() {
-        Some(text) if !value.is_safe() => {
-            minijinja::escape_formatter(out, state, &Value::from(clean::visible(text)))
-        }
+        Some(text) if !value.is_safe() => minijinja::escape_formatter(out, state, &Value::from(clean::visible(text))),
         // A bare f64 would be printed with whatever digits it has: numbers go through `num`.
         None if value.kind() == ValueKind::Number && !value.is_integer() => {
             Err(Error::new(ErrorKind::InvalidOperation, "a number must pass through `num`"))

@@ -90,7 +90,8 @@ struct FigureView<'a> {
 /// What the page of `dossier` shows.
 pub(super) fn view<'a>(dossier: &'a Dossier<'a>) -> PageView<'a> {
     let results = dossier.results;
-    let schemes: Vec<_> = words::schemes(results).into_iter().map(|(name, record)| scheme(dossier, name, record)).collect();
+    let schemes: Vec<_> =
+        words::schemes(results).into_iter().map(|(name, record)| scheme(dossier, name, record)).collect();
     let command: Vec<_> = results.run.command_line.iter().map(|argument| shell(argument)).collect();
     PageView {
         name: &results.scheme.name,
@@ -141,12 +142,12 @@ fn claim<'a>(dossier: &'a Dossier<'a>, verdict: &'a VerdictRecord) -> ClaimView<
     let kind = match first.map(|index| &studies[index].study) {
         Some(study) => study.kind(),
         // Without evidence the claim's id still tells its kind: it begins with it.
-        None => ["order", "modes", "stability"].into_iter().find(|kind| verdict.claim.starts_with(kind)).unwrap_or("other"),
+        None => {
+            ["order", "modes", "stability"].into_iter().find(|kind| verdict.claim.starts_with(kind)).unwrap_or("other")
+        }
     };
-    let evidence = verdict.evidence.iter().map(|id| Link {
-        anchor: place(id).map(|index| dossier.ids[index].clone()),
-        text: id,
-    });
+    let evidence =
+        verdict.evidence.iter().map(|id| Link { anchor: place(id).map(|index| dossier.ids[index].clone()), text: id });
     ClaimView {
         id: claim_id(verdict),
         verdict: verdict.verdict.word(),
@@ -156,12 +157,7 @@ fn claim<'a>(dossier: &'a Dossier<'a>, verdict: &'a VerdictRecord) -> ClaimView<
     }
 }
 
-fn study_view<'a>(
-    results: &'a Results,
-    study: &'a StudyRecord,
-    id: &'a str,
-    figures: &'a [Figure],
-) -> StudyView<'a> {
+fn study_view<'a>(results: &'a Results, study: &'a StudyRecord, id: &'a str, figures: &'a [Figure]) -> StudyView<'a> {
     let resting = results.verdicts.iter().filter(|verdict| verdict.evidence.contains(&study.id));
     let resting: Vec<_> = resting.collect();
     let not_upheld = resting.iter().any(|verdict| verdict.verdict != Verdict::Upheld);
