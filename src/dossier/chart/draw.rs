@@ -2,7 +2,7 @@
 
 use plotters::style::RGBColor;
 
-use super::canvas::{Canvas, DrawError, FAMILY, Frame, Hang, Marker, clip};
+use super::canvas::{Canvas, DrawError, FAMILY, Frame, Hang, Marker, Piece, Place, clip};
 use super::{Across, Chart, Role, Series};
 
 /// Colours of the curves: told apart by people of every colour vision, and by lightness in print; markers differ as well.
@@ -220,8 +220,8 @@ impl Sheet<'_, '_> {
     }
 
     /// Draws pieces of a curve, joined where one begins where the other ended.
-    fn curve(&self, series: &Series, pieces: &[((f64, f64), (f64, f64))]) -> Result<(), DrawError> {
-        let mut paths: Vec<Vec<(f64, f64)>> = Vec::new();
+    fn curve(&self, series: &Series, pieces: &[Piece]) -> Result<(), DrawError> {
+        let mut paths: Vec<Vec<Place>> = Vec::new();
         for &(from, to) in pieces {
             match paths.last_mut() {
                 Some(path) if path.last() == Some(&from) => path.push(to),
