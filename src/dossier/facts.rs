@@ -55,7 +55,7 @@ pub(crate) fn findings(study: &StudyRecord) -> Vec<Fact> {
     match &study.study {
         Study::Order(record) => order_findings(record),
         Study::Modes(record) => modes_findings(record),
-        Study::Stability(record) => stability_findings(record),
+        Study::Stability(record) => stability_findings(record, study.stopped.is_some()),
     }
 }
 
@@ -72,13 +72,25 @@ fn order_findings(record: &OrderRecord) -> Vec<Fact> {
     let mut facts = Vec::new();
     let several = record.observed.len() > 1;
     for (field, norms) in &record.observed {
-        for (norm, observed) in norms {
-            let name = words::norm_name(norm);
-            let of_field = if several { format!(", {}", visible(field)) } else { String::new() };
-            facts.push(fact(format!("Observed order in {name}{of_field}"), observed_parts(record, observed)));
+        let of_field = if several { format!(", {}", visible(field)) } else { String::new() };
+        for (names, parts) in alike(norms.iter().map(|(norm, observed)| (norm, observed_parts(record, observed)))) {
+            facts.push(fact(format!("Observed order in {names}{of_field}"), parts));
         }
     }
     facts
+}
+
+/// Neighbouring norms of which the same is said, said once.
+fn alike<'a>(norms: impl Iterator<Item = (&'a String, Vec<Part>)>) -> Vec<(String, Vec<Part>)> {
+    let mut said: Vec<(String, Vec<Part>)> = Vec::new();
+    for (norm, parts) in norms {
+        let name = words::norm_name(norm);
+        match said.last_mut() {
+            Some((names, last)) if *last == parts => *names = format!("{names}, {name}"),
+            _ => said.push((name.into(), parts)),
+        }
+    }
+    said
 }
 
 fn observed_parts(record: &OrderRecord, observed: &Observed) -> Vec<Part> {
@@ -98,7 +110,7 @@ fn observed_parts(record: &OrderRecord, observed: &Observed) -> Vec<Part> {
         parts.push(text(" cells"));
     }
     if let Some(note) = &observed.note {
-        parts.push(text(format!(". {}", visible(note))));
+        parts.push(text(format!(": {}", visible(note))));
     }
     parts
 }
@@ -132,14 +144,14 @@ fn modes_findings(record: &ModesRecord) -> Vec<Fact> {
             text("; rounding allows "),
             Part::Number(trial.allowed),
         ];
-        facts.push(fact("Largest deviations of the trial", parts));
+        facts.push(fact("Deviations of the trial", parts));
     }
     if let Some(uncertainty) = record.uncertainty {
         facts.push(fact("Uncertainty of G", vec![Part::Number(uncertainty)]));
     }
     if let Some(equation) = &record.modified_equation {
         if let Some(order) = equation.formal_order {
-            facts.push(fact("Order read from small wavenumbers", vec![Part::Count(order as u64)]));
+            facts.push(fact("Order at small wavenumbers", vec![Part::Count(order as u64)]));
         }
         for (derivative, coefficient) in &equation.terms {
             let parts =
@@ -150,12 +162,12 @@ fn modes_findings(record: &ModesRecord) -> Vec<Fact> {
     facts
 }
 
-fn stability_findings(record: &StabilityRecord) -> Vec<Fact> {
+fn stability_findings(record: &StabilityRecord, stopped: bool) -> Vec<Fact> {
     let words = record.number.words();
     let limit = match record.stable_up_to {
         Some(0.0) => vec![text("no step is stable")],
         Some(limit) => vec![text(format!("{words} ")), Part::Number(limit)],
-        None if record.scan.is_empty() => vec![text("not determined")],
+        None if stopped || record.scan.is_empty() => vec![text("not determined")],
         None => vec![text(format!("no limit found up to {words} ")), Part::Number(record.scanned_up_to)],
     };
     let mut facts = vec![fact("Stable up to", limit)];
@@ -183,7 +195,7 @@ fn stability_findings(record: &StabilityRecord) -> Vec<Fact> {
         facts.push(fact("Weak growth", parts));
     }
     if let Some(bound) = record.refused_from {
-        facts.push(fact("The scheme itself refuses steps from", vec![Part::Number(bound)]));
+        facts.push(fact("Refused by the scheme from", vec![Part::Number(bound)]));
     }
     facts
 }
@@ -200,7 +212,7 @@ fn order_settings(record: &OrderRecord) -> Vec<Fact> {
     }
     numbers(&mut facts, " on the coarsest level", record.courant, record.diffusion_number);
     if let Some(power) = record.step_power {
-        facts.push(fact("Step falls with cell width to the power", vec![Part::Number(power)]));
+        facts.push(fact("Step falls as cell width to", vec![text("the power "), Part::Number(power)]));
     }
     parameters(&mut facts, &record.parameters);
     facts

@@ -34,6 +34,22 @@ pub(crate) fn latex(value: f64, digits: usize) -> String {
     }
 }
 
+/// Like [`typeset`], with a power of ten whatever the size, for columns that run over decades.
+pub(crate) fn typeset_power(value: f64, digits: usize) -> String {
+    match powers(value, digits) {
+        Some((mantissa, exponent)) => format!("{}×10{}", mantissa.replace('-', "−"), superscript(exponent)),
+        None => typeset(value, digits),
+    }
+}
+
+/// Like [`latex`], with a power of ten whatever the size.
+pub(crate) fn latex_power(value: f64, digits: usize) -> String {
+    match powers(value, digits) {
+        Some((mantissa, exponent)) => format!("{mantissa} \\times 10^{{{exponent}}}"),
+        None => latex(value, digits),
+    }
+}
+
 /// `value` with all its digits: reading it gives the same bits back.
 pub(crate) fn exact(value: f64) -> String {
     // The shortest text that reads back, in the form that the results file has.
@@ -55,6 +71,21 @@ pub(crate) fn superscript(power: i32) -> String {
         .collect()
 }
 
+/// Like [`typeset`], without the zeros that a short number would end with: for numbers that stand alone, not in a column.
+pub(crate) fn typeset_short(value: f64) -> String {
+    typeset(value, digits_needed(value))
+}
+
+/// Like [`plain`], without the zeros that a short number would end with.
+pub(crate) fn plain_short(value: f64) -> String {
+    plain(value, digits_needed(value))
+}
+
+/// How many significant digits show `value` exactly, at most [`DIGITS`].
+fn digits_needed(value: f64) -> usize {
+    (1..DIGITS).find(|&digits| format!("{value:.*e}", digits - 1).parse() == Ok(value)).unwrap_or(DIGITS)
+}
+
 enum Split {
     Word(&'static str),
     Plain(String),
@@ -71,16 +102,24 @@ fn split(value: f64, digits: usize) -> Split {
     if value == 0.0 {
         return Split::Plain("0".into());
     }
-    // Rust's own formatting rounds correctly; the exponent is read after rounding, so that 0.99999999 becomes 1.0000.
-    let rounded = format!("{value:.*e}", digits.saturating_sub(1));
-    let Some((mantissa, exponent)) = rounded.split_once('e') else { return Split::Plain(rounded) };
-    let exponent: i32 = exponent.parse().unwrap_or(0);
+    let Some((mantissa, exponent)) = powers(value, digits) else { return Split::Plain(value.to_string()) };
     if (-3..=4).contains(&exponent) {
         let decimals = (digits as i32 - 1 - exponent).max(0) as usize;
         Split::Plain(format!("{value:.decimals$}"))
     } else {
-        Split::Power { mantissa: mantissa.into(), exponent }
+        Split::Power { mantissa, exponent }
     }
+}
+
+/// Mantissa and exponent of a number other than zero; `None` for zero and what is not finite.
+fn powers(value: f64, digits: usize) -> Option<(String, i32)> {
+    if value == 0.0 || !value.is_finite() {
+        return None;
+    }
+    // Rust's own formatting rounds correctly; the exponent is read after rounding, so that 0.99999999 becomes 1.0000.
+    let rounded = format!("{value:.*e}", digits.saturating_sub(1));
+    let (mantissa, exponent) = rounded.split_once('e')?;
+    Some((mantissa.into(), exponent.parse().ok()?))
 }
 
 #[cfg(test)]
@@ -102,6 +141,7 @@ mod tests {
             assert_eq!(plain(value, 5), text);
         }
         assert_eq!(typeset(-1.5e-12, 2), "−1.5×10⁻¹²");
+        assert_eq!([0.5, 1.0, 120.0, 1.0 / 3.0].map(plain_short), ["0.5", "1", "120", "0.33333"]);
         assert_eq!(latex(1.5e-12, 2), "1.5 \\times 10^{-12}");
     }
 

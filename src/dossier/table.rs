@@ -30,6 +30,8 @@ pub(crate) struct Column {
     pub latex: String,
     /// Whether it holds numbers.
     pub numeric: bool,
+    /// Whether its numbers are written with powers of ten throughout, since they run over decades.
+    pub powers: bool,
 }
 
 /// A cell. `Number(None)` is a number that does not exist.
@@ -42,7 +44,7 @@ pub(crate) enum Cell {
 }
 
 fn column(head: &str, key: &str, latex: &str) -> Column {
-    Column { head: head.into(), key: key.into(), latex: latex.into(), numeric: true }
+    Column { head: head.into(), key: key.into(), latex: latex.into(), numeric: true, powers: false }
 }
 
 /// The tables of a study, with at most `most` rows each.
@@ -77,7 +79,7 @@ fn order_table(record: &OrderRecord, field: &str, several: bool) -> Table {
     for norm in &norms {
         let index = if *norm == "linf" { "\\infty" } else { &norm[1..] };
         let latex = format!("$\\|e\\|_{{{index}}}$");
-        columns.push(column(words::norm_symbol(norm), &format!("error_{norm}"), &latex));
+        columns.push(Column { powers: true, ..column(words::norm_symbol(norm), &format!("error_{norm}"), &latex) });
         columns.push(column("slope", &format!("slope_{norm}"), "slope"));
     }
     if notes {

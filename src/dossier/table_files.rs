@@ -60,7 +60,8 @@ pub(crate) fn latex(table: &Table) -> String {
     let heads: Vec<_> = table.columns.iter().map(|column| column.latex.as_str()).collect();
     let _ = writeln!(out, "\\begin{{tabular}}{{{alignment}}}\n\\toprule\n{} \\\\\n\\midrule", heads.join(" & "));
     for row in &table.rows {
-        let cells = row.iter().map(|cell| match cell {
+        let cells = row.iter().zip(&table.columns).map(|(cell, column)| match cell {
+            Cell::Number(Some(value)) if column.powers => format!("${}$", number::latex_power(*value, number::DIGITS)),
             Cell::Number(Some(value)) => format!("${}$", number::latex(*value, number::DIGITS)),
             Cell::Number(None) => "--".into(),
             Cell::Count(count) => format!("${count}$"),

@@ -15,6 +15,12 @@ pub(super) const FAMILY: &str = "Assay Sans, Fira Sans, Helvetica Neue, Arial, s
 pub(super) type DrawError = DrawingAreaErrorKind<std::io::Error>;
 type Area<'a> = DrawingArea<SVGBackend<'a>, plotters::coord::Shift>;
 
+/// A place in shown pixels.
+pub(super) type Place = (f64, f64);
+
+/// A straight piece of a curve.
+pub(super) type Piece = (Place, Place);
+
 /// A rectangle in shown pixels.
 #[derive(Clone, Copy, Debug)]
 pub(super) struct Frame {
@@ -135,7 +141,7 @@ fn length(value: f64) -> u32 {
 }
 
 /// Cuts a path into dashes.
-fn dashes(points: &[(f64, f64)], on: f64, off: f64) -> Vec<((f64, f64), (f64, f64))> {
+fn dashes(points: &[(f64, f64)], on: f64, off: f64) -> Vec<Piece> {
     let mut out = Vec::new();
     let (mut left, mut drawing) = (on, true);
     for pair in points.windows(2) {
@@ -160,7 +166,7 @@ fn dashes(points: &[(f64, f64)], on: f64, off: f64) -> Vec<((f64, f64), (f64, f6
 }
 
 /// The part of a segment within `frame` (the method of Liang and Barsky, 1984); `None` where none is.
-pub(super) fn clip(from: (f64, f64), to: (f64, f64), frame: Frame) -> Option<((f64, f64), (f64, f64))> {
+pub(super) fn clip(from: (f64, f64), to: (f64, f64), frame: Frame) -> Option<Piece> {
     let (dx, dy) = (to.0 - from.0, to.1 - from.1);
     let edges = [
         (-dx, from.0 - frame.left),

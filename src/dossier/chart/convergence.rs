@@ -8,7 +8,8 @@ use crate::record::{Claimed, Norms, OrderRecord, Refinement, Results};
 
 pub(super) fn charts(id: &str, record: &OrderRecord, results: &Results, study: &str) -> Vec<Chart> {
     let mut series = measured(record);
-    if series.is_empty() {
+    // One level shows no slope: its numbers are in the table.
+    if series.iter().all(|series| series.points.len() < 2) {
         return Vec::new();
     }
     let claim = words::claims_on(results, study).into_iter().find(|claimed| claimed.quantity == "order");
@@ -79,7 +80,7 @@ fn guide(claim: &Claimed, record: &OrderRecord, series: &[Series]) -> Option<Ser
     let through = [coarse[0], coarse[1] / 1.6];
     let end = through[1] * (fine[0] / coarse[0]).powf(claim.value);
     Some(Series {
-        name: format!("claimed: order {}", number::plain(claim.value, 3).trim_end_matches('0').trim_end_matches('.')),
+        name: format!("claimed: order {}", number::typeset_short(claim.value)),
         role: Role::Guide,
         slot: 0,
         points: vec![through, [fine[0], end]],

@@ -2,7 +2,7 @@
 
 use plotters::style::RGBColor;
 
-use super::canvas::{Canvas, DrawError, FAMILY, Frame, Hang, Marker, clip};
+use super::canvas::{Canvas, DrawError, FAMILY, Frame, Hang, Marker, Piece, Place, clip};
 use super::{Across, Chart, Role, Series};
 
 /// Colours of the curves: told apart by people of every colour vision, and by lightness in print; markers differ as well.
@@ -98,8 +98,9 @@ impl Sheet<'_, '_> {
     fn draw(mut self) -> Result<(), DrawError> {
         let (width, height) = (f64::from(self.size.width), f64::from(self.size.height));
         self.canvas.fill(Frame { left: 0.0, top: 0.0, right: width, bottom: height }, PAPER)?;
-        let top = self.legend()?;
         let letters = self.size.text;
+        let labels = self.chart.marks.iter().filter(|mark| mark.axis == Across::X).count();
+        let top = self.legend()? + letters * 1.35 * labels as f64;
         self.frame = Frame { left: letters * 5.2, top, right: width - letters, bottom: height - letters * 3.6 };
         self.bands()?;
         self.axes()?;
@@ -187,11 +188,13 @@ impl Sheet<'_, '_> {
                 Across::X => {
                     let x = self.across(mark.value);
                     self.canvas.line(&[(x, frame.top), (x, frame.bottom)], 1.6, INK)?;
-                    let y = frame.top + letters * (0.9 + 1.3 * row);
-                    let left_side = x > (frame.left + frame.right) / 2.0;
-                    let (at, hang) = if left_side { (x - 6.0, Hang::Right) } else { (x + 6.0, Hang::Left) };
-                    self.canvas.text(&mark.label, (at, y), letters * 0.94, hang, INK)?;
+                    // Labels stand above the chart, where no curve crosses them.
                     row += 1.0;
+                    let y = frame.top - letters * (1.35 * row - 0.6);
+                    self.canvas.line(&[(x, y + letters * 0.6), (x, frame.top)], 1.6, INK)?;
+                    let leftwards = x > (frame.left + frame.right) / 2.0;
+                    let (at, hang) = if leftwards { (x + 2.0, Hang::Right) } else { (x - 2.0, Hang::Left) };
+                    self.canvas.text(&mark.label, (at, y), letters * 0.94, hang, INK)?;
                 }
             }
         }
@@ -217,8 +220,8 @@ impl Sheet<'_, '_> {
     }
 
     /// Draws pieces of a curve, joined where one begins where the other ended.
-    fn curve(&self, series: &Series, pieces: &[((f64, f64), (f64, f64))]) -> Result<(), DrawError> {
-        let mut paths: Vec<Vec<(f64, f64)>> = Vec::new();
+    fn curve(&self, series: &Series, pieces: &[Piece]) -> Result<(), DrawError> {
+        let mut paths: Vec<Vec<Place>> = Vec::new();
         for &(from, to) in pieces {
             match paths.last_mut() {
                 Some(path) if path.last() == Some(&from) => path.push(to),

@@ -11,7 +11,7 @@ mod stable_range;
 
 use serde::Serialize;
 
-use crate::record::{Results, Study};
+use crate::record::{ModesRecord, Results, Study};
 
 pub(crate) use draw::{Size, svg, themed};
 
@@ -108,6 +108,11 @@ pub(crate) fn of_studies(results: &Results, ids: &[String]) -> Vec<Vec<Chart>> {
         Study::Stability(record) => stable_range::charts(id, record, results, &study.id),
     })
     .collect()
+}
+
+/// The charts of one Fourier study, for outputs that draw them in their own way.
+pub(crate) fn modes_charts(record: &ModesRecord) -> Vec<Chart> {
+    modes::charts("", record)
 }
 
 /// At most `most` of `items`, evenly chosen, with the first and the last: a chart needs no more points than pixels.

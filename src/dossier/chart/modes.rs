@@ -89,6 +89,9 @@ fn amplification(id: &str, curves: &[Curve<'_>]) -> Chart {
         let measured = curve.modes.iter().map(|(theta, mode)| [*theta, mode.modulus]);
         push(&mut series, curve.name.clone(), Role::Measured, slot, measured.collect());
     }
+    // Where an exact curve is drawn, a line at one would only lie on it.
+    let line_at_one = Mark { axis: Across::Y, value: 1.0, label: String::new() };
+    let marks = if series.iter().any(|series| series.role == Role::Exact) { Vec::new() } else { vec![line_at_one] };
     let highest = series.iter().flat_map(|series| &series.points).map(|point| point[1]).fold(1.0, f64::max);
     Chart {
         id: format!("{id}-amplification"),
@@ -103,7 +106,7 @@ fn amplification(id: &str, curves: &[Curve<'_>]) -> Chart {
             ticks: Ticks::Numbers,
         },
         series,
-        marks: vec![Mark { axis: Across::Y, value: 1.0, label: String::new() }],
+        marks,
         bands: Vec::new(),
     }
 }

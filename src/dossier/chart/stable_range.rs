@@ -50,13 +50,13 @@ fn marks(record: &StabilityRecord, results: &Results, study: &str) -> Vec<Mark> 
     let across = |value: f64, label: String| Mark { axis: Across::X, value, label };
     let mut marks = vec![Mark { axis: Across::Y, value: 1.0, label: String::new() }];
     if let Some(limit) = record.stable_up_to.filter(|&limit| limit > 0.0) {
-        marks.push(across(limit, format!("stable up to {}", number::typeset(limit, number::DIGITS))));
+        marks.push(across(limit, format!("stable up to {}", number::typeset_short(limit))));
     }
     let claims = words::claims_on(results, study);
     for claim in claims.iter().filter(|claim| claim.quantity == "stable_up_to" && claim.value <= record.scanned_up_to) {
         // Where both stand in one place, one label says it.
         if record.stable_up_to.is_none_or(|limit| (limit - claim.value).abs() > 0.02 * record.scanned_up_to) {
-            marks.push(across(claim.value, format!("claimed {}", number::typeset(claim.value, number::DIGITS))));
+            marks.push(across(claim.value, format!("claimed {}", number::typeset_short(claim.value))));
         }
     }
     marks

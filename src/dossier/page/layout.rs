@@ -35,7 +35,9 @@ static LAYOUT: LazyLock<Environment<'static>> = LazyLock::new(|| {
         }
         _ => minijinja::escape_formatter(out, state, value),
     });
-    layout.add_filter("num", num);
+    layout.add_filter("num", |value| num(value, number::typeset_short));
+    layout.add_filter("column", |value| num(value, |number| number::typeset(number, number::DIGITS)));
+    layout.add_filter("power", |value| num(value, |number| number::typeset_power(number, number::DIGITS)));
     let pieces = [
         ("index.html", include_str!("../../../reports/page/index.html")),
         ("pieces.html", include_str!("../../../reports/page/pieces.html")),
@@ -59,7 +61,7 @@ pub(super) fn render(view: &impl Serialize) -> Result<String, Error> {
 }
 
 /// A number with all its digits for machines, rounded for people; a dash where it does not exist.
-fn num(value: Value) -> Result<Value, Error> {
+fn num(value: Value, typeset: fn(f64) -> String) -> Result<Value, Error> {
     if value.is_none() {
         return Ok(Value::from_safe_string("<span class=\"none\">–</span>".into()));
     }
@@ -67,7 +69,7 @@ fn num(value: Value) -> Result<Value, Error> {
         return Ok(Value::from_safe_string(format!("<data value=\"{value}\">{value}</data>")));
     }
     let number = f64::try_from(value)?;
-    let (exact, shown) = (number::exact(number), number::typeset(number, number::DIGITS));
+    let (exact, shown) = (number::exact(number), typeset(number));
     Ok(Value::from_safe_string(format!("<data value=\"{exact}\">{shown}</data>")))
 }
 
