@@ -1,5 +1,10 @@
 //! The command-line program.
 
-fn main() {
+use std::process::ExitCode;
+
+use clap::Parser;
+
+fn main() -> ExitCode {
     gridassay::host::run_child_if_asked();
+    gridassay::commands::Program::parse().run()
 }

@@ -20,7 +20,13 @@ fn real(value: f64) -> Complex64 {
     Complex64::new(value, 0.0)
 }
 
-fn measure(scheme: &str, equation: &str, cells: usize, courant: Option<f64>, diffusion_number: Option<f64>) -> ModesRecord {
+fn measure(
+    scheme: &str,
+    equation: &str,
+    cells: usize,
+    courant: Option<f64>,
+    diffusion_number: Option<f64>,
+) -> ModesRecord {
     let scheme = gridassay_classical::scheme(scheme).expect("a classical scheme");
     let request = ModesRequest {
         equation: equation.to_owned(),
@@ -45,7 +51,10 @@ fn largest_difference(record: &ModesRecord, cells: usize, closed: impl Fn(f64) -
         let [re, im] = mode.amplification;
         (Complex64::new(re, im) - closed(mode.theta[0])).norm()
     };
-    let worst = physical.iter().map(|mode| distance(&mode)).fold(0.0, |worst: f64, d| if d.is_nan() { f64::NAN } else { worst.max(d) });
+    let worst = physical
+        .iter()
+        .map(|mode| distance(&mode))
+        .fold(0.0, |worst: f64, d| if d.is_nan() { f64::NAN } else { worst.max(d) });
     assert!(!worst.is_nan(), "a measured factor is not a number");
     worst
 }
@@ -146,11 +155,15 @@ fn diffusion_schemes_have_their_closed_forms_at_every_wavenumber() {
 
 #[test]
 fn the_mean_never_changes_where_a_scheme_conserves() {
-    let schemes = ADVECTION.iter().map(|(name, _)| (*name, "advection")).chain(DIFFUSION.iter().map(|(name, _)| (*name, "diffusion")));
+    let schemes = ADVECTION
+        .iter()
+        .map(|(name, _)| (*name, "advection"))
+        .chain(DIFFUSION.iter().map(|(name, _)| (*name, "diffusion")));
     for (scheme, equation) in schemes {
         let (courant, number) = if equation == "advection" { (Some(0.9), None) } else { (None, Some(0.3)) };
         let record = measure(scheme, equation, 64, courant, number);
-        let mean = record.modes.iter().find(|mode| mode.exact.is_some() && mode.theta[0] == 0.0).expect("theta = 0 is a mode");
+        let mean =
+            record.modes.iter().find(|mode| mode.exact.is_some() && mode.theta[0] == 0.0).expect("theta = 0 is a mode");
         let [re, im] = mean.amplification;
         assert!((Complex64::new(re, im) - 1.0).norm() <= 1e-15, "{scheme}: G(0) - 1 = {:e}", re - 1.0);
     }

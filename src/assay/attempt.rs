@@ -46,7 +46,9 @@ pub fn attempt_order(session: &mut Session, claim: &OrderClaim, place: Place<'_>
 
 /// Tries a claim about modes.
 pub fn attempt_modes(session: &mut Session, claim: &ModesClaim, place: Place<'_>) -> Attempt {
-    let make = |session: &mut Session, request: &ModesRequest| modes::run(session, request, claim.symbol.as_deref(), place.seed);
+    let make = |session: &mut Session, request: &ModesRequest| {
+        modes::run(session, request, claim.symbol.as_deref(), place.seed)
+    };
     let mirrored = mirrored(&claim.request.equation, &claim.request.parameters, claim.request.cells.len())
         .map(|parameters| ModesRequest { parameters, ..claim.request.clone() });
     // A claimed symbol is written for one sign of the velocity.
@@ -92,7 +94,9 @@ fn both<R>(
     if let Some(mirrored) = mirrored.filter(|_| studies[0].stopped.is_none()) {
         let twin = make(session, mirrored);
         match twin.not_offered {
-            true => studies[0].notes.push("the scheme offers one sign of the velocity only, so that the other was not tried".to_owned()),
+            true => studies[0]
+                .notes
+                .push("the scheme offers one sign of the velocity only, so that the other was not tried".to_owned()),
             false => studies.push(record(format!("{}-mirrored", place.id), twin)),
         }
     }

@@ -45,7 +45,8 @@ use gridassay_scheme::Scheme;
 
 use super::attempt::{Attempt, Place, attempt_order, attempt_stability};
 use crate::claims::{
-    DEFAULT_TOLERANCE, OrderClaim, OrderRequest, StabilityClaim, StabilityRequest, StepSize, default_step_power, in_proportion,
+    DEFAULT_TOLERANCE, OrderClaim, OrderRequest, StabilityClaim, StabilityRequest, StepSize, default_step_power,
+    in_proportion,
 };
 use crate::dossier::terminal;
 use crate::host::Session;
@@ -207,7 +208,8 @@ fn settle(attempt: Attempt, claim: &str) {
         return;
     }
     let shown: Vec<String> = attempt.studies.iter().map(|study| terminal::study_text(study, false)).collect();
-    let decided_by = attempt.judgement.decided_by.map_or_else(String::new, |by| format!("\nwhat would decide it: {by}"));
+    let decided_by =
+        attempt.judgement.decided_by.map_or_else(String::new, |by| format!("\nwhat would decide it: {by}"));
     let (word, reason) = (attempt.judgement.verdict.word(), attempt.judgement.reason);
     panic!("the claim `{claim}` is {word}: {reason}{decided_by}\n{}", shown.join("\n"));
 }

@@ -26,7 +26,8 @@ pub struct Bar(ProgressBar);
 
 impl Default for Bar {
     fn default() -> Self {
-        let style = ProgressStyle::with_template("{bar:24} {pos}/{len}  {msg}  ({eta} left)").expect("the template is valid");
+        let style =
+            ProgressStyle::with_template("{bar:24} {pos}/{len}  {msg}  ({eta} left)").expect("the template is valid");
         let bar = ProgressBar::new(0).with_style(style);
         bar.enable_steady_tick(std::time::Duration::from_millis(200));
         Self(bar)

@@ -84,7 +84,8 @@ fn attempt(schemes: &mut Schemes<'_>, claim: &Claim, seed: u64) -> Attempt {
 
 /// One scheme stands under `scheme`; several stand under `schemes`, and `scheme` speaks of them together.
 fn name_schemes(results: &mut Results, plan: &Plan, schemes: &mut Schemes<'_>) {
-    let tried: Vec<&String> = plan.schemes.keys().filter(|name| results.verdicts.iter().any(|v| v.scheme == **name)).collect();
+    let tried: Vec<&String> =
+        plan.schemes.keys().filter(|name| results.verdicts.iter().any(|v| v.scheme == **name)).collect();
     if let ([only], 1) = (tried.as_slice(), plan.schemes.len()) {
         results.scheme = schemes.record(only);
         return;

@@ -69,7 +69,10 @@ impl ParameterArguments {
             let values = values.split(',').map(|value| value.trim().parse::<f64>().ok()).collect::<Option<Vec<_>>>()?;
             Some((name.trim().to_owned(), values))
         };
-        let one = |text: &String| parse(text).ok_or_else(|| format!("--parameter `{text}` is not of the form name=number or name=number,number"));
+        let one = |text: &String| {
+            parse(text)
+                .ok_or_else(|| format!("--parameter `{text}` is not of the form name=number or name=number,number"))
+        };
         self.parameters.iter().map(one).collect()
     }
 }

@@ -10,7 +10,9 @@ use crate::studies::modes;
 
 /// Measures the amplification factor of every wavenumber.
 #[derive(Debug, Args)]
-#[command(after_help = "Example:\n  gridassay modes --equation advection --cells 64 --courant 0.5 --classical lax-wendroff")]
+#[command(
+    after_help = "Example:\n  gridassay modes --equation advection --cells 64 --courant 0.5 --classical lax-wendroff"
+)]
 pub struct Modes {
     /// The equation's name.
     #[arg(long)]

@@ -8,7 +8,9 @@ use gridassay_reference::problem::Problem;
 use super::arguments::{Output, ParameterArguments, Scheme};
 use super::outcome::Outcome;
 use super::single;
-use crate::claims::{ClaimKind, DEFAULT_TOLERANCE, OrderClaim, OrderRequest, StepSize, default_step_power, in_proportion};
+use crate::claims::{
+    ClaimKind, DEFAULT_TOLERANCE, OrderClaim, OrderRequest, StepSize, default_step_power, in_proportion,
+};
 use crate::record::Refinement;
 use crate::studies::order;
 
@@ -78,7 +80,9 @@ impl Order {
         if self.expect.is_some() {
             return single::judge(&self.scheme, ClaimKind::Order(claim), "order-1", &self.output);
         }
-        single::measure(&self.scheme, "order-1", &self.output, |session| order::run(session, &claim.request, None, seed))
+        single::measure(&self.scheme, "order-1", &self.output, |session| {
+            order::run(session, &claim.request, None, seed)
+        })
     }
 
     fn claim(&self) -> Result<OrderClaim, Box<dyn std::error::Error>> {

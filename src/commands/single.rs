@@ -17,7 +17,12 @@ use crate::studies::Made;
 const SCHEME: &str = "scheme";
 
 /// Runs one claim and shows what came of it.
-pub fn judge(scheme: &Scheme, kind: ClaimKind, id: &str, output: &Output) -> Result<Outcome, Box<dyn std::error::Error>> {
+pub fn judge(
+    scheme: &Scheme,
+    kind: ClaimKind,
+    id: &str,
+    output: &Output,
+) -> Result<Outcome, Box<dyn std::error::Error>> {
     let mut plan = empty_plan(scheme, output)?;
     plan.claims.push(Claim { id: id.to_owned(), scheme: SCHEME.to_owned(), kind });
     let results = assay::run(&plan, std::env::args().collect(), &*progress::fitting(true), |_| Ok(()))?;
@@ -56,7 +61,9 @@ fn show(results: &Results, output: &Output) -> Result<Outcome, Box<dyn std::erro
         println!("{}", serde_json::to_string_pretty(results)?);
     } else {
         let colour = std::io::stdout().is_terminal() && std::env::var_os("NO_COLOR").is_none();
-        print!("{}", dossier::terminal::study_text(results, colour));
+        let studies = results.studies.iter().map(|study| dossier::terminal::study_text(study, colour));
+        let verdicts = results.overall.map(|_| dossier::terminal::verdict_table(results, colour));
+        print!("{}", studies.chain(verdicts).collect::<Vec<_>>().join("\n"));
     }
     Ok(Outcome::of(results))
 }

@@ -66,7 +66,10 @@ impl Linearity {
     pub fn failing(&self) -> String {
         let parts = [
             ("is not linear (a step of a sum differs from the sum of the steps by", self.superposition),
-            ("is not the same at every position (a step of a shifted state differs from the shifted step by", self.shift),
+            (
+                "is not the same at every position (a step of a shifted state differs from the shifted step by",
+                self.shift,
+            ),
             ("depends on the time (a later step differs by", self.time),
         ];
         let fails = |(words, deviation): &(&str, f64)| {

@@ -14,7 +14,13 @@ use crate::host::Session;
 ///
 /// # Errors
 /// The scheme refused or failed.
-pub fn growth(session: &mut Session, setting: &Setting, cellwise: &Cellwise, steps: usize, seed: u64) -> Result<f64, Stop> {
+pub fn growth(
+    session: &mut Session,
+    setting: &Setting,
+    cellwise: &Cellwise,
+    steps: usize,
+    seed: u64,
+) -> Result<f64, Stop> {
     let mut levels = linearity::noise(&mut Jitter::new(seed), setting, cellwise);
     let before = largest(&levels[0]);
     let mut state = levels.remove(0);

@@ -22,7 +22,10 @@ pub fn compare(formula: &str, record: &ModesRecord) -> Result<ClaimedSymbol, Sto
     let claimed = |theta: f64| {
         let real = |value: f64| Complex64::new(value, 0.0);
         let (c, r) = (record.courant.unwrap_or(f64::NAN), record.diffusion_number.unwrap_or(f64::NAN));
-        symbol.evaluate_complex(&[("theta", real(theta)), ("c", real(c)), ("r", real(r))]).ok().filter(|g| g.is_finite())
+        symbol
+            .evaluate_complex(&[("theta", real(theta)), ("c", real(c)), ("r", real(r))])
+            .ok()
+            .filter(|g| g.is_finite())
     };
     let measured: Vec<(f64, Complex64)> = record
         .modes
@@ -72,10 +75,12 @@ fn neighbour(record: &ModesRecord, claimed: &impl Fn(f64) -> Option<Complex64>) 
     let thetas: Vec<f64> = (0..samples).map(|j| 2.0 * PI * j as f64 / samples as f64).collect();
     let values: Vec<Complex64> = thetas.iter().map(|theta| claimed(*theta)).collect::<Option<_>>()?;
     let coefficient = |offset: i64| {
-        let terms = thetas.iter().zip(&values).map(|(theta, g)| g * Complex64::from_polar(1.0, -(offset as f64) * theta));
+        let terms =
+            thetas.iter().zip(&values).map(|(theta, g)| g * Complex64::from_polar(1.0, -(offset as f64) * theta));
         terms.sum::<Complex64>().re / samples as f64
     };
-    let of_built = |offset: i64| built.iter().filter(|entry| entry.offset[0] == offset).map(|entry| entry.coefficient).sum();
+    let of_built =
+        |offset: i64| built.iter().filter(|entry| entry.offset[0] == offset).map(|entry| entry.coefficient).sum();
     let differences = (-reach..=reach).map(|offset| NeighbourDifference {
         offset,
         built: of_built(offset),

@@ -17,7 +17,12 @@ use crate::studies::{Stop, impulse};
 const LISTED: usize = 64;
 
 /// Measures G at every wavenumber of the grid.
-pub fn measure(session: &mut Session, setting: &Setting, cellwise: &Cellwise, record: &mut ModesRecord) -> Result<(), Stop> {
+pub fn measure(
+    session: &mut Session,
+    setting: &Setting,
+    cellwise: &Cellwise,
+    record: &mut ModesRecord,
+) -> Result<(), Stop> {
     let responses = impulse::responses(session, setting, cellwise)?;
     record.stencil = stencil(&responses);
     let symbol = SampledSymbol::from_responses(&responses);
@@ -85,7 +90,8 @@ impl<'a> Exact<'a> {
     pub fn branches(&self, theta: &[f64]) -> Result<Vec<Branch>, Stop> {
         let grid = &self.setting.case.grid;
         let wavevector: Vec<f64> = theta.iter().enumerate().map(|(axis, theta)| theta / grid.spacing(axis)).collect();
-        exact_branches(&self.equation, &self.setting.parameters, &wavevector).map_err(|error| Stop::Request(error.to_string()))
+        exact_branches(&self.equation, &self.setting.parameters, &wavevector)
+            .map_err(|error| Stop::Request(error.to_string()))
     }
 
     /// d Re(omega) / dk of branch `index` in 1-D. The dispersion relations are polynomials of degree three at most on either side of k = 0, for which
@@ -102,4 +108,3 @@ impl<'a> Exact<'a> {
         Ok(Some(slope * self.setting.case.grid.spacing(0)))
     }
 }
-

@@ -49,7 +49,8 @@ fn measure(
     record.uncertainty = Some(worst);
     record.linearity = Some(trial);
     if !trial.is_linear() {
-        notes.push(format!("{}: what follows is its approximate dispersion relation (Pirozzoli 2006)", trial.failing()));
+        notes
+            .push(format!("{}: what follows is its approximate dispersion relation (Pirozzoli 2006)", trial.failing()));
         return nonlinear::measure(session, &setting, record);
     }
     linear::measure(session, &setting, &cellwise, record)?;

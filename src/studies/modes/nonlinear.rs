@@ -8,9 +8,9 @@ use super::linear::Exact;
 use super::quantities::{Wave, records};
 use crate::host::Session;
 use crate::record::ModesRecord;
+use crate::studies::Stop;
 use crate::studies::linearity::step;
 use crate::studies::setting::Setting;
-use crate::studies::Stop;
 
 /// The amplitude of the wave. Nonlinear weights and limiters of the usual kind do not depend on it, but for their small safeguards.
 const AMPLITUDE: f64 = 1.0;
@@ -27,7 +27,8 @@ const PHASE: f64 = 0.6180339887;
 /// The scheme has several fields, levels or directions, or refused or failed.
 pub fn measure(session: &mut Session, setting: &Setting, record: &mut ModesRecord) -> Result<(), Stop> {
     if setting.case.dimensions != 1 || setting.names.len() != 1 || setting.offer.levels != 1 {
-        let message = "the approximate dispersion relation is measured for one field in one dimension with one time level";
+        let message =
+            "the approximate dispersion relation is measured for one field in one dimension with one time level";
         return Err(Stop::Request(message.to_owned()));
     }
     let cells = setting.case.grid.cells[0];
@@ -40,7 +41,14 @@ pub fn measure(session: &mut Session, setting: &Setting, record: &mut ModesRecor
         let (other, _) = response(session, setting, cells, mode, OTHER_AMPLITUDE)?;
         dependence = dependence.max((factor - other).norm());
         let (omega, group_speed) = (exact.branches(&[theta])?[0].omega, exact.group_speed(theta, 0)?);
-        waves.push(Wave { theta: vec![theta], factor, derivative: None, omega: Some(omega), group_speed, leaked: Some(leaked) });
+        waves.push(Wave {
+            theta: vec![theta],
+            factor,
+            derivative: None,
+            omega: Some(omega),
+            group_speed,
+            leaked: Some(leaked),
+        });
     }
     record.amplitude_dependence = Some(dependence);
     record.modes = records(&setting.names[0], &waves, setting.step, setting.case.grid.spacing(0));
@@ -48,7 +56,13 @@ pub fn measure(session: &mut Session, setting: &Setting, record: &mut ModesRecor
 }
 
 /// By what one step multiplies wave number `mode`, and the share of the energy that it moves to other wavenumbers.
-fn response(session: &mut Session, setting: &Setting, cells: usize, mode: usize, amplitude: f64) -> Result<(Complex64, f64), Stop> {
+fn response(
+    session: &mut Session,
+    setting: &Setting,
+    cells: usize,
+    mode: usize,
+    amplitude: f64,
+) -> Result<(Complex64, f64), Stop> {
     let theta = 2.0 * std::f64::consts::PI * mode as f64 / cells as f64;
     let before: Vec<f64> = (0..cells).map(|j| amplitude * (theta * j as f64 + PHASE).cos()).collect();
     let after = step(session, setting, &vec![vec![before.clone()]], 0.0)?;

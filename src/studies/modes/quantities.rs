@@ -36,7 +36,8 @@ fn record(branch: &str, wave: &Wave, phase_error: Option<f64>, step: f64, width:
     let exact = wave.omega.map(|omega| exact_factor(omega, step));
     let turned = wave.omega.map(|omega| -omega.re * step).filter(|phase| *phase != 0.0);
     let group_speed = wave.derivative.map(|derivative| (Complex64::I * derivative / wave.factor).re * width / step);
-    let group_ratio = group_speed.zip(wave.group_speed.filter(|speed| *speed != 0.0)).map(|(found, exact)| found / exact);
+    let group_ratio =
+        group_speed.zip(wave.group_speed.filter(|speed| *speed != 0.0)).map(|(found, exact)| found / exact);
     let size = wave.theta.iter().map(|theta| theta * theta).sum::<f64>().sqrt();
     ModeRecord {
         theta: wave.theta.clone(),
@@ -115,7 +116,12 @@ mod tests {
         // Step and width 1, so that omega = c theta. Published: phase 0.89111003 and group 0.6856793 at pi/4, c = 0.5.
         let theta = std::f64::consts::FRAC_PI_4;
         let (factor, derivative) = crank_nicolson(theta, 0.5);
-        let record = &records("u", &[wave(0.0, Complex64::ONE, None, 0.5), wave(theta, factor, Some(derivative), 0.5)], 1.0, 1.0)[1];
+        let record = &records(
+            "u",
+            &[wave(0.0, Complex64::ONE, None, 0.5), wave(theta, factor, Some(derivative), 0.5)],
+            1.0,
+            1.0,
+        )[1];
         agree(record.phase_speed_ratio.unwrap(), 0.89111003, 5e-9).unwrap();
         agree(record.group_speed_ratio.unwrap(), 0.6856793, 5e-8).unwrap();
         agree(record.damping_error.unwrap(), 0.0, 4.0 * f64::EPSILON).unwrap();

@@ -24,7 +24,12 @@ const BESIDE: [f64; 2] = [0.99, 1.05];
 ///
 /// # Errors
 /// The scheme failed.
-pub fn from_noise(session: &mut Session, request: &StabilityRequest, seed: u64, record: &mut StabilityRecord) -> Result<(), Stop> {
+pub fn from_noise(
+    session: &mut Session,
+    request: &StabilityRequest,
+    seed: u64,
+    record: &mut StabilityRecord,
+) -> Result<(), Stop> {
     let runs: Vec<(f64, bool)> = match (record.stable_up_to, record.refused_from) {
         (Some(0.0), _) => Vec::new(),
         (Some(limit), _) => vec![(BESIDE[0] * limit, true), (BESIDE[1] * limit, false)],
@@ -47,7 +52,12 @@ pub fn from_noise(session: &mut Session, request: &StabilityRequest, seed: u64, 
 ///
 /// # Errors
 /// The scheme failed.
-pub fn by_noise_alone(session: &mut Session, request: &StabilityRequest, seed: u64, record: &mut StabilityRecord) -> Result<(), Stop> {
+pub fn by_noise_alone(
+    session: &mut Session,
+    request: &StabilityRequest,
+    seed: u64,
+    record: &mut StabilityRecord,
+) -> Result<(), Stop> {
     for part in 1..=16 {
         let number = request.scan_to * f64::from(part) / 16.0;
         let (steps, growth) = match grown(session, request, record, number, seed) {

@@ -41,7 +41,12 @@ impl<'a> Growth<'a> {
     ///
     /// # Errors
     /// The scheme offers no such case, refused or failed.
-    pub fn new(session: &'a mut Session, request: &'a StabilityRequest, number: StepNumber, seed: u64) -> Result<Self, Stop> {
+    pub fn new(
+        session: &'a mut Session,
+        request: &'a StabilityRequest,
+        number: StepNumber,
+        seed: u64,
+    ) -> Result<Self, Stop> {
         let cells = grids(session, &request.equation);
         // A generic small step: linearity is a property of the scheme, not of the step.
         let small = numbers(number, 0.0731_f64.min(0.5 * request.scan_to), request.held);

@@ -102,4 +102,3 @@ fn tell(set: &StableSet, growth: &mut Growth<'_>, record: &mut StabilityRecord) 
     }
     Ok(())
 }
-
