@@ -9,8 +9,10 @@
 
 pub mod compare;
 pub mod eigen;
+pub mod integrators;
 pub mod matrix;
 pub mod norms;
 pub mod order;
 pub mod powers;
+pub mod stability;
 pub mod symbol;
