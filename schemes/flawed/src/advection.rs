@@ -216,8 +216,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         name: "lax-wendroff-one-per-cent",
         twin: "lax-wendroff",
         mistake: "The second-order term is multiplied by 0.505 in place of 0.5.",
-        exposed_by: &[Study::Modes, Study::OrderSpace],
-        why: "below the space error of coarse grids, but the amplification factor shows it at once; the order falls to one on fine grids only",
+        exposed_by: &[Study::Modes],
+        why: "far below the space error of any usual grid, where the order stays two; the amplification factor shows it at once",
         make: || explicit(|c| [0.0, 0.5 * c + 0.505 * c * c, 0.5 * c - 0.505 * c * c, 0.0]),
     },
     Flaw {

@@ -227,8 +227,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         name: "du-fort-frankel-denominator",
         twin: "du-fort-frankel",
         mistake: "The denominator is 1 + r in place of 1 + 2 r.",
-        exposed_by: &[Study::Modes, Study::Stability],
-        why: "the weight of the mean is wrong, most at large steps",
+        exposed_by: &[Study::Modes, Study::OrderSpace, Study::Stability],
+        why: "the weight of the mean is wrong, most at large steps: no convergence with a fixed diffusion number, and growth where it exceeds 1",
         make: || du_fort_frankel(|r| 2.0 * r / (1.0 + r)),
     },
     Flaw {

@@ -109,8 +109,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         name: "first-courant-number-kept",
         twin: "lax-wendroff",
         mistake: "The Courant number is reckoned in the first step and never again.",
-        exposed_by: &[Study::Repeatability, Study::OrderSpace],
-        why: "a fresh scheme is right; after another case or another step it is not",
+        exposed_by: &[Study::Repeatability, Study::OrderTime],
+        why: "a fresh scheme is right, and so is a ladder at a fixed Courant number; after another case or another step it is not",
         make: || boxed(Remembers::new(0)),
     },
     Flaw {
