@@ -1,5 +1,6 @@
-//! Trusted: the closed-form amplification factors of the doc comments, derived by hand. Every linear scheme takes one step of every
-//! Fourier mode on 64 cells, at four Courant numbers of either sign, and must give mode times factor within 1e-13.
+//! Trusted: the closed-form amplification factors of the doc comments, derived by hand. Every linear scheme takes one
+//! step of every Fourier mode on 64 cells, at four Courant numbers of either sign, and must give mode times factor
+//! within 1e-13.
 
 mod common;
 #[path = "common/waves.rs"]
@@ -40,7 +41,8 @@ fn roots(a: Complex64, b: Complex64, c: Complex64) -> Vec<Complex64> {
     vec![(-b + root) / (2.0 * a), (-b - root) / (2.0 * a)]
 }
 
-/// The Taylor polynomial of exp of that degree: the stability function of a Runge-Kutta method with as many stages as its order.
+/// The Taylor polynomial of exp of that degree: the stability function of a Runge-Kutta method with as many stages as
+/// its order.
 fn taylor(degree: usize, z: Complex64) -> Complex64 {
     let mut term = Complex64::from(1.0);
     let mut sum = term;

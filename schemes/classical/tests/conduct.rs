@@ -1,4 +1,5 @@
-//! What the contract asks of every scheme, tried on all of them: names, refusals, and answers that depend on the question alone.
+//! What the contract asks of every scheme, tried on all of them: names, refusals, and answers that depend on the
+//! question alone.
 
 mod common;
 
@@ -7,7 +8,8 @@ use gridassay_scheme::{
     Advance, BoundaryKind, Case, Fields, Grid, NoCallbacks, Offer, Operation, Parameter, Scheme, SchemeError,
 };
 
-/// A periodic case within the offer, on a grid that is not square; none where the offer takes no periodic boundaries or does not advance.
+/// A periodic case within the offer, on a grid that is not square; none where the offer takes no periodic boundaries
+/// or does not advance.
 fn case_within(offer: &Offer) -> Option<Case> {
     if !offer.boundaries.contains(&BoundaryKind::Periodic) || !offer.has(Operation::Advance) {
         return None;

@@ -46,14 +46,16 @@ fn a_shock_of_burgers_equation_runs_at_the_mean_speed_and_a_rarefaction_opens() 
         let mut scheme = scheme(name).unwrap();
         scheme.prepare(&case, &mut NoCallbacks).unwrap();
         let x = case.grid.centres(0);
-        // From -1 up to 2 at 0.8: a rarefaction through the sonic point; from 2 down to -1 at 1.6: a shock of speed 1/2.
+        // From -1 up to 2 at 0.8: a rarefaction through the sonic point; from 2 down to -1 at 1.6: a shock of speed
+        // 1/2.
         let mut state = vec![x.iter().map(|x| if (0.8..1.6).contains(x) { 2.0 } else { -1.0 }).collect::<Vec<_>>()];
         let end = 0.2;
         advance(scheme.as_mut(), &mut state, end, 400);
         let exact = |x: f64| if x < 1.6 + 0.5 * end { ((x - 0.8) / end).clamp(-1.0, 2.0) } else { -1.0 };
         let h = case.grid.spacing(0);
         let error: f64 = x.iter().zip(&state[0]).map(|(x, u)| (u - exact(*x)).abs() * h).sum();
-        // First order in the mean: a few cells times the jump of 3; a shock whose speed is wrong by 1/10 would give 0.06.
+        // First order in the mean: a few cells times the jump of 3; a shock whose speed is wrong by 1/10 would give
+        // 0.06.
         assert!(error < 0.03, "{name}: {error}");
     }
 }
@@ -103,7 +105,8 @@ fn discontinuous_galerkin_is_of_order_p_plus_one() {
                 (x.iter().zip(&state[0]).enumerate().map(square).sum::<f64>() / cells as f64).sqrt()
             });
             let order = (errors[1] / errors[2]).log2();
-            // At Gauss points the early error falls like 2p + 1 until the projection's p + 1 rules: both stand as bounds.
+            // At Gauss points the early error falls like 2p + 1 until the projection's p + 1 rules: both stand as
+            // bounds.
             let bounds = (degree + 1) as f64 - 0.2..(2 * degree + 1) as f64 + 0.2;
             assert!(bounds.contains(&order), "{name}, velocity {velocity}: {errors:?}, order {order}");
         }
@@ -132,7 +135,8 @@ fn the_shock_tube_of_sod_has_its_plateau() {
     }
 }
 
-/// Mean error of the density in a right-running simple wave before it breaks, whose exact solution is constant along straight lines.
+/// Mean error of the density in a right-running simple wave before it breaks, whose exact solution is constant along
+/// straight lines.
 fn simple_wave_error(name: &str, cells: usize) -> f64 {
     let (gamma, end) = (1.3_f64, 0.1);
     let k = std::f64::consts::TAU / 1.7;

@@ -1,5 +1,6 @@
-//! Trusted: closed-form amplification factors in two dimensions and of acoustics; for discontinuous Galerkin an independent construction in Legendre
-//! polynomials from the weak form, compared through the traces of powers, which do not depend on the basis.
+//! Trusted: closed-form amplification factors in two dimensions and of acoustics; for discontinuous Galerkin an
+//! independent construction in Legendre polynomials from the weak form, compared through the traces of powers, which
+//! do not depend on the basis.
 
 mod common;
 #[path = "common/waves.rs"]
@@ -19,7 +20,8 @@ fn assert_close(a: Complex64, b: Complex64, what: &str) {
     assert!((a - b).norm() <= TOLERANCE, "{what}: {a} and {b}");
 }
 
-/// The amplification matrix of a one-dimensional scheme with several values a cell: one field each, or several nodes in one field.
+/// The amplification matrix of a one-dimensional scheme with several values a cell: one field each, or several nodes
+/// in one field.
 fn matrix(
     scheme: &mut dyn Scheme,
     step: f64,
@@ -154,13 +156,15 @@ fn the_staggered_scheme_has_its_trace_and_keeps_areas() {
     }
 }
 
-/// dt times the semi-discrete matrix in Legendre polynomials, from the weak form with upwind fluxes, velocity of sign `sign`.
+/// dt times the semi-discrete matrix in Legendre polynomials, from the weak form with upwind fluxes, velocity of sign
+/// `sign`.
 fn legendre_matrix(degree: usize, courant: f64, sign: f64, theta: f64) -> Vec<Vec<Complex64>> {
     let parity = |m: usize| if m.is_multiple_of(2) { 1.0 } else { -1.0 };
     let entry = |i: usize, j: usize| -> Complex64 {
         let stiffness = if i > j && (i - j) % 2 == 1 { 2.0 } else { 0.0 };
         let shift = Complex64::from_polar(1.0, -sign * theta);
-        // Values of the polynomials at the outflow end are 1 (a > 0) or the parity (a < 0), and the other way at the inflow end.
+        // Values of the polynomials at the outflow end are 1 (a > 0) or the parity (a < 0), and the other way at the
+        // inflow end.
         let at_upper_end = |_: f64| 1.0;
         let at_lower_end = |parity: f64| parity;
         let outflow = |p: f64| if sign > 0.0 { at_upper_end(p) } else { at_lower_end(p) };

@@ -185,7 +185,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "lax-friedrichs",
         mistake: "The factor 1/2 of the mean is applied twice to the viscous part.",
         exposed_by: &[Study::Modes, Study::Stability],
-        why: "still consistent and of first order, but cos(theta) becomes (1 + cos(theta)) / 2, and it is stable only up to c^2 = 1/2",
+        why: "still consistent and of first order, but cos(theta) becomes (1 + cos(theta)) / 2, and it is stable only \
+              up to c^2 = 1/2",
         make: || explicit(|c| [0.0, 0.5 * c + 0.25, 0.5 * c - 0.25, 0.0]),
     },
     Flaw {
@@ -217,7 +218,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "lax-wendroff",
         mistake: "The second-order term is multiplied by 0.505 in place of 0.5.",
         exposed_by: &[Study::Modes],
-        why: "far below the space error of any usual grid, where the order stays two; the amplification factor shows it at once",
+        why: "far below the space error of any usual grid, where the order stays two; the amplification factor shows \
+              it at once",
         make: || explicit(|c| [0.0, 0.5 * c + 0.505 * c * c, 0.5 * c - 0.505 * c * c, 0.0]),
     },
     Flaw {
@@ -225,7 +227,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "lax-wendroff",
         mistake: "The Courant number is held in single precision.",
         exposed_by: &[Study::Modes],
-        why: "keeps every order until errors fall to 1e-7; a Courant number that is no dyadic fraction shows it in the amplification factor",
+        why: "keeps every order until errors fall to 1e-7; a Courant number that is no dyadic fraction shows it in the \
+              amplification factor",
         make: || explicit(|c| lax_wendroff(f64::from(c as f32))),
     },
     Flaw {
@@ -233,7 +236,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "lax-wendroff",
         mistake: "The flux through the face between the last and the first cell is taken from the last cell alone.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
-        why: "it conserves, since both cells share the flux, but is of lower order at one face; the answer to an impulse depends on where it sits",
+        why: "it conserves, since both cells share the flux, but is of lower order at one face; the answer to an \
+              impulse depends on where it sits",
         make: || with_slip(lax_wendroff, |c, flux, u| flux[u.len() - 1] = c * u[u.len() - 1]),
     },
     Flaw {
@@ -284,7 +288,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "beam-warming",
         mistake: "The slope is taken over the face, with an index that is one too high.",
         exposed_by: &[Study::Modes, Study::Stability],
-        why: "that is the Lax-Wendroff scheme, of second order too, but stable only up to Courant number 1 and with phase errors of the other sign",
+        why: "that is the Lax-Wendroff scheme, of second order too, but stable only up to Courant number 1 and with \
+              phase errors of the other sign",
         make: || explicit(lax_wendroff),
     },
     Flaw {

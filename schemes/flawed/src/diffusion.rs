@@ -116,7 +116,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "crank-nicolson-diffusion",
         mistake: "The explicit half is forgotten: the operator is taken at the new time alone.",
         exposed_by: &[Study::OrderTime, Study::Modes],
-        why: "first order in time; with a step that falls with the square of the width it looks like second order in space",
+        why: "first order in time; with a step that falls with the square of the width it looks like second order in \
+              space",
         make: || boxed(OneStepDiffusion::new("implicit", 1.0)),
     },
     Flaw {
@@ -132,7 +133,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "crank-nicolson-diffusion",
         mistake: "The boundary value of the old time is set at the new time.",
         exposed_by: &[Study::OrderTime, Study::OrderSpace],
-        why: "first order in time where the boundary value varies in time; blind with steady walls and on periodic grids",
+        why: "first order in time where the boundary value varies in time; blind with steady walls and on periodic \
+              grids",
         make: || {
             let mut scheme = OneStepDiffusion::crank_nicolson();
             scheme.boundary_delay = 1.0;
@@ -228,7 +230,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "du-fort-frankel",
         mistake: "The denominator is 1 + r in place of 1 + 2 r.",
         exposed_by: &[Study::Modes, Study::OrderSpace, Study::Stability],
-        why: "the weight of the mean is wrong, most at large steps: no convergence with a fixed diffusion number, and growth where it exceeds 1",
+        why: "the weight of the mean is wrong, most at large steps: no convergence with a fixed diffusion number, and \
+              growth where it exceeds 1",
         make: || du_fort_frankel(|r| 2.0 * r / (1.0 + r)),
     },
     Flaw {

@@ -182,7 +182,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "muscl-mc",
         mistake: "The central slope is the sum of both differences in place of their mean.",
         exposed_by: &[Study::OrderSpace],
-        why: "on smooth waves the slope is twice too large: first order, though the total variation is still bounded by the other arguments",
+        why: "on smooth waves the slope is twice too large: first order, though the total variation is still bounded \
+              by the other arguments",
         make: || muscl(|a, b| minmod(a + b, minmod(2.0 * a, 2.0 * b))),
     },
     Flaw {

@@ -1,13 +1,12 @@
 //! Textbook schemes with one realistic coding mistake each: the negative controls of Gridassay's own tests.
 //!
-//! A study that cannot tell these from their right twins proves nothing about anybody's code. Each row of the table names the twin, the mistake, the studies that
-//! should expose it and why; some mistakes no study of this kind can see, and the table says so.
+//! A study that cannot tell these from their right twins proves nothing about anybody's code. Each row of the table
+//! names the twin, the mistake, the studies that should expose it and why; some mistakes no study of this kind can
+//! see, and the table says so.
 //!
-//! ```
-//! let flaw = gridassay_flawed::flaws().iter().find(|flaw| flaw.name == "lax-wendroff-viscosity-not-halved").unwrap();
-//! assert_eq!(flaw.twin, "lax-wendroff");
-//! assert_eq!(flaw.scheme().describe().name, flaw.name);
-//! ```
+//! ``` let flaw = gridassay_flawed::flaws().iter().find(|flaw| flaw.name ==
+//! "lax-wendroff-viscosity-not-halved").unwrap(); assert_eq!(flaw.twin, "lax-wendroff");
+//! assert_eq!(flaw.scheme().describe().name, flaw.name); ```
 
 mod advection;
 mod diffusion;
@@ -26,7 +25,7 @@ use std::sync::LazyLock;
 use gridassay_scheme::Scheme;
 
 pub use flaw::{Flaw, Study};
-pub use tampered::{Moment, Tampered};
+pub use tampered::{AnswerSlip, Moment, Tampered};
 
 static FLAWS: LazyLock<Vec<Flaw>> = LazyLock::new(|| {
     let families = [

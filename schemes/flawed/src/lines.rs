@@ -220,7 +220,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "central4-rk4",
         mistake: "The stages take the boundary value of their own time.",
         exposed_by: &[Study::OrderSpace],
-        why: "a stage is not the solution at its time: the order of the whole falls to about two and a half where the boundary value varies (Carpenter et al. 1995); with time refined alone on a fixed grid nothing shows",
+        why: "a stage is not the solution at its time: the order of the whole falls to about two and a half where the \
+              boundary value varies (Carpenter et al. 1995); with time refined alone on a fixed grid nothing shows",
         make: || {
             let mut method = MethodOfLines::new(CentralSpace::fourth_order(), RK4);
             method.stage_values = StageValues::AtStageTime;

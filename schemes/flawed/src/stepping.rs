@@ -1,4 +1,5 @@
-//! Mistakes in what stands around a scheme: counts of steps, sizes of steps, precision, and memory of what was asked before.
+//! Mistakes in what stands around a scheme: counts of steps, sizes of steps, precision, and memory of what was asked
+//! before.
 
 use gridassay_classical::advection::one_step::{lax_wendroff, periodic_advection};
 use gridassay_classical::numerics::flux_form::{periodic_fluxes, subtract_divergence};
@@ -75,7 +76,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "central4-rk4",
         mistake: "The loop over the steps starts at 1 where more than one is asked for.",
         exposed_by: &[Study::OrderSpace, Study::Repeatability],
-        why: "one step alone is right; runs end one step early: first order, and the answer depends on how steps are grouped",
+        why: "one step alone is right; runs end one step early: first order, and the answer depends on how steps are \
+              grouped",
         make: || Tampered::classical("central4-rk4").steps(|steps| steps.max(2) - 1).boxed(),
     },
     Flaw {
@@ -110,7 +112,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "lax-wendroff",
         mistake: "The Courant number is reckoned in the first step and never again.",
         exposed_by: &[Study::Repeatability, Study::OrderTime],
-        why: "a fresh scheme is right, and so is a ladder at a fixed Courant number; after another case or another step it is not",
+        why: "a fresh scheme is right, and so is a ladder at a fixed Courant number; after another case or another \
+              step it is not",
         make: || boxed(Remembers::new(0)),
     },
     Flaw {

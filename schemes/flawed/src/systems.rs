@@ -93,7 +93,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "dg-p2",
         mistake: "The weights of the points are told as a third each.",
         exposed_by: &[Study::Invariants],
-        why: "the mean that these weights form is not the one that is kept; a state that is smooth within each cell hardly shows it",
+        why: "the mean that these weights form is not the one that is kept; a state that is smooth within each cell \
+              hardly shows it",
         make: || Tampered::classical("dg-p2").nodes(|nodes| nodes.weights = vec![1.0 / 3.0; 3]).boxed(),
     },
     Flaw {
@@ -125,7 +126,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "euler-rusanov",
         mistake: "The energy's flux is u E in place of u (E + p).",
         exposed_by: &[Study::OrderSpace],
-        why: "the pressure's work is lost; all sums are still kept, and an entropy wave is carried wrongly at most in its energy",
+        why: "the pressure's work is lost; all sums are still kept, and an entropy wave is carried wrongly at most in \
+              its energy",
         make: || {
             first_order(|gamma, left, right| {
                 let [mass, momentum, energy] = rusanov(gamma, left, right);
@@ -166,7 +168,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "euler-muscl-hllc",
         mistake: "The energy's flux is always that of the left state.",
         exposed_by: &[Study::Invariants],
-        why: "with second-order states on both sides the order stays two, but a mirrored run is no longer the mirror image",
+        why: "with second-order states on both sides the order stays two, but a mirrored run is no longer the mirror \
+              image",
         make: || {
             second_order(|gamma, left, right| {
                 let [mass, momentum, _] = hllc(gamma, left, right);

@@ -15,6 +15,9 @@ pub struct Moment {
     pub step: f64,
 }
 
+/// Alters the state after a step; the state before the step comes first.
+pub type AnswerSlip = fn(&Fields, &mut [Vec<f64>]);
+
 /// A scheme with alterations; those that are not set alter nothing.
 pub struct Tampered {
     scheme: Box<dyn Scheme>,
@@ -29,7 +32,7 @@ struct Slips {
     nodes: Option<fn(&mut Nodes)>,
     step: Option<fn(f64, &Case) -> f64>,
     steps: Option<fn(usize) -> usize>,
-    answer: Option<fn(&Fields, &mut [Vec<f64>])>,
+    answer: Option<AnswerSlip>,
     stale_level: bool,
     source_time: Option<fn(Moment) -> f64>,
     source: Option<fn(&Case, &mut Fields)>,
@@ -89,7 +92,7 @@ impl Tampered {
     }
 
     /// The state is altered after each step; the slip sees the state before it too.
-    pub fn answer(mut self, slip: fn(&Fields, &mut [Vec<f64>])) -> Self {
+    pub fn answer(mut self, slip: AnswerSlip) -> Self {
         self.slips.answer = Some(slip);
         self
     }
@@ -124,7 +127,7 @@ impl Tampered {
         self
     }
 
-    /// One as a boxed scheme.
+    /// The scheme in a box.
     pub fn boxed(self) -> Box<dyn Scheme> {
         Box::new(self)
     }

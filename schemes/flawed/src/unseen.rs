@@ -25,7 +25,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "explicit-euler-diffusion",
         mistake: "The boundary value of the old time is set at the new time.",
         exposed_by: &[],
-        why: "an error of first order in time in a scheme of first order in time, and of second order in space where the step falls with the square of the width",
+        why: "an error of first order in time in a scheme of first order in time, and of second order in space where \
+              the step falls with the square of the width",
         make: || {
             let mut scheme = OneStepDiffusion::explicit_euler();
             scheme.boundary_delay = 1.0;
@@ -37,7 +38,8 @@ pub(crate) const FLAWS: &[Flaw] = &[
         twin: "weno5-ssprk3",
         mistake: "The curvature's factor 13/12 in the measure of smoothness is typed as 13/10.",
         exposed_by: &[],
-        why: "the fifth order does not depend on it, and shocks are still captured; only a comparison with published numbers to their digits would tell",
+        why: "the fifth order does not depend on it, and shocks are still captured; only a comparison with published \
+              numbers to their digits would tell",
         make: || {
             let weno = Weno5 { smoothness: [1.3, 0.25], ..Weno5::published() };
             with_runge_kutta(ScalarLaw::new(weno, Meaning::PointsAtNodes), SSPRK3)

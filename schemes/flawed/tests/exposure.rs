@@ -1,5 +1,5 @@
-//! Trusted: the right twins, whose closed forms and orders the classical crate tests. Every study that the table names must tell the flawed scheme from its
-//! twin, and none may for those that the table calls unseen.
+//! Trusted: the right twins, whose closed forms and orders the classical crate tests. Every study that the table
+//! names must tell the flawed scheme from its twin, and none may for those that the table calls unseen.
 
 mod common;
 

@@ -1,4 +1,5 @@
-//! Small measurements that expose a flaw against its right twin. The harness has its own, better ones; these make sure that the table is true.
+//! Small measurements that expose a flaw against its right twin. The harness has its own, better ones; these make
+//! sure that the table is true.
 
 use gridassay_flawed::Flaw;
 use gridassay_scheme::{Advance, BoundaryKind, Case, Fields, NoCallbacks, Offer, Operation, Parameter, Scheme};
@@ -20,7 +21,8 @@ fn ladders(flaw: &Flaw) -> Vec<[Problem; 3]> {
     all
 }
 
-/// Whether the order in space, or in space and time together, falls short of the twin's, in the mean or in the largest error.
+/// Whether the order in space, or in space and time together, falls short of the twin's, in the mean or in the
+/// largest error.
 pub fn order_space(flaw: &Flaw) -> bool {
     let slopes = |scheme: &mut dyn Scheme, ladder: &[Problem; 3]| -> [f64; 2] {
         let errors = ladder.each_ref().map(|problem| {
@@ -200,7 +202,8 @@ fn asymmetry(scheme: &mut dyn Scheme, offer: &Offer, case: &Case, start: &Fields
         "euler" | "acoustics" => f == 1,
         _ => false,
     };
-    // Values at centres are mirrored about the middle of the domain, values at nodes about a node: another period for either.
+    // Values at centres are mirrored about the middle of the domain, values at nodes about a node: another period for
+    // either.
     let mirror = |fields: &Fields| -> Fields {
         let one = |(f, u): (usize, &Vec<f64>)| u.iter().rev().map(|u| if odd(f) { -u } else { *u }).collect();
         fields.iter().enumerate().map(one).collect()

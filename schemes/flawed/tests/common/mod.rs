@@ -37,7 +37,8 @@ pub fn steady_errors(scheme: &mut dyn Scheme, problem: &Problem) -> [f64; 2] {
     differences(&solution.state, &exact)
 }
 
-/// Mean and largest of the absolute differences, summed over the fields; a value that is not finite makes both infinite.
+/// Mean and largest of the absolute differences, summed over the fields; a value that is not finite makes both
+/// infinite.
 pub fn differences(a: &[Vec<f64>], b: &[Vec<f64>]) -> [f64; 2] {
     let (mut mean, mut largest) = (0.0, 0.0);
     for (a, b) in a.iter().zip(b) {
