@@ -120,6 +120,47 @@ fn the_mean_of_every_field_is_kept_and_a_uniform_state_stays() {
 }
 
 #[test]
+fn the_rate_is_what_short_steps_make() {
+    for name in names() {
+        let mut scheme = scheme(name).unwrap();
+        for offer in scheme.describe().offers.into_iter().filter(|offer| offer.has(Operation::Rate)) {
+            let Some(case) = case_within(&offer) else { continue };
+            let (begin, _) = start(&offer, &case, scheme.as_mut());
+            let rate = scheme.rate(0.0, &begin, &mut NoCallbacks).unwrap();
+            let step = 1e-7;
+            let mut state = begin.clone();
+            let request = Advance { time: 0.0, step, steps: 1, state: &mut state, earlier: &mut [] };
+            scheme.advance(request, &mut NoCallbacks).unwrap();
+            let size = rate.iter().flatten().fold(0.0_f64, |most, r| most.max(r.abs()));
+            for ((new, old), rate) in state.iter().flatten().zip(begin.iter().flatten()).zip(rate.iter().flatten()) {
+                // Second differences over so short a step, and the rounding of the state divided by the step.
+                let allowed = 1e-4 * size + 10.0 * f64::EPSILON * old.abs() / step;
+                assert!(((new - old) / step - rate).abs() <= allowed, "{name}: {} and {rate}", (new - old) / step);
+            }
+        }
+    }
+}
+
+#[test]
+fn the_smallest_grid_that_is_offered_is_taken() {
+    for name in names() {
+        let mut scheme = scheme(name).unwrap();
+        for offer in scheme.describe().offers {
+            let Some(mut case) = case_within(&offer) else { continue };
+            case.grid.cells.fill(offer.cells.minimum);
+            let begin = start(&offer, &case, scheme.as_mut());
+            let (end, _) = run(scheme.as_mut(), begin, &[3]);
+            assert!(end.iter().flatten().all(|u| u.is_finite()), "{name}");
+            if offer.cells.minimum > 1 {
+                case.grid.cells.fill(offer.cells.minimum - 1);
+                let refused = scheme.prepare(&case, &mut NoCallbacks);
+                assert!(matches!(refused, Err(SchemeError::NotOffered(_))), "{name}: {refused:?}");
+            }
+        }
+    }
+}
+
+#[test]
 fn what_is_not_offered_is_refused() {
     for name in names() {
         let mut scheme = scheme(name).unwrap();
