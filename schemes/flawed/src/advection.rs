@@ -8,7 +8,7 @@ use gridassay_classical::one_step::OneStep;
 use gridassay_classical::registry::boxed;
 use gridassay_scheme::{Case, Fields, Harness, Nodes, Offer, Operation, Scheme, SchemeError};
 
-use crate::flaw::{Flaw, Study};
+use crate::flaw::{Flaw, Setting, Study};
 use crate::tampered::Tampered;
 
 fn explicit(weights: fn(f64) -> FaceWeights) -> Box<dyn Scheme> {
@@ -159,6 +159,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "upwind-never-switches",
         twin: "upwind",
+        setting: Setting::NegativeVelocity,
         mistake: "The cell to the left is taken as the upwind one whatever the sign of the velocity.",
         exposed_by: &[Study::Stability, Study::Modes],
         why: "for a negative velocity it is the downwind scheme, which grows at every step size",
@@ -167,6 +168,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "upwind-takes-the-downwind-cell",
         twin: "upwind",
+        setting: Setting::Anywhere,
         mistake: "The branches of the switch on the velocity's sign are exchanged.",
         exposed_by: &[Study::Stability, Study::Modes],
         why: "the downwind scheme grows at every step size",
@@ -175,6 +177,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "upwind-doubled-width",
         twin: "upwind",
+        setting: Setting::Anywhere,
         mistake: "The difference over one cell is divided by two cell widths.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "waves travel at half the velocity, so the error does not fall at all",
@@ -183,6 +186,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "lax-friedrichs-half-viscosity",
         twin: "lax-friedrichs",
+        setting: Setting::Anywhere,
         mistake: "The factor 1/2 of the mean is applied twice to the viscous part.",
         exposed_by: &[Study::Modes, Study::Stability],
         why: "still consistent and of first order, but cos(theta) becomes (1 + cos(theta)) / 2, and it is stable only \
@@ -192,6 +196,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "lax-wendroff-viscosity-not-halved",
         twin: "lax-wendroff",
+        setting: Setting::Anywhere,
         mistake: "The factor 1/2 of the second-order term is forgotten.",
         exposed_by: &[Study::OrderSpace, Study::Modes, Study::Stability],
         why: "the error of the second time derivative is over-corrected: first order",
@@ -200,6 +205,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "lax-wendroff-viscosity-sign",
         twin: "lax-wendroff",
+        setting: Setting::Anywhere,
         mistake: "The second-order term has the wrong sign.",
         exposed_by: &[Study::Stability, Study::Modes],
         why: "negative viscosity grows at every step size",
@@ -208,6 +214,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "lax-wendroff-courant-not-squared",
         twin: "lax-wendroff",
+        setting: Setting::Anywhere,
         mistake: "The Courant number is not squared in the second-order term.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "that is the upwind scheme: first order, and blind at Courant number 1",
@@ -216,6 +223,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "lax-wendroff-one-per-cent",
         twin: "lax-wendroff",
+        setting: Setting::Anywhere,
         mistake: "The second-order term is multiplied by 0.505 in place of 0.5.",
         exposed_by: &[Study::Modes],
         why: "far below the space error of any usual grid, where the order stays two; the amplification factor shows \
@@ -225,6 +233,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "lax-wendroff-single-precision",
         twin: "lax-wendroff",
+        setting: Setting::Anywhere,
         mistake: "The Courant number is held in single precision.",
         exposed_by: &[Study::Modes],
         why: "keeps every order until errors fall to 1e-7; a Courant number that is no dyadic fraction shows it in the \
@@ -234,6 +243,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "lax-wendroff-wrong-face-at-the-seam",
         twin: "lax-wendroff",
+        setting: Setting::LastCell,
         mistake: "The flux through the face between the last and the first cell is taken from the last cell alone.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "it conserves, since both cells share the flux, but is of lower order at one face; the answer to an \
@@ -243,6 +253,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "upwind-first-cell-left-out",
         twin: "upwind",
+        setting: Setting::FirstCell,
         mistake: "The loop over the cells starts at 1.",
         exposed_by: &[Study::Invariants, Study::OrderSpace, Study::Modes],
         why: "what flows into the first cell is lost; seen once a signal gets there",
@@ -251,6 +262,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "lax-wendroff-last-cell-left-out",
         twin: "lax-wendroff",
+        setting: Setting::LastCell,
         mistake: "The loop over the cells ends one too early.",
         exposed_by: &[Study::Invariants, Study::OrderSpace, Study::Modes],
         why: "what flows into the last cell is lost; seen once a signal gets there",
@@ -265,6 +277,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "upwind-two-fluxes-at-one-face",
         twin: "upwind",
+        setting: Setting::OneCell,
         mistake: "One cell sees another flux through a face than its neighbour does.",
         exposed_by: &[Study::Invariants, Study::Modes],
         why: "the field's sum changes by what one side gains and the other does not lose",
@@ -278,6 +291,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "beam-warming-slope-sign",
         twin: "beam-warming",
+        setting: Setting::Anywhere,
         mistake: "The correction has the factor (1 + c) in place of (1 - c).",
         exposed_by: &[Study::OrderSpace, Study::Modes, Study::Stability],
         why: "the error of the time derivative is doubled in place of removed: first order",
@@ -286,6 +300,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "beam-warming-downwind-slope",
         twin: "beam-warming",
+        setting: Setting::Anywhere,
         mistake: "The slope is taken over the face, with an index that is one too high.",
         exposed_by: &[Study::Modes, Study::Stability],
         why: "that is the Lax-Wendroff scheme, of second order too, but stable only up to Courant number 1 and with \
@@ -295,6 +310,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "fromm-slope-not-halved",
         twin: "fromm",
+        setting: Setting::Anywhere,
         mistake: "The difference over two cells is taken as if it were over one.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "twice the slope over-corrects: first order",
@@ -310,6 +326,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "leapfrog-half-difference",
         twin: "leapfrog",
+        setting: Setting::Anywhere,
         mistake: "The factor 2 of the double step is forgotten, and so the difference is halved.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "waves travel at half the velocity",
@@ -318,6 +335,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "leapfrog-starts-from-the-newer-level",
         twin: "leapfrog",
+        setting: Setting::Anywhere,
         mistake: "The change is added to the newer level in place of the older one.",
         exposed_by: &[Study::Modes, Study::Stability, Study::OrderSpace],
         why: "central differences with forward Euler and twice the velocity: grows at every step size",
@@ -326,6 +344,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "leapfrog-stale-level",
         twin: "leapfrog",
+        setting: Setting::SeveralSteps,
         mistake: "The older level is not replaced after a step.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "one step is right; from the second on the older level is too old",
@@ -334,6 +353,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "maccormack-forward-twice",
         twin: "maccormack",
+        setting: Setting::Anywhere,
         mistake: "The corrector takes a forward difference, as the predictor does.",
         exposed_by: &[Study::OrderSpace, Study::Modes, Study::Stability],
         why: "the space error of the predictor is not cancelled: first order, and unstable for a positive velocity",
@@ -342,6 +362,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "maccormack-corrects-the-old-values",
         twin: "maccormack",
+        setting: Setting::Anywhere,
         mistake: "The corrector's difference is taken of the old values in place of the predicted ones.",
         exposed_by: &[Study::Stability, Study::Modes, Study::OrderSpace],
         why: "central differences with forward Euler: grows at every step size",
@@ -350,6 +371,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "maccormack-mean-forgotten",
         twin: "maccormack",
+        setting: Setting::Anywhere,
         mistake: "The corrector is not averaged with the old value.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "two steps are taken in the time of one: waves travel at twice the velocity",
@@ -358,6 +380,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "crank-nicolson-advection-mostly-implicit",
         twin: "crank-nicolson-advection",
+        setting: Setting::Anywhere,
         mistake: "The implicit part is 0.6 in place of 0.5.",
         exposed_by: &[Study::OrderTime, Study::Modes],
         why: "first order in time, and waves are damped that should not be",
@@ -366,6 +389,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "crank-nicolson-advection-mostly-explicit",
         twin: "crank-nicolson-advection",
+        setting: Setting::Anywhere,
         mistake: "The implicit part is 0.45 in place of 0.5.",
         exposed_by: &[Study::Stability, Study::OrderTime, Study::Modes],
         why: "|G| > 1 at every step size, weakly",
@@ -374,6 +398,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "implicit-euler-advection-explicit-part-left-in",
         twin: "implicit-euler-advection",
+        setting: Setting::Anywhere,
         mistake: "The explicit half of the Crank-Nicolson scheme is left in beside a fully implicit operator.",
         exposed_by: &[Study::Modes],
         why: "the implicit part 0.9 keeps the first order; the amplification factor is another one",

@@ -7,7 +7,7 @@ use gridassay_classical::one_step::OneStep;
 use gridassay_classical::registry::boxed;
 use gridassay_scheme::{Case, Fields, Harness, Nodes, Offer, Parameter, Scheme, SchemeError};
 
-use crate::flaw::{Flaw, Study};
+use crate::flaw::{Flaw, Setting, Study};
 use crate::tampered::Tampered;
 
 /// Multiplies a scalar parameter.
@@ -67,6 +67,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "explicit-diffusion-width-not-squared",
         twin: "explicit-euler-diffusion",
+        setting: Setting::Anywhere,
         mistake: "The second difference is divided by the width of a cell in place of its square.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "the diffusivity shrinks with the grid: no convergence",
@@ -81,6 +82,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "explicit-diffusion-single-precision",
         twin: "explicit-euler-diffusion",
+        setting: Setting::Anywhere,
         mistake: "The diffusivity is held in single precision.",
         exposed_by: &[Study::Modes],
         why: "wrong in the eighth digit, which no order shows before errors fall to 1e-7",
@@ -92,6 +94,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "explicit-diffusion-seam-off-by-one",
         twin: "explicit-euler-diffusion",
+        setting: Setting::LastCell,
         mistake: "The last node is left as it was.",
         exposed_by: &[Study::Invariants, Study::OrderSpace, Study::Modes],
         why: "a periodic field has a value that never changes; with walls the boundary value is never set",
@@ -106,6 +109,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "crank-nicolson-diffusion-one-per-cent",
         twin: "crank-nicolson-diffusion",
+        setting: Setting::Anywhere,
         mistake: "The diffusivity is one per cent too large.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "below the space error of coarse grids; the amplification factor shows it at once",
@@ -114,6 +118,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "crank-nicolson-diffusion-implicit",
         twin: "crank-nicolson-diffusion",
+        setting: Setting::Anywhere,
         mistake: "The explicit half is forgotten: the operator is taken at the new time alone.",
         exposed_by: &[Study::OrderTime, Study::Modes],
         why: "first order in time; with a step that falls with the square of the width it looks like second order in \
@@ -123,6 +128,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "crank-nicolson-diffusion-part-typed-wrong",
         twin: "crank-nicolson-diffusion",
+        setting: Setting::Anywhere,
         mistake: "The implicit part is 0.55 in place of 0.5.",
         exposed_by: &[Study::OrderTime, Study::Modes],
         why: "first order in time with a small factor",
@@ -131,6 +137,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "crank-nicolson-diffusion-late-walls",
         twin: "crank-nicolson-diffusion",
+        setting: Setting::VaryingBoundaryValue,
         mistake: "The boundary value of the old time is set at the new time.",
         exposed_by: &[Study::OrderTime, Study::OrderSpace],
         why: "first order in time where the boundary value varies in time; blind with steady walls and on periodic \
@@ -144,6 +151,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "crank-nicolson-diffusion-walls-at-half-step",
         twin: "crank-nicolson-diffusion",
+        setting: Setting::VaryingBoundaryValue,
         mistake: "The boundary value is taken at the middle of the step.",
         exposed_by: &[Study::OrderTime, Study::OrderSpace],
         why: "first order in time where the boundary value varies in time",
@@ -156,6 +164,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "crank-nicolson-diffusion-old-source",
         twin: "crank-nicolson-diffusion",
+        setting: Setting::VaryingSource,
         mistake: "The source is taken at the old time in both halves.",
         exposed_by: &[Study::OrderTime],
         why: "first order in time where the source varies in time; no amplification factor shows it",
@@ -164,6 +173,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "crank-nicolson-diffusion-source-sign",
         twin: "crank-nicolson-diffusion",
+        setting: Setting::Source,
         mistake: "The source is subtracted.",
         exposed_by: &[Study::OrderSpace],
         why: "another equation is solved; without a source nothing shows",
@@ -172,6 +182,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "crank-nicolson-diffusion-shifted-source",
         twin: "crank-nicolson-diffusion",
+        setting: Setting::Source,
         mistake: "The source of the next node is added.",
         exposed_by: &[Study::OrderSpace],
         why: "the source is off by one cell: first order in space",
@@ -180,6 +191,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "crank-nicolson-diffusion-inward-gradient",
         twin: "crank-nicolson-diffusion",
+        setting: Setting::GradientWall,
         mistake: "The prescribed gradient is taken along the inward normal.",
         exposed_by: &[Study::OrderSpace],
         why: "heat flows the wrong way through the wall; a zero gradient hides it",
@@ -188,6 +200,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "crank-nicolson-diffusion-gradient-along-x",
         twin: "crank-nicolson-diffusion",
+        setting: Setting::LowerGradientWall,
         mistake: "The prescribed gradient is taken as the derivative along x at both ends.",
         exposed_by: &[Study::OrderSpace],
         why: "right at the upper end, of the wrong sign at the lower one",
@@ -203,6 +216,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "crank-nicolson-diffusion-whole-cell-at-the-wall",
         twin: "crank-nicolson-diffusion",
+        setting: Setting::GradientWall,
         mistake: "The node on a wall with a prescribed gradient is given a whole cell in place of half of one.",
         exposed_by: &[Study::OrderSpace],
         why: "the wall's balance is wrong by half a cell: first order; with prescribed values nothing shows",
@@ -215,6 +229,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "implicit-euler-diffusion-value-for-gradient",
         twin: "implicit-euler-diffusion",
+        setting: Setting::GradientWall,
         mistake: "The value at a wall is taken in place of the gradient.",
         exposed_by: &[Study::OrderSpace],
         why: "another boundary condition is set; with prescribed values nothing shows",
@@ -228,6 +243,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "du-fort-frankel-denominator",
         twin: "du-fort-frankel",
+        setting: Setting::Anywhere,
         mistake: "The denominator is 1 + r in place of 1 + 2 r.",
         exposed_by: &[Study::Modes, Study::OrderSpace, Study::Stability],
         why: "the weight of the mean is wrong, most at large steps: no convergence with a fixed diffusion number, and \
@@ -237,6 +253,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "du-fort-frankel-single-step",
         twin: "du-fort-frankel",
+        setting: Setting::Anywhere,
         mistake: "The step across two levels is counted as one.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "half the diffusivity",

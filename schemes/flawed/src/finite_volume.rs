@@ -10,7 +10,7 @@ use gridassay_classical::numerics::runge_kutta::{RK1, RK3, RK4, SSPRK2, SSPRK3, 
 use gridassay_classical::registry::with_runge_kutta;
 use gridassay_scheme::{Parameter, Scheme};
 
-use crate::flaw::{Flaw, Study};
+use crate::flaw::{Flaw, Setting, Study};
 use crate::tampered::Tampered;
 
 fn points<R: Reconstruction + 'static>(reconstruction: R, tableau: Tableau) -> Box<dyn Scheme> {
@@ -46,6 +46,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "upwind2-index",
         twin: "upwind2-rk2",
+        setting: Setting::Anywhere,
         mistake: "The extrapolation takes u_{j-2} in place of u_{j-1}.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "the slope is twice too large: first order",
@@ -59,6 +60,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "upwind3-exchanged-weights",
         twin: "upwind3-rk3",
+        setting: Setting::Anywhere,
         mistake: "The weights -1/6 and 2/6 are exchanged.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "a straight line is no longer reconstructed: first order",
@@ -67,6 +69,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "upwind5-typed-weight",
         twin: "upwind5-rk4",
+        setting: Setting::Anywhere,
         mistake: "The weight 27/60 is typed as 26/60 and the upwind weight makes up for it.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "the reconstruction is right for a uniform state alone: first order with a small factor",
@@ -78,6 +81,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "upwind5-absolute-velocity",
         twin: "upwind5-rk4",
+        setting: Setting::NegativeVelocity,
         mistake: "The flux is computed with the absolute value of the velocity.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "right for a positive velocity; for a negative one waves run the wrong way",
@@ -93,6 +97,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "weno5-reversed-linear-weights",
         twin: "weno5-ssprk3",
+        setting: Setting::Anywhere,
         mistake: "The linear weights 1/10, 6/10, 3/10 are given in the reverse order.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "the three parabolas no longer combine to fifth order: third",
@@ -101,6 +106,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "weno5-equal-linear-weights",
         twin: "weno5-ssprk3",
+        setting: Setting::Anywhere,
         mistake: "The linear weights are a third each.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "third order",
@@ -109,6 +115,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "weno5-duplicate-index",
         twin: "weno5-ssprk3",
+        setting: Setting::Anywhere,
         mistake: "u_{j+1} is read a second time in place of u_{j+2}.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "one of three parabolas is of low order and is trusted where it looks smooth",
@@ -117,6 +124,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "muscl-slope-not-halved",
         twin: "muscl-van-leer",
+        setting: Setting::Anywhere,
         mistake: "The whole slope is added at the face in place of half of it.",
         exposed_by: &[Study::OrderSpace, Study::Invariants],
         why: "over-corrected: first order, and new extrema",
@@ -125,6 +133,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "muscl-slope-zero",
         twin: "muscl-minmod",
+        setting: Setting::Anywhere,
         mistake: "The bound 1 in max(0, min(1, r)) is typed as 0, so that the slope always vanishes.",
         exposed_by: &[Study::OrderSpace],
         why: "that is the upwind scheme: first order, total variation kept",
@@ -133,6 +142,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "muscl-minmod-takes-the-larger",
         twin: "muscl-minmod",
+        setting: Setting::Jumps,
         mistake: "The comparison in minmod is the wrong way round.",
         exposed_by: &[Study::Invariants],
         why: "steeper than any limiter may be: the total variation grows; on smooth waves it is still of second order",
@@ -151,6 +161,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "muscl-minmod-one-sided",
         twin: "muscl-minmod",
+        setting: Setting::Jumps,
         mistake: "The limiter returns its first argument wherever both have the same sign.",
         exposed_by: &[Study::Invariants],
         why: "the total variation grows beside steps; on smooth waves it is of second order",
@@ -159,6 +170,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "muscl-van-leer-sign-not-checked",
         twin: "muscl-van-leer",
+        setting: Setting::Anywhere,
         mistake: "The sign of the product is not checked before the harmonic mean is taken.",
         exposed_by: &[Study::Invariants, Study::OrderSpace],
         why: "at extrema the slope can be anything: new extrema and blow-up; a uniform state gives 0 / 0",
@@ -167,6 +179,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "muscl-superbee-three",
         twin: "muscl-superbee",
+        setting: Setting::Jumps,
         mistake: "The factor 2 of superbee is typed as 3.",
         exposed_by: &[Study::Invariants],
         why: "leaves the region of Sweby: the total variation grows beside steps of several widths",
@@ -180,6 +193,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "muscl-mc-mean-not-halved",
         twin: "muscl-mc",
+        setting: Setting::Anywhere,
         mistake: "The central slope is the sum of both differences in place of their mean.",
         exposed_by: &[Study::OrderSpace],
         why: "on smooth waves the slope is twice too large: first order, though the total variation is still bounded \
@@ -189,6 +203,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "burgers-flux-not-halved",
         twin: "burgers-godunov",
+        setting: Setting::Anywhere,
         mistake: "The flux is u^2 in place of u^2 / 2.",
         exposed_by: &[Study::OrderSpace],
         why: "everything travels at twice its speed; the sum is still kept",
@@ -197,6 +212,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "burgers-no-sonic-point",
         twin: "burgers-godunov",
+        setting: Setting::Jumps,
         mistake: "The side is chosen by the mean of both states, without a look at the sonic point.",
         exposed_by: &[Study::OrderSpace],
         why: "a rarefaction through zero stays a standing jump; right everywhere else",
@@ -210,6 +226,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "burgers-speed-of-one-side",
         twin: "burgers-lax-friedrichs",
+        setting: Setting::Anywhere,
         mistake: "The viscosity takes the speed of the left state alone.",
         exposed_by: &[Study::Invariants],
         why: "too little viscosity where the right state is the faster one: new extrema and no mirror symmetry",
@@ -218,6 +235,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "burgers-viscosity-sign",
         twin: "burgers-lax-friedrichs",
+        setting: Setting::Anywhere,
         mistake: "The difference in the viscous part is the wrong way round.",
         exposed_by: &[Study::Invariants, Study::OrderSpace],
         why: "negative viscosity: blows up",

@@ -4,9 +4,12 @@
 //! names the twin, the mistake, the studies that should expose it and why; some mistakes no study of this kind can
 //! see, and the table says so.
 //!
-//! ``` let flaw = gridassay_flawed::flaws().iter().find(|flaw| flaw.name ==
-//! "lax-wendroff-viscosity-not-halved").unwrap(); assert_eq!(flaw.twin, "lax-wendroff");
-//! assert_eq!(flaw.scheme().describe().name, flaw.name); ```
+//! ```
+//! let all = gridassay_flawed::flaws();
+//! let flaw = all.iter().find(|flaw| flaw.name == "lax-wendroff-viscosity-not-halved").expect("a row of the table");
+//! assert_eq!(flaw.twin, "lax-wendroff");
+//! assert_eq!(flaw.scheme().describe().name, flaw.name);
+//! ```
 
 mod advection;
 mod diffusion;
@@ -24,7 +27,7 @@ use std::sync::LazyLock;
 
 use gridassay_scheme::Scheme;
 
-pub use flaw::{Flaw, Study};
+pub use flaw::{Flaw, Setting, Study};
 pub use tampered::{AnswerSlip, Moment, Tampered};
 
 static FLAWS: LazyLock<Vec<Flaw>> = LazyLock::new(|| {

@@ -12,7 +12,7 @@ use gridassay_classical::registry::{boxed, with_runge_kutta};
 use gridassay_scheme::Scheme;
 
 use crate::diffusion::scale;
-use crate::flaw::{Flaw, Study};
+use crate::flaw::{Flaw, Setting, Study};
 use crate::tampered::Tampered;
 
 fn central(weights: CentralWeights, closure_order: usize) -> Box<dyn Scheme> {
@@ -31,6 +31,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "central2-divided-by-one-width",
         twin: "central2-rk4",
+        setting: Setting::Advection,
         mistake: "The difference over two cells is divided by one width.",
         exposed_by: &[Study::Modes, Study::OrderSpace, Study::Stability],
         why: "waves travel at twice the velocity; with diffusion alone nothing shows",
@@ -39,6 +40,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "central4-eight-typed-as-seven",
         twin: "central4-rk4",
+        setting: Setting::Advection,
         mistake: "The weight 8/12 of the first derivative is typed as 7/12.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "the weights no longer differentiate a straight line: no convergence",
@@ -47,6 +49,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "central4-outer-sign",
         twin: "central4-rk4",
+        setting: Setting::Diffusion,
         mistake: "The outer weight of the second derivative has the wrong sign.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "a parabola is no longer differentiated exactly; with advection alone nothing shows",
@@ -55,6 +58,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "central4-consistent-but-second-order",
         twin: "central4-rk4",
+        setting: Setting::Advection,
         mistake: "The weights 3/4 and -1/8 stand in place of 2/3 and -1/12.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "they still differentiate a straight line, but no cubic: second order",
@@ -63,6 +67,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "central4-single-precision-third",
         twin: "central4-rk4",
+        setting: Setting::Advection,
         mistake: "The weights 2/3 and 1/12 are single-precision constants.",
         exposed_by: &[Study::Modes],
         why: "the order is kept until errors fall to 1e-8; the amplification factor shows it",
@@ -71,6 +76,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "central4-first-order-closure",
         twin: "central4-rk4",
+        setting: Setting::Walls,
         mistake: "The nodes next to the walls use the shortest one-sided differences.",
         exposed_by: &[Study::OrderSpace],
         why: "a closure three orders below the inside pulls the whole down; on periodic grids nothing shows",
@@ -79,6 +85,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "central6-third-weight",
         twin: "central6-rk4",
+        setting: Setting::Advection,
         mistake: "The weight 1/60 is typed as 1/66.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "half a per cent of the velocity is missing, which only fine grids feel",
@@ -87,6 +94,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "central6-second-derivative-of-fourth-order",
         twin: "central6-rk4",
+        setting: Setting::Diffusion,
         mistake: "The second derivative keeps the weights of the fourth-order scheme.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "fourth order wherever there is diffusion",
@@ -95,6 +103,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "central6-low-order-closure",
         twin: "central6-rk4",
+        setting: Setting::Walls,
         mistake: "The nodes near the walls are closed with second order.",
         exposed_by: &[Study::OrderSpace],
         why: "the walls rule the error; on periodic grids nothing shows",
@@ -103,6 +112,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "pade4-alpha-a-fifth",
         twin: "pade4-rk4",
+        setting: Setting::Advection,
         mistake: "The weight of the neighbouring first derivatives is 1/5 in place of 1/4.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "a straight line is no longer differentiated exactly",
@@ -116,6 +126,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "pade4-average-of-an-eighth",
         twin: "pade4-rk4",
+        setting: Setting::Diffusion,
         mistake: "Second derivatives are averaged with weights 1/8, 1, 1/8 in place of 1/10, 1, 1/10.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "consistent, but of second order: only a fourth-order scheme feels it, and only with diffusion",
@@ -127,6 +138,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "pade4-wall-row-beta",
         twin: "pade4-rk4",
+        setting: Setting::Walls,
         mistake: "The row of the first derivative at a wall has the weight 3 in place of 2.",
         exposed_by: &[Study::OrderSpace],
         why: "an inconsistent row at the wall pollutes the inside; on periodic grids nothing shows",
@@ -135,6 +147,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "pade4-wall-row-sign",
         twin: "pade4-rk4",
+        setting: Setting::Walls,
         mistake: "The last weight of the second derivative's row at a wall has the wrong sign.",
         exposed_by: &[Study::OrderSpace],
         why: "the row no longer vanishes on a uniform state; on periodic grids nothing shows",
@@ -143,6 +156,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "compact6-outer-weight-not-quartered",
         twin: "compact6-rk4",
+        setting: Setting::Advection,
         mistake: "The difference over four cells is divided by two widths in place of four.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "waves travel too fast by a thirtieth",
@@ -154,6 +168,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "rk4-weights",
         twin: "central4-rk4",
+        setting: Setting::Anywhere,
         mistake: "The weights of the second and third stage are 1/6 and 1/2 in place of 1/3 each.",
         exposed_by: &[Study::OrderTime, Study::Modes],
         why: "the weights sum to 1 and give second order in time",
@@ -162,6 +177,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "rk4-third-stage-from-the-first",
         twin: "central4-rk4",
+        setting: Setting::Anywhere,
         mistake: "The third stage starts from the slope of the first in place of the second.",
         exposed_by: &[Study::OrderTime, Study::Modes],
         why: "one of the conditions of third order is lost",
@@ -170,6 +186,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "rk4-last-stage-half-step",
         twin: "central4-rk4",
+        setting: Setting::Anywhere,
         mistake: "The last stage goes half a step in place of a whole one.",
         exposed_by: &[Study::OrderTime, Study::Modes],
         why: "second order is lost: the slopes' times have the wrong mean",
@@ -178,6 +195,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "rk4-source-times",
         twin: "central4-rk4",
+        setting: Setting::VaryingSource,
         mistake: "The last stage takes the source at the middle of the step.",
         exposed_by: &[Study::OrderTime],
         why: "first order in time where the source varies in time; no amplification factor shows it",
@@ -186,6 +204,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "rk3-third-stage",
         twin: "upwind3-rk3",
+        setting: Setting::Anywhere,
         mistake: "The third stage of Kutta's method is u + dt k2 in place of u - dt k1 + 2 dt k2.",
         exposed_by: &[Study::OrderTime, Study::Modes, Study::OrderSpace],
         why: "second order in time",
@@ -194,6 +213,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "ssprk3-second-stage",
         twin: "central4-ssprk3",
+        setting: Setting::Anywhere,
         mistake: "The second stage is the mean of old and new in place of 3/4 and 1/4.",
         exposed_by: &[Study::OrderTime, Study::Modes],
         why: "the stage sits at the end of the step: second order is lost",
@@ -202,14 +222,16 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "rk4-source-at-the-start",
         twin: "central4-rk4",
+        setting: Setting::VaryingSource,
         mistake: "The source is taken at the start of the step in all stages.",
         exposed_by: &[Study::OrderTime],
-        why: "first order in time where the source varies in time; an entropy-like steady source hides it",
+        why: "first order in time where the source varies in time; a steady source hides it",
         make: || Tampered::classical("central4-rk4").source_time(|moment| moment.start).boxed(),
     },
     Flaw {
         name: "rk4-source-doubled",
         twin: "central4-rk4",
+        setting: Setting::Source,
         mistake: "The source is added twice.",
         exposed_by: &[Study::OrderSpace],
         why: "another equation is solved; without a source nothing shows",
@@ -218,6 +240,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "rk4-walls-at-stage-times",
         twin: "central4-rk4",
+        setting: Setting::VaryingBoundaryValue,
         mistake: "The stages take the boundary value of their own time.",
         exposed_by: &[Study::OrderSpace],
         why: "a stage is not the solution at its time: the order of the whole falls to about two and a half where the \
@@ -231,6 +254,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "rk4-walls-at-the-start",
         twin: "central4-rk4",
+        setting: Setting::VaryingBoundaryValue,
         mistake: "The boundary value at the start of the step is kept throughout it.",
         exposed_by: &[Study::OrderTime, Study::OrderSpace],
         why: "first order in time where the boundary value varies in time",
@@ -239,6 +263,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "central2-walls-exchanged-sign",
         twin: "central2-rk4",
+        setting: Setting::UpperWall,
         mistake: "The boundary value has the wrong sign at the upper wall.",
         exposed_by: &[Study::OrderSpace],
         why: "another boundary condition is set; a value of zero hides it",
@@ -254,6 +279,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "burgers-viscosity-halved",
         twin: "burgers-central2-rk4",
+        setting: Setting::Diffusion,
         mistake: "The viscosity is halved, as if it stood for the whole of a symmetric stress.",
         exposed_by: &[Study::OrderSpace],
         why: "another equation is solved; where the viscosity is small against the width it hardly shows",

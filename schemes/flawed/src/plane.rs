@@ -4,7 +4,7 @@ use gridassay_classical::plane::{FaceBlock, PlaneNumbers, PlaneScheme, diffusion
 use gridassay_classical::registry::boxed;
 use gridassay_scheme::{Case, Fields, Parameter, Scheme};
 
-use crate::flaw::{Flaw, Study};
+use crate::flaw::{Flaw, Setting, Study};
 use crate::tampered::Tampered;
 
 fn advection(weights: fn(PlaneNumbers) -> [FaceBlock; 2]) -> Box<dyn Scheme> {
@@ -20,6 +20,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "upwind-2d-exchanged-velocities",
         twin: "upwind-2d",
+        setting: Setting::ObliqueDirection,
         mistake: "The Courant numbers of x and y are exchanged.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "hidden where both are equal, as on a square grid with a diagonal velocity",
@@ -32,6 +33,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "upwind-2d-exchanged-spacings",
         twin: "upwind-2d",
+        setting: Setting::UnequalSpacings,
         mistake: "The widths of a cell in x and y are exchanged.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "hidden on square cells",
@@ -49,6 +51,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "upwind-2d-never-switches-in-y",
         twin: "upwind-2d",
+        setting: Setting::NegativeVelocity,
         mistake: "In y the lower cell is taken as the upwind one whatever the sign of the velocity.",
         exposed_by: &[Study::Stability, Study::Modes],
         why: "right in two of the four quadrants, unstable in the others",
@@ -62,6 +65,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "upwind-2d-transposed",
         twin: "upwind-2d",
+        setting: Setting::ObliqueDirection,
         mistake: "The velocity in y is that of x.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "hidden by a diagonal velocity on square cells",
@@ -74,6 +78,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "lax-wendroff-2d-no-mixed-derivative",
         twin: "lax-wendroff-2d",
+        setting: Setting::ObliqueDirection,
         mistake: "The mixed derivative is forgotten.",
         exposed_by: &[Study::OrderSpace, Study::Modes, Study::Stability],
         why: "first order in time in oblique directions, right along the axes",
@@ -82,6 +87,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "lax-wendroff-2d-mixed-sign",
         twin: "lax-wendroff-2d",
+        setting: Setting::ObliqueDirection,
         mistake: "The mixed derivative has the wrong sign.",
         exposed_by: &[Study::OrderSpace, Study::Modes, Study::Stability],
         why: "first order in oblique directions",
@@ -90,6 +96,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "lax-wendroff-2d-mixed-doubled",
         twin: "lax-wendroff-2d",
+        setting: Setting::ObliqueDirection,
         mistake: "The mixed derivative's factor is 1/4 in place of 1/8 in each direction.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "first order in oblique directions",
@@ -98,6 +105,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "diffusion-2d-one-spacing",
         twin: "diffusion-2d",
+        setting: Setting::UnequalSpacings,
         mistake: "The width in x is used in both directions.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "hidden on square cells",
@@ -111,6 +119,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "diffusion-2d-transposed-source",
         twin: "diffusion-2d",
+        setting: Setting::Source,
         mistake: "The source's array is read with x and y exchanged.",
         exposed_by: &[Study::OrderSpace],
         why: "another source is added; one that is symmetric in x and y hides it, and so does the amplification factor",

@@ -6,7 +6,7 @@ use gridassay_classical::registry::boxed;
 use gridassay_scheme::{Parameter, Scheme};
 
 use crate::diffusion::scale;
-use crate::flaw::{Flaw, Study};
+use crate::flaw::{Flaw, Setting, Study};
 use crate::tampered::Tampered;
 
 fn averaged(source_average: f64) -> Box<dyn Scheme> {
@@ -18,6 +18,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "poisson-compact4-source-not-averaged",
         twin: "poisson-compact4",
+        setting: Setting::Source,
         mistake: "The source is taken at the node alone.",
         exposed_by: &[Study::OrderSpace],
         why: "second order: only a fourth-order scheme feels it",
@@ -26,6 +27,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "poisson-compact4-average-of-a-tenth",
         twin: "poisson-compact4",
+        setting: Setting::Source,
         mistake: "The source's weights are 1/10, 8/10, 1/10 in place of 1/12, 10/12, 1/12.",
         exposed_by: &[Study::OrderSpace],
         why: "second order with a small factor: only a fourth-order scheme feels it",
@@ -34,6 +36,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "poisson-compact4-average-sign",
         twin: "poisson-compact4",
+        setting: Setting::Source,
         mistake: "The source's second difference is subtracted.",
         exposed_by: &[Study::OrderSpace],
         why: "second order: only a fourth-order scheme feels it",
@@ -42,6 +45,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "poisson-unit-conductivity",
         twin: "poisson-central2",
+        setting: Setting::Parameter("conductivity"),
         mistake: "The conductivity is taken as 1.",
         exposed_by: &[Study::OrderSpace],
         why: "hidden where it is 1",
@@ -55,6 +59,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "poisson-inward-gradient",
         twin: "poisson-central2",
+        setting: Setting::GradientWall,
         mistake: "The prescribed gradient is taken along the inward normal.",
         exposed_by: &[Study::OrderSpace],
         why: "hidden by a zero gradient, and with values on both sides",
@@ -63,6 +68,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "poisson-half-gradient",
         twin: "poisson-central2",
+        setting: Setting::GradientWall,
         mistake: "The value beyond the wall is u_1 + h g in place of u_1 + 2 h g.",
         exposed_by: &[Study::OrderSpace],
         why: "half the gradient is set: no convergence; hidden with values on both sides",
@@ -71,6 +77,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "poisson-source-shifted",
         twin: "poisson-central2",
+        setting: Setting::Source,
         mistake: "The source is read one node too far to the right.",
         exposed_by: &[Study::OrderSpace],
         why: "first order",
@@ -79,6 +86,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "boundary-layer-velocity-halved",
         twin: "central2-rk4",
+        setting: Setting::Advection,
         mistake: "The factor 1/2 of the central difference is applied twice.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "half the velocity: no convergence",

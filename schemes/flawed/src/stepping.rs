@@ -7,7 +7,7 @@ use gridassay_classical::one_step::OneStep;
 use gridassay_classical::registry::boxed;
 use gridassay_scheme::{Case, Fields, Harness, Nodes, Offer, Operation, SchemeError};
 
-use crate::flaw::{Flaw, Study};
+use crate::flaw::{Flaw, Setting, Study};
 use crate::tampered::Tampered;
 
 /// Lax-Wendroff that reckons its Courant number once and never again, or counts its steps over all requests.
@@ -66,6 +66,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "one-step-too-many",
         twin: "lax-wendroff",
+        setting: Setting::Anywhere,
         mistake: "The loop over the steps runs to the number of steps inclusively.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "the answer is one step late: first order",
@@ -74,6 +75,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "one-step-too-few",
         twin: "central4-rk4",
+        setting: Setting::SeveralSteps,
         mistake: "The loop over the steps starts at 1 where more than one is asked for.",
         exposed_by: &[Study::OrderSpace, Study::Repeatability],
         why: "one step alone is right; runs end one step early: first order, and the answer depends on how steps are \
@@ -83,6 +85,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "step-clipped",
         twin: "lax-wendroff",
+        setting: Setting::LargeSteps,
         mistake: "The step is silently clipped to a Courant number of 0.4.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "right below it; above, less time passes than was asked for",
@@ -97,6 +100,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "single-precision-state",
         twin: "central4-rk4",
+        setting: Setting::Anywhere,
         mistake: "The state is held in single precision between steps.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "errors stall at 1e-7 times the root of the number of steps",
@@ -110,6 +114,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "first-courant-number-kept",
         twin: "lax-wendroff",
+        setting: Setting::EarlierRequests,
         mistake: "The Courant number is reckoned in the first step and never again.",
         exposed_by: &[Study::Repeatability, Study::OrderTime],
         why: "a fresh scheme is right, and so is a ladder at a fixed Courant number; after another case or another \
@@ -119,6 +124,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "every-tenth-step-halved",
         twin: "lax-wendroff",
+        setting: Setting::EarlierRequests,
         mistake: "A start-up step of half the size is taken again whenever a counter over all requests reaches ten.",
         exposed_by: &[Study::Repeatability, Study::OrderSpace],
         why: "less time passes than was asked for, and the answer depends on what was asked before",
@@ -127,6 +133,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "negative-values-clipped",
         twin: "lax-wendroff",
+        setting: Setting::NegativeValues,
         mistake: "Values below zero are set to zero after each step, meant for densities.",
         exposed_by: &[Study::Invariants, Study::Modes],
         why: "the scheme is no longer linear and the sum is not kept; a positive smooth state hides it",

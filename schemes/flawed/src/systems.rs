@@ -9,7 +9,7 @@ use gridassay_classical::systems::riemann::{EulerFlux, Primitive, conserved, hll
 use gridassay_scheme::{Case, Parameter, Scheme};
 
 use crate::diffusion::scale;
-use crate::flaw::{Flaw, Study};
+use crate::flaw::{Flaw, Setting, Study};
 use crate::tampered::Tampered;
 
 fn set(case: &mut Case, name: &str, value: f64) {
@@ -37,6 +37,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "acoustics-no-density",
         twin: "acoustics-upwind",
+        setting: Setting::Parameter("density"),
         mistake: "The density is left out of the impedance.",
         exposed_by: &[Study::OrderSpace, Study::Modes],
         why: "hidden where the density is 1; else velocity answers pressure with the wrong size",
@@ -45,6 +46,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "acoustics-mean-flow-sign",
         twin: "acoustics-upwind",
+        setting: Setting::Parameter("velocity"),
         mistake: "The mean flow has the wrong sign.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "hidden without a mean flow; else sound is carried upstream",
@@ -53,6 +55,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "acoustics-mean-flow-forgotten",
         twin: "acoustics-upwind",
+        setting: Setting::Parameter("velocity"),
         mistake: "The mean flow is left out of the eigenvalues.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "hidden without a mean flow",
@@ -61,6 +64,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "acoustics-staggered-sound-speed-not-squared",
         twin: "acoustics-staggered",
+        setting: Setting::Parameter("sound_speed"),
         mistake: "The pressure's equation has rho c in place of rho c^2.",
         exposed_by: &[Study::Modes, Study::OrderSpace],
         why: "hidden where the speed of sound is 1; else sound runs at the root of its speed",
@@ -75,6 +79,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "dg-p1-forward-euler",
         twin: "dg-p1",
+        setting: Setting::Anywhere,
         mistake: "The second stage of the Runge-Kutta method is never reached.",
         exposed_by: &[Study::Stability, Study::OrderTime, Study::Modes],
         why: "forward Euler with this space grows at every fixed Courant number",
@@ -83,6 +88,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "dg-p3-second-order-time",
         twin: "dg-p3",
+        setting: Setting::Anywhere,
         mistake: "The time stepping of the piecewise linear elements is kept.",
         exposed_by: &[Study::OrderTime, Study::Modes],
         why: "second order in time where fourth is needed",
@@ -91,6 +97,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "dg-p2-equal-weights",
         twin: "dg-p2",
+        setting: Setting::Anywhere,
         mistake: "The weights of the points are told as a third each.",
         exposed_by: &[Study::Invariants],
         why: "the mean that these weights form is not the one that is kept; a state that is smooth within each cell \
@@ -100,6 +107,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "dg-p2-shifted-points",
         twin: "dg-p2",
+        setting: Setting::Anywhere,
         mistake: "The points are told as those of equal thirds of a cell.",
         exposed_by: &[Study::OrderSpace],
         why: "the state is compared with the solution at places where it does not stand: first order",
@@ -108,6 +116,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "euler-gamma-of-air",
         twin: "euler-muscl-hllc",
+        setting: Setting::Parameter("gamma"),
         mistake: "The ratio of specific heats is 1.4 whatever the gas.",
         exposed_by: &[Study::OrderSpace],
         why: "hidden for air, and by an entropy wave, which is blind to gamma",
@@ -116,6 +125,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "euler-no-slopes",
         twin: "euler-muscl-hllc",
+        setting: Setting::Anywhere,
         mistake: "The reconstructed states are computed and then not handed to the flux.",
         exposed_by: &[Study::OrderSpace],
         why: "first order",
@@ -124,6 +134,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "euler-no-pressure-work",
         twin: "euler-rusanov",
+        setting: Setting::Anywhere,
         mistake: "The energy's flux is u E in place of u (E + p).",
         exposed_by: &[Study::OrderSpace],
         why: "the pressure's work is lost; all sums are still kept, and an entropy wave is carried wrongly at most in \
@@ -138,6 +149,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "euler-half-pressure",
         twin: "euler-rusanov",
+        setting: Setting::Anywhere,
         mistake: "The pressure enters the momentum's flux with the factor 1/2 of the dynamic pressure.",
         exposed_by: &[Study::OrderSpace],
         why: "an entropy wave, whose pressure is constant, does not see it",
@@ -151,6 +163,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "euler-viscosity-without-sound",
         twin: "euler-rusanov",
+        setting: Setting::Anywhere,
         mistake: "The viscosity takes the flow's speed without the speed of sound.",
         exposed_by: &[Study::Stability],
         why: "too little viscosity below the speed of sound: forward Euler grows",
@@ -166,6 +179,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "euler-hllc-energy-from-the-left",
         twin: "euler-muscl-hllc",
+        setting: Setting::Anywhere,
         mistake: "The energy's flux is always that of the left state.",
         exposed_by: &[Study::Invariants],
         why: "with second-order states on both sides the order stays two, but a mirrored run is no longer the mirror \

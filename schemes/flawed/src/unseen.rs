@@ -8,13 +8,14 @@ use gridassay_classical::registry::{boxed, with_runge_kutta};
 use gridassay_scheme::Case;
 
 use crate::diffusion::scale;
-use crate::flaw::Flaw;
+use crate::flaw::{Flaw, Setting};
 use crate::tampered::Tampered;
 
 pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "unseen-implicit-euler-old-source",
         twin: "implicit-euler-diffusion",
+        setting: Setting::VaryingSource,
         mistake: "The source is taken at the old time in place of the new one.",
         exposed_by: &[],
         why: "the scheme is of first order in time either way, and without a source nothing changes",
@@ -23,6 +24,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "unseen-explicit-euler-late-walls",
         twin: "explicit-euler-diffusion",
+        setting: Setting::VaryingBoundaryValue,
         mistake: "The boundary value of the old time is set at the new time.",
         exposed_by: &[],
         why: "an error of first order in time in a scheme of first order in time, and of second order in space where \
@@ -36,6 +38,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "unseen-weno5-smoothness",
         twin: "weno5-ssprk3",
+        setting: Setting::Anywhere,
         mistake: "The curvature's factor 13/12 in the measure of smoothness is typed as 13/10.",
         exposed_by: &[],
         why: "the fifth order does not depend on it, and shocks are still captured; only a comparison with published \
@@ -48,6 +51,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "unseen-below-rounding",
         twin: "crank-nicolson-diffusion",
+        setting: Setting::Anywhere,
         mistake: "A constant is wrong in the fourteenth digit.",
         exposed_by: &[],
         why: "below what rounding does to the answer",
@@ -59,6 +63,7 @@ pub(crate) const FLAWS: &[Flaw] = &[
     Flaw {
         name: "unseen-work-done-twice",
         twin: "poisson-central2",
+        setting: Setting::Anywhere,
         mistake: "The case is prepared twice.",
         exposed_by: &[],
         why: "costs time and changes no number",

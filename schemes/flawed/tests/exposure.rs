@@ -4,7 +4,8 @@
 mod common;
 
 use common::measures;
-use gridassay_flawed::{Flaw, Study, flaws};
+use gridassay_flawed::{Flaw, Setting, Study, flaws};
+use gridassay_scheme::{Case, Parameter};
 
 fn exposes(study: Study, flaw: &Flaw) -> bool {
     match study {
@@ -60,5 +61,45 @@ fn what_the_table_calls_unseen_is_unseen() {
         for study in [Study::OrderSpace, Study::OrderTime, Study::Invariants, Study::Stability, Study::Repeatability] {
             assert!(!exposes(study, flaw), "{study:?} exposes {}", flaw.name);
         }
+    }
+}
+
+/// Leaves out what the setting says, so that the flawed scheme must answer as its twin does; false where a case
+/// cannot do without it, or where the setting is none that can be left out of periodic cases.
+fn without(setting: Setting, case: &mut Case) -> bool {
+    match setting {
+        Setting::Advection => case.equation == "diffusion",
+        Setting::Diffusion => case.equation == "advection",
+        // Periodic cases have neither source nor walls.
+        Setting::Source
+        | Setting::VaryingSource
+        | Setting::Walls
+        | Setting::UpperWall
+        | Setting::VaryingBoundaryValue
+        | Setting::GradientWall
+        | Setting::LowerGradientWall => true,
+        Setting::NegativeVelocity => case.vector("velocity").is_ok_and(|v| v.iter().all(|a| *a >= 0.0)),
+        Setting::UnequalSpacings => {
+            case.grid.cells[1] = case.grid.cells[0];
+            case.grid.upper[1] = case.grid.lower[1] + case.grid.upper[0] - case.grid.lower[0];
+            true
+        }
+        Setting::Parameter(name) => {
+            let neutral = match name {
+                "velocity" => 0.0,
+                "gamma" => 1.4,
+                _ => 1.0,
+            };
+            case.parameters.insert(name.to_owned(), Parameter::Scalar(neutral));
+            true
+        }
+        _ => false,
+    }
+}
+
+#[test]
+fn without_the_setting_the_flawed_scheme_answers_as_its_twin_does() {
+    for flaw in flaws() {
+        assert!(!measures::modes_where(flaw, |case| without(flaw.setting, case)), "{}: {:?}", flaw.name, flaw.setting);
     }
 }

@@ -121,7 +121,14 @@ fn steps_at(case: &Case, numbers: &[f64]) -> Vec<f64> {
 
 /// Whether one or a few steps of noise differ from the twin's beyond rounding: the amplification factor differs.
 pub fn modes(flaw: &Flaw) -> bool {
-    periodic_cases(flaw, 16).iter().any(|(offer, case)| {
+    modes_where(flaw, |_| true)
+}
+
+/// The same in those periodic cases that `keep` keeps and may simplify.
+pub fn modes_where(flaw: &Flaw, keep: impl Fn(&mut Case) -> bool) -> bool {
+    let mut cases = periodic_cases(flaw, 16);
+    cases.retain_mut(|(_, case)| keep(case));
+    cases.iter().any(|(offer, case)| {
         let (mut wrong, mut right) = (flaw.scheme(), flaw.right_twin());
         let (start, _) = noisy(offer, case, right.as_mut(), 1.0);
         noisy(offer, case, wrong.as_mut(), 1.0);
