@@ -20,6 +20,7 @@ pub mod plane;
 pub mod poisson;
 pub mod registry;
 pub mod systems;
+pub mod volume;
 
 pub use registry::{names, scheme};
 

@@ -17,9 +17,10 @@ fn case_within(offer: &Offer) -> Option<Case> {
     let dimensions = offer.dimensions[0];
     let mut case = common::periodic(&offer.equation, 1, &[]);
     case.dimensions = dimensions;
-    case.grid = Grid::uniform(&[12, 10][..dimensions], &[0.3, -0.2][..dimensions], &[2.0, 0.7][..dimensions]);
+    case.grid =
+        Grid::uniform(&[12, 10, 8][..dimensions], &[0.3, -0.2, 0.0][..dimensions], &[2.0, 0.7, 1.1][..dimensions]);
     case.boundaries = vec![case.boundaries[0].clone(); dimensions];
-    let velocity = if offer.equation == "acoustics" { vec![0.0] } else { vec![1.1, -0.6][..dimensions].to_vec() };
+    let velocity = if offer.equation == "acoustics" { vec![0.0] } else { vec![1.1, -0.6, 0.4][..dimensions].to_vec() };
     let viscosity =
         if offer.parameters.get("viscosity").is_some_and(|range| range.admits(&[0.0])) { 0.0 } else { 0.01 };
     let scalars =

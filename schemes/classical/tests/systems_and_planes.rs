@@ -116,6 +116,46 @@ fn plane_schemes_have_their_closed_forms_in_all_quadrants() {
 }
 
 #[test]
+fn volume_schemes_have_their_closed_forms_in_all_octants() {
+    let (cells, velocity, nu, step) = ([6, 5, 4], [1.1, 0.6, 0.4], 0.03, 0.03);
+    let (lower, upper) = ([0.3, -0.2, 0.0], [2.0, 0.7, 1.1]);
+    for octant in 0..8 {
+        let velocity: Vec<f64> =
+            (0..3).map(|axis| if octant >> axis & 1 == 1 { -velocity[axis] } else { velocity[axis] }).collect();
+        for (name, equation) in [("upwind-3d", "advection"), ("diffusion-3d", "diffusion")] {
+            let mut case = plane(equation, [1, 1], &[]);
+            case.dimensions = 3;
+            case.grid = Grid::uniform(&cells, &lower, &upper);
+            case.boundaries.push(case.boundaries[0].clone());
+            case.parameters.insert("velocity".to_owned(), Parameter::Vector(velocity.clone()));
+            case.parameters.insert("diffusivity".to_owned(), Parameter::Scalar(nu));
+            let mut scheme = scheme(name).unwrap();
+            scheme.prepare(&case, &mut NoCallbacks).unwrap();
+            for mode in 0..cells.iter().product() {
+                let modes = [mode % 6, mode / 6 % 5, mode / 30];
+                let waves = [0, 1, 2].map(|axis| fourier_mode(modes[axis], cells[axis]));
+                let wave: Vec<Complex64> = (0..120)
+                    .map(|place| waves[0][place % 6] * waves[1][place / 6 % 5] * waves[2][place / 30])
+                    .collect();
+                let (new, _) = complex_step(scheme.as_mut(), step, std::slice::from_ref(&wave), &[]);
+                let lost: Complex64 = (0..3)
+                    .map(|axis| {
+                        let theta = TAU * modes[axis] as f64 / cells[axis] as f64;
+                        let h = case.grid.spacing(axis);
+                        let (c, r) = (velocity[axis] * step / h, nu * step / (h * h));
+                        let upwind = c.abs() * (1.0 - theta.cos()) + Complex64::i() * c * theta.sin();
+                        if equation == "advection" { upwind } else { (2.0 * r * (1.0 - theta.cos())).into() }
+                    })
+                    .sum();
+                for (new, old) in new[0].iter().zip(&wave) {
+                    assert_close(*new, old * (1.0 - lost), &format!("{name}, octant {octant}, modes {modes:?}"));
+                }
+            }
+        }
+    }
+}
+
+#[test]
 fn acoustics_upwind_is_scalar_upwind_along_the_characteristics() {
     let (cells, density, sound_speed) = (32, 1.3, 0.7);
     for mean_flow in [0.0, 0.2, -0.2, 1.1] {
