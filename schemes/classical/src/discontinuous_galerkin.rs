@@ -5,13 +5,16 @@ use gridassay_scheme::{Case, Harness, Nodes, Offer, Operation, SchemeError, Valu
 use crate::numerics::method_of_lines::Space;
 use crate::numerics::weights::finite_difference_weights;
 
-/// Polynomials of degree p in each cell, held by their values at the p + 1 Gauss points, with upwind fluxes between cells.
+/// Polynomials of degree p in each cell, held by their values at the p + 1 Gauss points, with upwind fluxes between
+/// cells.
 ///
-/// u_i' = -(a / h) ((D u)_i + l_i(0) / w_i (u(0) - u of the left neighbour at its right end)) for a > 0, where D differentiates the
-/// interpolating polynomial, l_i are Lagrange's polynomials and w_i the weights, all on \[0, 1\]; the mirror image for a < 0. The error of the modified wavenumber is of order
-/// 2p + 2 in phase and 2p + 1 in damping. A source is taken at the points.
+/// u_i' = -(a / h) ((D u)_i + l_i(0) / w_i (u(0) - u of the left neighbour at its right end)) for a > 0, where D
+/// differentiates the interpolating polynomial, l_i are Lagrange's polynomials and w_i the weights, all on \[0, 1\];
+/// the mirror image for a < 0. The error of the modified wavenumber is of order 2p + 2 in phase and 2p + 1 in
+/// damping. A source is taken at the points.
 ///
-/// Source: Cockburn & Shu 2001, J. Sci. Comput. 16:173-261; Hu & Atkins 2002, J. Comput. Phys. 182:516-545 (orders in phase and damping).
+/// Source: Cockburn & Shu 2001, J. Sci. Comput. 16:173-261; Hu & Atkins 2002, J. Comput. Phys. 182:516-545 (orders in
+/// phase and damping).
 #[derive(Clone, Debug)]
 pub struct DiscontinuousGalerkin {
     /// The degree p, from 1 to 3.
@@ -45,7 +48,8 @@ impl DiscontinuousGalerkin {
     }
 }
 
-/// Gauss's points and weights on \[0, 1\] for 2, 3 or 4 points (Abramowitz & Stegun 1964, table 25.4, in closed form).
+/// Gauss's points and weights on \[0, 1\] for 2, 3 or 4 points (Abramowitz & Stegun 1964, table 25.4, in closed
+/// form).
 pub fn gauss_points(count: usize) -> Option<Nodes> {
     let root = f64::sqrt;
     // Points and weights on [-1, 1] from the middle outwards.

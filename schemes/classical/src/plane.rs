@@ -1,12 +1,12 @@
-//! Explicit schemes in two dimensions in flux form, periodic, point values at cell centres. Throughout cx = a dt / hx, cy = b dt / hy, rx = nu dt / hx^2,
-//! ry = nu dt / hy^2.
+//! Explicit schemes in two dimensions in flux form, periodic, point values at cell centres. Throughout cx = a dt /
+//! hx, cy = b dt / hy, rx = nu dt / hx^2, ry = nu dt / hy^2.
 
 use gridassay_scheme::{Case, CellRule, Fields, Harness, Nodes, Offer, Operation, SchemeError};
 
 use crate::one_step::OneStep;
 
-/// Weights in the flux through a face, times step over spacing: the first index is the side of the face (lower, upper), the second the
-/// position along the face (one before, the face's own, one after).
+/// Weights in the flux through a face, times step over spacing: the first index is the side of the face (lower,
+/// upper), the second the position along the face (one before, the face's own, one after).
 pub type FaceBlock = [[f64; 3]; 2];
 
 /// Courant and diffusion numbers in both directions.
@@ -37,7 +37,8 @@ pub fn lax_wendroff_2d(numbers: PlaneNumbers) -> [FaceBlock; 2] {
 
 /// Explicit Euler with central differences. Second order where r stays fixed; stable for rx + ry <= 1/2.
 ///
-/// G = 1 - 2 rx (1 - cos p) - 2 ry (1 - cos q). Source: common practice (Hirsch 2007, Numerical Computation of Internal and External Flows, ch. 8).
+/// G = 1 - 2 rx (1 - cos p) - 2 ry (1 - cos q). Source: common practice (Hirsch 2007, Numerical Computation of
+/// Internal and External Flows, ch. 8).
 pub fn diffusion_2d(numbers: PlaneNumbers) -> [FaceBlock; 2] {
     numbers.diffusion.map(|r| [[0.0, r, 0.0], [0.0, -r, 0.0]])
 }

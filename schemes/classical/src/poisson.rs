@@ -17,15 +17,16 @@ pub struct PoissonCentral {
 }
 
 impl PoissonCentral {
-    /// Second order, with values and gradients prescribed. Source: common practice (LeVeque 2007, Finite Difference Methods for Ordinary and Partial
-    /// Differential Equations, ch. 2).
+    /// Second order, with values and gradients prescribed. Source: common practice (LeVeque 2007, Finite Difference
+    /// Methods for Ordinary and Partial Differential Equations, ch. 2).
     pub fn second_order() -> Self {
         let kinds = &[BoundaryKind::Value, BoundaryKind::Gradient];
         Self { name: "poisson-central2", kinds, steady: SteadyCentral::default() }
     }
 
-    /// Fourth order, with values prescribed: -k (u_{j+1} - 2 u_j + u_{j-1}) / h^2 = (S_{j-1} + 10 S_j + S_{j+1}) / 12.
-    /// Source: Collatz 1960, The Numerical Treatment of Differential Equations (Mehrstellenverfahren; Numerov 1924).
+    /// Fourth order, with values prescribed: -k (u_{j+1} - 2 u_j + u_{j-1}) / h^2 = (S_{j-1} + 10 S_j + S_{j+1}) /
+    /// 12. Source: Collatz 1960, The Numerical Treatment of Differential Equations (Mehrstellenverfahren; Numerov
+    /// 1924).
     pub fn fourth_order() -> Self {
         let steady = SteadyCentral::with_source_average(1.0 / 12.0);
         Self { name: "poisson-compact4", kinds: &[BoundaryKind::Value], steady }

@@ -26,6 +26,7 @@ use crate::poisson::PoissonCentral;
 use crate::systems::acoustics::{AcousticsStaggered, AcousticsUpwind};
 use crate::systems::euler::EulerSpace;
 use crate::systems::riemann::{hllc, rusanov};
+use crate::volume::{VolumeScheme, diffusion_3d, upwind_3d};
 
 type Maker = Box<dyn Fn() -> Box<dyn Scheme> + Send + Sync>;
 
@@ -118,11 +119,13 @@ fn conservation_law_schemes() -> Vec<Maker> {
     makers
 }
 
-fn plane_schemes() -> Vec<Maker> {
+fn plane_and_volume_schemes() -> Vec<Maker> {
     vec![
         Box::new(|| boxed(PlaneScheme::new("upwind-2d", "advection", upwind_2d))),
         Box::new(|| boxed(PlaneScheme::new("lax-wendroff-2d", "advection", lax_wendroff_2d))),
         Box::new(|| boxed(PlaneScheme::new("diffusion-2d", "diffusion", diffusion_2d))),
+        Box::new(|| boxed(VolumeScheme::new("upwind-3d", "advection", upwind_3d))),
+        Box::new(|| boxed(VolumeScheme::new("diffusion-3d", "diffusion", diffusion_3d))),
     ]
 }
 
@@ -149,7 +152,7 @@ static SCHEMES: LazyLock<Vec<(String, Maker)>> = LazyLock::new(|| {
     let mut makers = one_step_schemes();
     makers.extend(advection_diffusion_schemes());
     makers.extend(conservation_law_schemes());
-    makers.extend(plane_schemes());
+    makers.extend(plane_and_volume_schemes());
     makers.extend(systems());
     makers.into_iter().map(|make| (make().describe().name, make)).collect()
 });

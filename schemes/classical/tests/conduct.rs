@@ -1,4 +1,5 @@
-//! What the contract asks of every scheme, tried on all of them: names, refusals, and answers that depend on the question alone.
+//! What the contract asks of every scheme, tried on all of them: names, refusals, and answers that depend on the
+//! question alone.
 
 mod common;
 
@@ -7,7 +8,8 @@ use gridassay_scheme::{
     Advance, BoundaryKind, Case, Fields, Grid, NoCallbacks, Offer, Operation, Parameter, Scheme, SchemeError,
 };
 
-/// A periodic case within the offer, on a grid that is not square; none where the offer takes no periodic boundaries or does not advance.
+/// A periodic case within the offer, on a grid that is not square; none where the offer takes no periodic boundaries
+/// or does not advance.
 fn case_within(offer: &Offer) -> Option<Case> {
     if !offer.boundaries.contains(&BoundaryKind::Periodic) || !offer.has(Operation::Advance) {
         return None;
@@ -15,9 +17,10 @@ fn case_within(offer: &Offer) -> Option<Case> {
     let dimensions = offer.dimensions[0];
     let mut case = common::periodic(&offer.equation, 1, &[]);
     case.dimensions = dimensions;
-    case.grid = Grid::uniform(&[12, 10][..dimensions], &[0.3, -0.2][..dimensions], &[2.0, 0.7][..dimensions]);
+    case.grid =
+        Grid::uniform(&[12, 10, 8][..dimensions], &[0.3, -0.2, 0.0][..dimensions], &[2.0, 0.7, 1.1][..dimensions]);
     case.boundaries = vec![case.boundaries[0].clone(); dimensions];
-    let velocity = if offer.equation == "acoustics" { vec![0.0] } else { vec![1.1, -0.6][..dimensions].to_vec() };
+    let velocity = if offer.equation == "acoustics" { vec![0.0] } else { vec![1.1, -0.6, 0.4][..dimensions].to_vec() };
     let viscosity =
         if offer.parameters.get("viscosity").is_some_and(|range| range.admits(&[0.0])) { 0.0 } else { 0.01 };
     let scalars =
@@ -113,6 +116,47 @@ fn the_mean_of_every_field_is_kept_and_a_uniform_state_stays() {
             let flat = (uniform(&begin.0), vec![uniform(&begin.0); offer.levels - 1]);
             let (end, _) = run(scheme.as_mut(), flat.clone(), &[20]);
             assert_eq!(end, flat.0, "{name}: uniform state");
+        }
+    }
+}
+
+#[test]
+fn the_rate_is_what_short_steps_make() {
+    for name in names() {
+        let mut scheme = scheme(name).unwrap();
+        for offer in scheme.describe().offers.into_iter().filter(|offer| offer.has(Operation::Rate)) {
+            let Some(case) = case_within(&offer) else { continue };
+            let (begin, _) = start(&offer, &case, scheme.as_mut());
+            let rate = scheme.rate(0.0, &begin, &mut NoCallbacks).unwrap();
+            let step = 1e-7;
+            let mut state = begin.clone();
+            let request = Advance { time: 0.0, step, steps: 1, state: &mut state, earlier: &mut [] };
+            scheme.advance(request, &mut NoCallbacks).unwrap();
+            let size = rate.iter().flatten().fold(0.0_f64, |most, r| most.max(r.abs()));
+            for ((new, old), rate) in state.iter().flatten().zip(begin.iter().flatten()).zip(rate.iter().flatten()) {
+                // Second differences over so short a step, and the rounding of the state divided by the step.
+                let allowed = 1e-4 * size + 10.0 * f64::EPSILON * old.abs() / step;
+                assert!(((new - old) / step - rate).abs() <= allowed, "{name}: {} and {rate}", (new - old) / step);
+            }
+        }
+    }
+}
+
+#[test]
+fn the_smallest_grid_that_is_offered_is_taken() {
+    for name in names() {
+        let mut scheme = scheme(name).unwrap();
+        for offer in scheme.describe().offers {
+            let Some(mut case) = case_within(&offer) else { continue };
+            case.grid.cells.fill(offer.cells.minimum);
+            let begin = start(&offer, &case, scheme.as_mut());
+            let (end, _) = run(scheme.as_mut(), begin, &[3]);
+            assert!(end.iter().flatten().all(|u| u.is_finite()), "{name}");
+            if offer.cells.minimum > 1 {
+                case.grid.cells.fill(offer.cells.minimum - 1);
+                let refused = scheme.prepare(&case, &mut NoCallbacks);
+                assert!(matches!(refused, Err(SchemeError::NotOffered(_))), "{name}: {refused:?}");
+            }
         }
     }
 }

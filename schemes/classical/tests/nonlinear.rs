@@ -7,7 +7,9 @@ mod exact;
 use common::periodic;
 use exact::{ExactHarness, Smooth};
 use gridassay_classical::scheme;
-use gridassay_scheme::{Advance, BoundaryKind, Fields, Grid, NoCallbacks, Scheme, SideKinds};
+use gridassay_scheme::{
+    Advance, BoundaryData, BoundaryKind, Fields, Grid, Harness, NoCallbacks, Scheme, SchemeError, Side, SideKinds,
+};
 
 fn advance(scheme: &mut dyn Scheme, state: &mut Fields, end: f64, steps: usize) {
     let request = Advance { time: 0.0, step: end / steps as f64, steps, state, earlier: &mut [] };
@@ -46,14 +48,16 @@ fn a_shock_of_burgers_equation_runs_at_the_mean_speed_and_a_rarefaction_opens() 
         let mut scheme = scheme(name).unwrap();
         scheme.prepare(&case, &mut NoCallbacks).unwrap();
         let x = case.grid.centres(0);
-        // From -1 up to 2 at 0.8: a rarefaction through the sonic point; from 2 down to -1 at 1.6: a shock of speed 1/2.
+        // From -1 up to 2 at 0.8: a rarefaction through the sonic point; from 2 down to -1 at 1.6: a shock of speed
+        // 1/2.
         let mut state = vec![x.iter().map(|x| if (0.8..1.6).contains(x) { 2.0 } else { -1.0 }).collect::<Vec<_>>()];
         let end = 0.2;
         advance(scheme.as_mut(), &mut state, end, 400);
         let exact = |x: f64| if x < 1.6 + 0.5 * end { ((x - 0.8) / end).clamp(-1.0, 2.0) } else { -1.0 };
         let h = case.grid.spacing(0);
         let error: f64 = x.iter().zip(&state[0]).map(|(x, u)| (u - exact(*x)).abs() * h).sum();
-        // First order in the mean: a few cells times the jump of 3; a shock whose speed is wrong by 1/10 would give 0.06.
+        // First order in the mean: a few cells times the jump of 3; a shock whose speed is wrong by 1/10 would give
+        // 0.06.
         assert!(error < 0.03, "{name}: {error}");
     }
 }
@@ -103,7 +107,8 @@ fn discontinuous_galerkin_is_of_order_p_plus_one() {
                 (x.iter().zip(&state[0]).enumerate().map(square).sum::<f64>() / cells as f64).sqrt()
             });
             let order = (errors[1] / errors[2]).log2();
-            // At Gauss points the early error falls like 2p + 1 until the projection's p + 1 rules: both stand as bounds.
+            // At Gauss points the early error falls like 2p + 1 until the projection's p + 1 rules: both stand as
+            // bounds.
             let bounds = (degree + 1) as f64 - 0.2..(2 * degree + 1) as f64 + 0.2;
             assert!(bounds.contains(&order), "{name}, velocity {velocity}: {errors:?}, order {order}");
         }
@@ -132,46 +137,79 @@ fn the_shock_tube_of_sod_has_its_plateau() {
     }
 }
 
-/// Mean error of the density in a right-running simple wave before it breaks, whose exact solution is constant along straight lines.
-fn simple_wave_error(name: &str, cells: usize) -> f64 {
-    let (gamma, end) = (1.3_f64, 0.1);
-    let k = std::f64::consts::TAU / 1.7;
-    let sound = |u: f64| 1.0 + 0.5 * (gamma - 1.0) * u;
-    let start = |x: f64| 0.3 + 0.2 * (k * x + 0.4).sin();
-    let velocity = |x: f64, t: f64| {
-        // u = start(x - (u + c(u)) t), by repeated substitution, a contraction while the wave has not broken.
-        let step = |u: f64| start(x - (u + sound(u)) * t);
-        (0..100).fold(start(x), |u, _| step(u))
-    };
-    let density = |u: f64| gamma * sound(u).powf(2.0 / (gamma - 1.0)) / gamma;
-    let point = |x: f64, t: f64| {
-        let u = velocity(x, t);
-        let rho = density(u);
-        let p = rho * sound(u).powi(2) / gamma;
-        [rho, rho * u, p / (gamma - 1.0) + 0.5 * rho * u * u]
-    };
-    let case = periodic("euler", cells, &[("gamma", gamma)]);
-    let h = case.grid.spacing(0);
-    // Simpson's rule for the cell averages: an error of fourth order.
-    let average = |x: f64, t: f64| -> [f64; 3] {
-        let [a, b, c] = [point(x - 0.5 * h, t), point(x, t), point(x + 0.5 * h, t)];
+/// A right-running simple wave of gas dynamics before it breaks: u is constant along straight lines.
+#[derive(Clone, Copy)]
+struct SimpleWave {
+    gamma: f64,
+    spacing: f64,
+}
+
+impl SimpleWave {
+    fn point(&self, x: f64, t: f64) -> [f64; 3] {
+        let gamma = self.gamma;
+        let sound = |u: f64| 1.0 + 0.5 * (gamma - 1.0) * u;
+        let start = |x: f64| 0.3 + 0.2 * (std::f64::consts::TAU / 1.7 * x + 0.4).sin();
+        // By repeated substitution, a contraction while the wave has not broken.
+        let u = (0..100).fold(start(x), |u, _| start(x - (u + sound(u)) * t));
+        let density = sound(u).powf(2.0 / (gamma - 1.0));
+        let pressure = density * sound(u).powi(2) / gamma;
+        [density, density * u, pressure / (gamma - 1.0) + 0.5 * density * u * u]
+    }
+
+    /// Simpson's rule for the average over the cell about x: an error of fourth order.
+    fn average(&self, x: f64, t: f64) -> [f64; 3] {
+        let [a, b, c] = [-0.5, 0.0, 0.5].map(|part| self.point(x + part * self.spacing, t));
         std::array::from_fn(|f| (a[f] + 4.0 * b[f] + c[f]) / 6.0)
-    };
+    }
+
+    fn state(&self, x: &[f64], t: f64) -> Fields {
+        (0..3).map(|f| x.iter().map(|x| self.average(*x, t)[f]).collect()).collect()
+    }
+}
+
+impl Harness for SimpleWave {
+    fn source(&mut self, time: f64, points: Option<&[Vec<f64>]>) -> Result<Fields, SchemeError> {
+        NoCallbacks.source(time, points)
+    }
+
+    fn boundary(&mut self, time: f64, side: Side, layers: usize) -> Result<BoundaryData, SchemeError> {
+        let beyond = |layer: usize| {
+            let distance = (layer as f64 + 0.5) * self.spacing;
+            self.average(if side.is_upper() { 2.0 + distance } else { 0.3 - distance }, time)
+        };
+        let ghost = (0..3).map(|f| (0..layers).map(|layer| vec![beyond(layer)[f]]).collect()).collect();
+        Ok(BoundaryData { ghost, ..BoundaryData::default() })
+    }
+
+    fn coefficient(&mut self, name: &str, time: f64, points: Option<&[Vec<f64>]>) -> Result<Fields, SchemeError> {
+        NoCallbacks.coefficient(name, time, points)
+    }
+}
+
+/// Mean error over all fields in the simple wave, periodic or between values given beyond the ends.
+fn simple_wave_error(name: &str, cells: usize, kind: BoundaryKind) -> f64 {
+    let (gamma, end) = (1.3, 0.1);
+    let mut case = periodic("euler", cells, &[("gamma", gamma)]);
+    case.boundaries = vec![[kind; 2].map(SideKinds::Same)];
+    let mut wave = SimpleWave { gamma, spacing: case.grid.spacing(0) };
     let x = case.grid.centres(0);
-    let at = |t: f64| -> Fields { (0..3).map(|f| x.iter().map(|x| average(*x, t)[f]).collect()).collect() };
     let mut scheme = scheme(name).unwrap();
-    scheme.prepare(&case, &mut NoCallbacks).unwrap();
-    let mut state = at(0.0);
-    advance(scheme.as_mut(), &mut state, end, cells / 4);
-    let exact = at(end);
+    scheme.prepare(&case, &mut wave).unwrap();
+    let mut state = wave.state(&x, 0.0);
+    let steps = cells / 4;
+    let request = Advance { time: 0.0, step: end / steps as f64, steps, state: &mut state, earlier: &mut [] };
+    scheme.advance(request, &mut wave).expect("steps");
+    let exact = wave.state(&x, end);
     (0..3).map(|f| state[f].iter().zip(&exact[f]).map(|(a, b)| (a - b).abs()).sum::<f64>() / cells as f64).sum()
 }
 
 #[test]
 fn gas_dynamics_is_of_first_and_second_order_in_a_simple_wave() {
-    for (name, order, tolerance) in [("euler-rusanov", 1.0, 0.1), ("euler-muscl-hllc", 2.0, 0.25)] {
-        let errors = [80, 160, 320, 640].map(|cells| simple_wave_error(name, cells));
-        let last = (errors[2] / errors[3]).log2();
-        assert!((last - order).abs() < tolerance, "{name}: {errors:?}, order {last}");
+    for kind in [BoundaryKind::Periodic, BoundaryKind::Value] {
+        for (name, order, tolerance) in [("euler-rusanov", 1.0, 0.1), ("euler-muscl-hllc", 2.0, 0.25)] {
+            let errors = [80, 160, 320, 640].map(|cells| simple_wave_error(name, cells, kind));
+            let last = (errors[2] / errors[3]).log2();
+            assert!((last - order).abs() < tolerance, "{name}, {kind:?}: {errors:?}, order {last}");
+        }
     }
 }

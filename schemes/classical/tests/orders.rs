@@ -1,5 +1,6 @@
-//! Trusted: a smooth exact solution with its derivatives in closed form, and the source that makes it one. The observed order between neighbouring
-//! levels is bounded on both sides: a scheme that is better than it should be solves another problem than the one intended.
+//! Trusted: a smooth exact solution with its derivatives in closed form, and the source that makes it one. The
+//! observed order between neighbouring levels is bounded on both sides: a scheme that is better than it should be
+//! solves another problem than the one intended.
 
 mod common;
 #[path = "common/exact.rs"]
@@ -157,7 +158,8 @@ fn steady_solutions_are_of_second_order() {
     }
 }
 
-/// Mean and largest error of a periodic wave of points or cell averages after more than one period, at a fixed Courant number or with a step that falls faster.
+/// Mean and largest error of a periodic wave of points or cell averages after more than one period, at a fixed
+/// Courant number or with a step that falls faster.
 fn periodic_errors(name: &str, cells: usize, velocity: f64, step: impl Fn(f64) -> f64) -> [f64; 2] {
     let mut scheme = scheme(name).unwrap_or_else(|| panic!("no scheme {name}"));
     let case = periodic("advection", cells, &[("velocity", velocity)]);

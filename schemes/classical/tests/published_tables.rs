@@ -1,6 +1,7 @@
-//! Trusted: the accuracy tables of Jiang & Shu 1996, J. Comput. Phys. 126:202-228 (numbers from memory, three digits). With a node on the boundary, RK4
-//! with dt = 0.8 h^(5/4), the last step shortened, epsilon as in [`Weno5::as_in_the_tables`], and the mean taken over N + 1 nodes (both ends
-//! counted), our computation must give every printed digit.
+//! Trusted: the accuracy tables of Jiang & Shu 1996, J. Comput. Phys. 126:202-228 (numbers from memory, three
+//! digits). With a node on the boundary, RK4 with dt = 0.8 h^(5/4), the last step shortened, epsilon as in
+//! [`Weno5::as_in_the_tables`], and the mean taken over N + 1 nodes (both ends counted), our computation must give
+//! every printed digit.
 //!
 //! [`Weno5::as_in_the_tables`]: gridassay_classical::finite_volume::weno::Weno5::as_in_the_tables
 

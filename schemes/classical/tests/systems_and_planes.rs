@@ -1,5 +1,6 @@
-//! Trusted: closed-form amplification factors in two dimensions and of acoustics; for discontinuous Galerkin an independent construction in Legendre
-//! polynomials from the weak form, compared through the traces of powers, which do not depend on the basis.
+//! Trusted: closed-form amplification factors in two dimensions and of acoustics; for discontinuous Galerkin an
+//! independent construction in Legendre polynomials from the weak form, compared through the traces of powers, which
+//! do not depend on the basis.
 
 mod common;
 #[path = "common/waves.rs"]
@@ -19,7 +20,8 @@ fn assert_close(a: Complex64, b: Complex64, what: &str) {
     assert!((a - b).norm() <= TOLERANCE, "{what}: {a} and {b}");
 }
 
-/// The amplification matrix of a one-dimensional scheme with several values a cell: one field each, or several nodes in one field.
+/// The amplification matrix of a one-dimensional scheme with several values a cell: one field each, or several nodes
+/// in one field.
 fn matrix(
     scheme: &mut dyn Scheme,
     step: f64,
@@ -114,6 +116,46 @@ fn plane_schemes_have_their_closed_forms_in_all_quadrants() {
 }
 
 #[test]
+fn volume_schemes_have_their_closed_forms_in_all_octants() {
+    let (cells, velocity, nu, step) = ([6, 5, 4], [1.1, 0.6, 0.4], 0.03, 0.03);
+    let (lower, upper) = ([0.3, -0.2, 0.0], [2.0, 0.7, 1.1]);
+    for octant in 0..8 {
+        let velocity: Vec<f64> =
+            (0..3).map(|axis| if octant >> axis & 1 == 1 { -velocity[axis] } else { velocity[axis] }).collect();
+        for (name, equation) in [("upwind-3d", "advection"), ("diffusion-3d", "diffusion")] {
+            let mut case = plane(equation, [1, 1], &[]);
+            case.dimensions = 3;
+            case.grid = Grid::uniform(&cells, &lower, &upper);
+            case.boundaries.push(case.boundaries[0].clone());
+            case.parameters.insert("velocity".to_owned(), Parameter::Vector(velocity.clone()));
+            case.parameters.insert("diffusivity".to_owned(), Parameter::Scalar(nu));
+            let mut scheme = scheme(name).unwrap();
+            scheme.prepare(&case, &mut NoCallbacks).unwrap();
+            for mode in 0..cells.iter().product() {
+                let modes = [mode % 6, mode / 6 % 5, mode / 30];
+                let waves = [0, 1, 2].map(|axis| fourier_mode(modes[axis], cells[axis]));
+                let wave: Vec<Complex64> = (0..120)
+                    .map(|place| waves[0][place % 6] * waves[1][place / 6 % 5] * waves[2][place / 30])
+                    .collect();
+                let (new, _) = complex_step(scheme.as_mut(), step, std::slice::from_ref(&wave), &[]);
+                let lost: Complex64 = (0..3)
+                    .map(|axis| {
+                        let theta = TAU * modes[axis] as f64 / cells[axis] as f64;
+                        let h = case.grid.spacing(axis);
+                        let (c, r) = (velocity[axis] * step / h, nu * step / (h * h));
+                        let upwind = c.abs() * (1.0 - theta.cos()) + Complex64::i() * c * theta.sin();
+                        if equation == "advection" { upwind } else { (2.0 * r * (1.0 - theta.cos())).into() }
+                    })
+                    .sum();
+                for (new, old) in new[0].iter().zip(&wave) {
+                    assert_close(*new, old * (1.0 - lost), &format!("{name}, octant {octant}, modes {modes:?}"));
+                }
+            }
+        }
+    }
+}
+
+#[test]
 fn acoustics_upwind_is_scalar_upwind_along_the_characteristics() {
     let (cells, density, sound_speed) = (32, 1.3, 0.7);
     for mean_flow in [0.0, 0.2, -0.2, 1.1] {
@@ -154,13 +196,15 @@ fn the_staggered_scheme_has_its_trace_and_keeps_areas() {
     }
 }
 
-/// dt times the semi-discrete matrix in Legendre polynomials, from the weak form with upwind fluxes, velocity of sign `sign`.
+/// dt times the semi-discrete matrix in Legendre polynomials, from the weak form with upwind fluxes, velocity of sign
+/// `sign`.
 fn legendre_matrix(degree: usize, courant: f64, sign: f64, theta: f64) -> Vec<Vec<Complex64>> {
     let parity = |m: usize| if m.is_multiple_of(2) { 1.0 } else { -1.0 };
     let entry = |i: usize, j: usize| -> Complex64 {
         let stiffness = if i > j && (i - j) % 2 == 1 { 2.0 } else { 0.0 };
         let shift = Complex64::from_polar(1.0, -sign * theta);
-        // Values of the polynomials at the outflow end are 1 (a > 0) or the parity (a < 0), and the other way at the inflow end.
+        // Values of the polynomials at the outflow end are 1 (a > 0) or the parity (a < 0), and the other way at the
+        // inflow end.
         let at_upper_end = |_: f64| 1.0;
         let at_lower_end = |parity: f64| parity;
         let outflow = |p: f64| if sign > 0.0 { at_upper_end(p) } else { at_lower_end(p) };

@@ -7,8 +7,8 @@ use crate::numerics::flux_form::{periodic_fluxes, subtract_divergence};
 use crate::numerics::tridiagonal::Cyclic;
 use crate::one_step::OneStep;
 
-/// u^{n+1} - u^n = -c ((1 - p) d u^n + p d u^{n+1}) with d u = (u_{j+1} - u_{j-1}) / 2 and the implicit part p. Second order in space, solved for the
-/// increment by a cyclic tridiagonal system; stable for all c where p >= 1/2.
+/// u^{n+1} - u^n = -c ((1 - p) d u^n + p d u^{n+1}) with d u = (u_{j+1} - u_{j-1}) / 2 and the implicit part p.
+/// Second order in space, solved for the increment by a cyclic tridiagonal system; stable for all c where p >= 1/2.
 ///
 /// G = (1 - i (1 - p) c sin theta) / (1 + i p c sin theta).
 #[derive(Clone, Debug)]
@@ -48,7 +48,8 @@ impl ImplicitAdvection {
         Self::new("crank-nicolson-advection", 0.5)
     }
 
-    /// Implicit Euler, p = 1: first order in time. Source: common practice (Hirsch 2007, Numerical Computation of Internal and External Flows, ch. 7).
+    /// Implicit Euler, p = 1: first order in time. Source: common practice (Hirsch 2007, Numerical Computation of
+    /// Internal and External Flows, ch. 7).
     pub fn implicit_euler() -> Self {
         Self::new("implicit-euler-advection", 1.0)
     }

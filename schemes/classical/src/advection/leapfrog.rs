@@ -5,10 +5,11 @@ use gridassay_scheme::{Case, Fields, Harness, Nodes, Offer, Operation, SchemeErr
 use crate::advection::one_step::periodic_advection;
 use crate::one_step::OneStep;
 
-/// u_j^{n+1} = u_j^{n-1} - c (u_{j+1}^n - u_{j-1}^n). Second order, two time levels; stable for |c| < 1, without damping.
+/// u_j^{n+1} = u_j^{n-1} - c (u_{j+1}^n - u_{j-1}^n). Second order, two time levels; stable for |c| < 1, without
+/// damping.
 ///
-/// G^2 + 2 i c sin(theta) G - 1 = 0: the physical and the computational root, G = -i c sin theta +- sqrt(1 - c^2 sin^2 theta).
-/// Source: Courant, Friedrichs & Lewy 1928, Math. Ann. 100:32-74.
+/// G^2 + 2 i c sin(theta) G - 1 = 0: the physical and the computational root, G = -i c sin theta +- sqrt(1 - c^2
+/// sin^2 theta). Source: Courant, Friedrichs & Lewy 1928, Math. Ann. 100:32-74.
 #[derive(Clone, Debug, Default)]
 pub struct Leapfrog {
     velocity: f64,

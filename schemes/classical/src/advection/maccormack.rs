@@ -5,11 +5,11 @@ use gridassay_scheme::{Case, Fields, Harness, Nodes, Offer, Operation, SchemeErr
 use crate::advection::one_step::periodic_advection;
 use crate::one_step::OneStep;
 
-/// A forward difference, then the mean with a backward difference of the prediction. For linear advection the Lax-Wendroff scheme:
-/// second order; stable for |c| <= 1.
+/// A forward difference, then the mean with a backward difference of the prediction. For linear advection the
+/// Lax-Wendroff scheme: second order; stable for |c| <= 1.
 ///
-/// u*_j = u_j - c (u_{j+1} - u_j); u_j^{n+1} = (u_j + u*_j - c (u*_j - u*_{j-1})) / 2. G = 1 - c^2 (1 - cos theta) - i c sin theta.
-/// Source: MacCormack 1969, AIAA paper 69-354.
+/// u*_j = u_j - c (u_{j+1} - u_j); u_j^{n+1} = (u_j + u*_j - c (u*_j - u*_{j-1})) / 2. G = 1 - c^2 (1 - cos theta) -
+/// i c sin theta. Source: MacCormack 1969, AIAA paper 69-354.
 #[derive(Clone, Debug, Default)]
 pub struct MacCormack {
     velocity: f64,

@@ -32,7 +32,8 @@ pub fn upwind(courant: f64) -> FaceWeights {
     mirrored(courant, |c| [0.0, c, 0.0, 0.0])
 }
 
-/// The mean of both neighbours in place of the value: F = c (u_j + u_{j+1}) / 2 - (u_{j+1} - u_j) / 2. First order; stable for |c| <= 1.
+/// The mean of both neighbours in place of the value: F = c (u_j + u_{j+1}) / 2 - (u_{j+1} - u_j) / 2. First order;
+/// stable for |c| <= 1.
 ///
 /// G = cos theta - i c sin theta. Source: Lax 1954, Commun. Pure Appl. Math. 7:159-193.
 pub fn lax_friedrichs(c: f64) -> FaceWeights {
@@ -48,13 +49,14 @@ pub fn lax_wendroff(c: f64) -> FaceWeights {
 
 /// Second-order upwind: F = c (u_j + (1 - c) (u_j - u_{j-1}) / 2) for c > 0. Second order; stable for |c| <= 2.
 ///
-/// G = 1 - c (3 - 4 z + z^2) / 2 + c^2 (1 - 2 z + z^2) / 2 with z = exp(-i theta), for c > 0; for c < 0 the complex conjugate of G(|c|).
-/// Source: Warming & Beam 1976, AIAA J. 14:1241-1249.
+/// G = 1 - c (3 - 4 z + z^2) / 2 + c^2 (1 - 2 z + z^2) / 2 with z = exp(-i theta), for c > 0; for c < 0 the complex
+/// conjugate of G(|c|). Source: Warming & Beam 1976, AIAA J. 14:1241-1249.
 pub fn beam_warming(courant: f64) -> FaceWeights {
     mirrored(courant, |c| [-0.5 * c * (1.0 - c), 0.5 * c * (3.0 - c), 0.0, 0.0])
 }
 
-/// The mean of Lax-Wendroff and Beam-Warming: F = c (u_j + (1 - c) (u_{j+1} - u_{j-1}) / 4) for c > 0. Second order; stable for |c| <= 1.
+/// The mean of Lax-Wendroff and Beam-Warming: F = c (u_j + (1 - c) (u_{j+1} - u_{j-1}) / 4) for c > 0. Second order;
+/// stable for |c| <= 1.
 ///
 /// G is the mean of theirs. Source: Fromm 1968, J. Comput. Phys. 3:176-189.
 pub fn fromm(courant: f64) -> FaceWeights {

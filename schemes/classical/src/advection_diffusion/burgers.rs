@@ -8,8 +8,8 @@ use crate::numerics::boundary_rates::Prescribed;
 use crate::numerics::method_of_lines::Space;
 use crate::numerics::padding::pad_periodic;
 
-/// u_t = -(F_{j+1/2} - F_{j-1/2}) / h with F = (u_j^2 + u_{j+1}^2) / 4 - nu (u_{j+1} - u_j) / h, values at nodes, periodic or between prescribed values.
-/// Second order, conservative.
+/// u_t = -(F_{j+1/2} - F_{j-1/2}) / h with F = (u_j^2 + u_{j+1}^2) / 4 - nu (u_{j+1} - u_j) / h, values at nodes,
+/// periodic or between prescribed values. Second order, conservative.
 ///
 /// Source: common practice (Fletcher 1991, Computational Techniques for Fluid Dynamics 1, ch. 10).
 #[derive(Clone, Debug, Default)]

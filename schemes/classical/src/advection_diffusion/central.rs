@@ -9,7 +9,8 @@ use crate::numerics::method_of_lines::Space;
 use crate::numerics::padding::pad_periodic;
 use crate::numerics::weights::finite_difference_weights;
 
-/// Weights of a central difference: h u' = sum_k first\[k-1\] (u_{j+k} - u_{j-k}), h^2 u'' = sum_k second\[k-1\] (u_{j+k} - 2 u_j + u_{j-k}).
+/// Weights of a central difference: h u' = sum_k first\[k-1\] (u_{j+k} - u_{j-k}), h^2 u'' = sum_k second\[k-1\]
+/// (u_{j+k} - 2 u_j + u_{j-k}).
 ///
 /// As differences of pairs a uniform state has rate zero exactly.
 #[derive(Clone, Copy, Debug, PartialEq)]
@@ -29,7 +30,8 @@ pub const CENTRAL2: CentralWeights = CentralWeights { order: 2, first: [0.5, 0.0
 pub const CENTRAL4: CentralWeights =
     CentralWeights { order: 4, first: [2.0 / 3.0, -1.0 / 12.0, 0.0], second: [4.0 / 3.0, -1.0 / 12.0, 0.0] };
 
-/// Sixth order. k'h = (45 sin theta - 9 sin 2 theta + sin 3 theta) / 30; (k''h)^2 = 49/18 - 3 cos theta + 3/10 cos 2 theta - 1/45 cos 3 theta.
+/// Sixth order. k'h = (45 sin theta - 9 sin 2 theta + sin 3 theta) / 30; (k''h)^2 = 49/18 - 3 cos theta + 3/10 cos 2
+/// theta - 1/45 cos 3 theta.
 pub const CENTRAL6: CentralWeights =
     CentralWeights { order: 6, first: [0.75, -0.15, 1.0 / 60.0], second: [1.5, -0.15, 1.0 / 90.0] };
 
@@ -42,9 +44,10 @@ struct ClosureRow {
 
 /// u_t = -a u_x + nu u_xx by central differences; weights from Fornberg 1988, Math. Comp. 51:699-706, table 1.
 ///
-/// Periodic, or with a prescribed value at both ends. Nodes too near to a wall for the central stencil get one-sided rows: first derivatives of order
-/// `closure_order`, second derivatives on one point more, of that order too. One order less than inside would keep the
-/// order of the whole (Gustafsson 1975, Math. Comp. 29:396-406); order 4 closes with order 4, order 6 with order 5.
+/// Periodic, or with a prescribed value at both ends. Nodes too near to a wall for the central stencil get one-sided
+/// rows: first derivatives of order `closure_order`, second derivatives on one point more, of that order too. One
+/// order less than inside would keep the order of the whole (Gustafsson 1975, Math. Comp. 29:396-406); order 4 closes
+/// with order 4, order 6 with order 5.
 #[derive(Clone, Debug)]
 pub struct CentralSpace {
     /// First part of the scheme's name.
@@ -124,7 +127,8 @@ impl CentralSpace {
     }
 }
 
-/// The offers of a space operator for advection and diffusion, each alone or both together, on periodic grids and, with diffusion, between prescribed values.
+/// The offers of a space operator for advection and diffusion, each alone or both together, on periodic grids and,
+/// with diffusion, between prescribed values.
 pub fn advection_diffusion_offers(boundaries: &[BoundaryKind], minimum: usize) -> Vec<Offer> {
     let operations = [Operation::Advance, Operation::Rate];
     let periodic = [BoundaryKind::Periodic];

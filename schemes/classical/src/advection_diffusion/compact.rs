@@ -8,8 +8,9 @@ use crate::numerics::method_of_lines::Space;
 use crate::numerics::padding::pad_periodic;
 use crate::numerics::tridiagonal::{Cyclic, Tridiagonal};
 
-/// alpha d_{j-1} + d_j + alpha d_{j+1} = sum over k of weights times differences over k nodes: (u_{j+k} - u_{j-k}) for the first derivative,
-/// (u_{j+k} - 2 u_j + u_{j-k}) for the second, with the powers of k and the factor 1/2 in the weights.
+/// alpha d_{j-1} + d_j + alpha d_{j+1} = sum over k of weights times differences over k nodes: (u_{j+k} - u_{j-k})
+/// for the first derivative, (u_{j+k} - 2 u_j + u_{j-k}) for the second, with the powers of k and the factor 1/2 in
+/// the weights.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct CompactRow {
     /// Weight of the neighbouring derivatives.
@@ -35,7 +36,8 @@ pub const PADE4: CompactWeights = CompactWeights {
     second: CompactRow { alpha: 0.1, weights: [1.2, 0.0] },
 };
 
-/// Sixth order (Lele 1992, J. Comput. Phys. 103:16-42, alpha = 1/3, a = 14/9, b = 1/9; second derivative alpha = 2/11, a = 12/11, b = 3/11).
+/// Sixth order (Lele 1992, J. Comput. Phys. 103:16-42, alpha = 1/3, a = 14/9, b = 1/9; second derivative alpha =
+/// 2/11, a = 12/11, b = 3/11).
 ///
 /// k'h = (14/9 sin theta + 1/18 sin 2 theta) / (1 + 2/3 cos theta);
 /// (k''h)^2 = (24/11 (1 - cos theta) + 3/22 (1 - cos 2 theta)) / (1 + 4/11 cos theta).
@@ -61,7 +63,8 @@ pub const WALL_SECOND: WallRow = WallRow { beta: 11.0, weights: [13.0, -27.0, 15
 
 /// u_t = -a u_x + nu u_xx by compact differences.
 ///
-/// Periodic; the fourth-order one also between prescribed values, with third-order rows at the walls, which keep the fourth order of the whole.
+/// Periodic; the fourth-order one also between prescribed values, with third-order rows at the walls, which keep the
+/// fourth order of the whole.
 #[derive(Clone, Debug)]
 pub struct CompactSpace {
     /// First part of the scheme's name.
@@ -146,7 +149,8 @@ impl CompactSpace {
     }
 }
 
-/// Replaces the right-hand sides at both walls; `odd` derivatives change their sign at the upper one, from where x runs backwards.
+/// Replaces the right-hand sides at both walls; `odd` derivatives change their sign at the upper one, from where x
+/// runs backwards.
 fn close(wall: &WallRow, padded: &[f64], odd: bool, right: &mut [f64]) {
     let n = right.len();
     let u = &padded[2..2 + n];

@@ -1,12 +1,14 @@
-//! The steady equation a u' - nu u'' = S by second-order central differences, solved directly; the Poisson equation is the case a = 0.
+//! The steady equation a u' - nu u'' = S by second-order central differences, solved directly; the Poisson equation
+//! is the case a = 0.
 
 use gridassay_scheme::{BoundaryKind, Case, Harness, Offer, Operation, SchemeError, Side, Solution};
 
 use crate::diffusion::one_step::node_offer;
 use crate::numerics::tridiagonal::Tridiagonal;
 
-/// a (u_{j+1} - u_{j-1}) / 2h - nu (u_{j+1} - 2 u_j + u_{j-1}) / h^2 = S_j at the nodes; a prescribed value is a row of its own, a prescribed gradient g
-/// (outward) enters through a value beyond the wall, u_{-1} = u_1 + 2 h g, in both differences. Second order.
+/// a (u_{j+1} - u_{j-1}) / 2h - nu (u_{j+1} - 2 u_j + u_{j-1}) / h^2 = S_j at the nodes; a prescribed value is a row
+/// of its own, a prescribed gradient g (outward) enters through a value beyond the wall, u_{-1} = u_1 + 2 h g, in
+/// both differences. Second order.
 ///
 /// Source: common practice (Ferziger, Peric & Street 2020, Computational Methods for Fluid Dynamics, ch. 3).
 #[derive(Clone, Debug, Default)]

@@ -5,10 +5,11 @@ use gridassay_scheme::{Case, CellRule, Fields, Harness, Nodes, Offer, Operation,
 use crate::advection::leapfrog::leap;
 use crate::one_step::OneStep;
 
-/// (1 + 2 r) u_j^{n+1} = (1 - 2 r) u_j^{n-1} + 2 r (u_{j+1}^n + u_{j-1}^n). Explicit, two time levels, stable for all r; consistent only where dt / h tends
-/// to zero, of second order where dt is proportional to h^2.
+/// (1 + 2 r) u_j^{n+1} = (1 - 2 r) u_j^{n-1} + 2 r (u_{j+1}^n + u_{j-1}^n). Explicit, two time levels, stable for all
+/// r; consistent only where dt / h tends to zero, of second order where dt is proportional to h^2.
 ///
-/// (1 + 2 r) G^2 - 4 r cos(theta) G - (1 - 2 r) = 0. Source: Du Fort & Frankel 1953, Math. Tables Aids Comput. 7:135-152.
+/// (1 + 2 r) G^2 - 4 r cos(theta) G - (1 - 2 r) = 0. Source: Du Fort & Frankel 1953, Math. Tables Aids Comput.
+/// 7:135-152.
 #[derive(Clone, Debug, Default)]
 pub struct DuFortFrankel {
     diffusivity: f64,

@@ -1,4 +1,5 @@
-//! Central differences in space with the explicit, the implicit or the mean of both in time; walls and sources included.
+//! Central differences in space with the explicit, the implicit or the mean of both in time; walls and sources
+//! included.
 
 use gridassay_scheme::{
     BoundaryKind, Case, CellRule, Fields, Harness, Nodes, Offer, Operation, Placement, Position, SchemeError, Side,
@@ -7,10 +8,12 @@ use gridassay_scheme::{
 use crate::numerics::tridiagonal::{Cyclic, Tridiagonal};
 use crate::one_step::OneStep;
 
-/// u^{n+1} - u^n = (1 - p) (r D u^n + dt S^n) + p (r D u^{n+1} + dt S^{n+1}) with D u = u_{j+1} - 2 u_j + u_{j-1} and the implicit part p.
+/// u^{n+1} - u^n = (1 - p) (r D u^n + dt S^n) + p (r D u^{n+1} + dt S^{n+1}) with D u = u_{j+1} - 2 u_j + u_{j-1} and
+/// the implicit part p.
 ///
-/// Values at nodes, those on the walls included: a prescribed value is set at the new time; a prescribed gradient g (outward) enters through a value beyond the wall,
-/// u_{-1} = u_1 + 2 h g. Second order in space up to the walls. Solved for the increment.
+/// Values at nodes, those on the walls included: a prescribed value is set at the new time; a prescribed gradient g
+/// (outward) enters through a value beyond the wall, u_{-1} = u_1 + 2 h g. Second order in space up to the walls.
+/// Solved for the increment.
 ///
 /// G = (1 - 2 (1 - p) r (1 - cos theta)) / (1 + 2 p r (1 - cos theta)).
 #[derive(Clone, Debug)]
@@ -53,12 +56,14 @@ impl OneStepDiffusion {
 
     /// Explicit Euler, p = 0: first order in time, second where r stays fixed; stable for r <= 1/2.
     ///
-    /// Source: Schmidt 1924; common practice (Hirsch 2007, Numerical Computation of Internal and External Flows, ch. 7).
+    /// Source: Schmidt 1924; common practice (Hirsch 2007, Numerical Computation of Internal and External Flows, ch.
+    /// 7).
     pub fn explicit_euler() -> Self {
         Self::new("explicit-euler-diffusion", 0.0)
     }
 
-    /// Crank & Nicolson, p = 1/2: second order in time; stable for all r. Source: Crank & Nicolson 1947, Proc. Camb. Phil. Soc. 43:50-67.
+    /// Crank & Nicolson, p = 1/2: second order in time; stable for all r. Source: Crank & Nicolson 1947, Proc. Camb.
+    /// Phil. Soc. 43:50-67.
     pub fn crank_nicolson() -> Self {
         Self::new("crank-nicolson-diffusion", 0.5)
     }
@@ -68,7 +73,8 @@ impl OneStepDiffusion {
         Self::new("implicit-euler-diffusion", 1.0)
     }
 
-    /// The increments that the fluxes at the old time and the walls' data give; rows of prescribed values get their change.
+    /// The increments that the fluxes at the old time and the walls' data give; rows of prescribed values get their
+    /// change.
     fn right_side(
         &mut self,
         (time, step): (f64, f64),
@@ -116,7 +122,8 @@ impl OneStepDiffusion {
     }
 }
 
-/// The offers of a one-dimensional scheme with values at nodes: `equation` with the boundaries `kinds`, with a source or without.
+/// The offers of a one-dimensional scheme with values at nodes: `equation` with the boundaries `kinds`, with a source
+/// or without.
 pub fn node_offer(equation: &str, operations: &[Operation], kinds: &[BoundaryKind], minimum: usize) -> Offer {
     let mut offer = Offer::new(equation, operations);
     offer.placement = Placement::Same(Position::Node);

@@ -1,4 +1,5 @@
-//! The value at the right face of a cell from the values around it: u_{j-2} to u_{j+2} give u at j + 1/2 as seen from the left.
+//! The value at the right face of a cell from the values around it: u_{j-2} to u_{j+2} give u at j + 1/2 as seen from
+//! the left.
 //!
 //! The value as seen from the right is the mirror image. All of them give a uniform state back exactly.
 

@@ -16,7 +16,8 @@ pub fn godunov_burgers(left: f64, right: f64) -> f64 {
     (0.5 * from_left * from_left).max(0.5 * from_right * from_right)
 }
 
-/// The mean flux with the larger speed of both sides as viscosity (Rusanov 1961; the local Lax-Friedrichs flux of Shu & Osher 1988).
+/// The mean flux with the larger speed of both sides as viscosity (Rusanov 1961; the local Lax-Friedrichs flux of Shu
+/// & Osher 1988).
 pub fn local_lax_friedrichs_burgers(left: f64, right: f64) -> f64 {
     let speed = left.abs().max(right.abs());
     0.25 * (left * left + right * right) - 0.5 * speed * (right - left)
@@ -25,7 +26,8 @@ pub fn local_lax_friedrichs_burgers(left: f64, right: f64) -> f64 {
 /// The equations that a scheme offers, and what its numbers stand for in each.
 #[derive(Clone, Copy, Debug, PartialEq, Eq)]
 pub enum Meaning {
-    /// Point values at nodes, linear advection only: the finite-difference form, in which the fluxes are reconstructed.
+    /// Point values at nodes, linear advection only: the finite-difference form, in which the fluxes are
+    /// reconstructed.
     PointsAtNodes,
     /// Cell averages: the finite-volume form, linear advection and inviscid Burgers.
     CellAverages,
@@ -33,7 +35,8 @@ pub enum Meaning {
     BurgersAverages,
 }
 
-/// -(F_{j+1/2} - F_{j-1/2}) / h with F from the reconstructed states left and right of the face: upwind for advection, a numerical flux for Burgers' equation.
+/// -(F_{j+1/2} - F_{j-1/2}) / h with F from the reconstructed states left and right of the face: upwind for
+/// advection, a numerical flux for Burgers' equation.
 pub struct ScalarLaw<R> {
     /// The reconstruction.
     pub reconstruction: R,
@@ -131,7 +134,8 @@ mod tests {
 
     #[test]
     fn the_godunov_flux_is_that_of_the_exact_riemann_solution() {
-        // Rarefaction through the sonic point, right- and left-running shock, standing shock, supersonic on either side.
+        // Rarefaction through the sonic point, right- and left-running shock, standing shock, supersonic on either
+        // side.
         let cases =
             [(-1.0, 2.0, 0.0), (3.0, 1.0, 4.5), (1.0, -3.0, 4.5), (2.0, -2.0, 2.0), (1.0, 2.0, 0.5), (-2.0, -1.0, 0.5)];
         for (left, right, flux) in cases {

@@ -21,8 +21,8 @@ impl Weno5 {
         Self { name: "weno5", epsilon: 1e-6, linear_weights: [0.1, 0.6, 0.3], smoothness: [13.0 / 12.0, 0.25] }
     }
 
-    /// With the epsilon at which our own computation gives all digits of the published accuracy tables: 1e-6 beside a smoothness that is
-    /// twelve times the usual one, which is 1e-6 / 12 beside the usual one.
+    /// With the epsilon at which our own computation gives all digits of the published accuracy tables: 1e-6 beside a
+    /// smoothness that is twelve times the usual one, which is 1e-6 / 12 beside the usual one.
     pub const fn as_in_the_tables() -> Self {
         Self { name: "weno5-jiang-shu", epsilon: 1e-6 / 12.0, ..Self::published() }
     }

@@ -1,13 +1,15 @@
 //! Prescribed values in the stages of a Runge-Kutta method, without loss of order.
 //!
-//! A Runge-Kutta stage is not the solution at the stage's time: it differs from it at second order in the step. Setting a stage's boundary value to
-//! g(t + c_i dt) therefore costs order (Carpenter, Gottlieb, Abarbanel & Don 1995, SIAM J. Sci. Comput. 16:1241-1252). What the stage would be is known, though:
-//! for u_t = L u + s with L linear, and w = g' - s at the boundary,
+//! A Runge-Kutta stage is not the solution at the stage's time: it differs from it at second order in the step.
+//! Setting a stage's boundary value to g(t + c_i dt) therefore costs order (Carpenter, Gottlieb, Abarbanel & Don
+//! 1995, SIAM J. Sci. Comput. 16:1241-1252). What the stage would be is known, though: for u_t = L u + s with L
+//! linear, and w = g' - s at the boundary,
 //!
 //!   k_i = s(t + c_i dt) + w + c_i dt w' + (A c)_i dt^2 w'' + (A^2 c)_i dt^3 w''' + ...
 //!
-//! where A is the tableau. The derivatives of g and s at t come from polynomials through their values within the step, which the harness is asked for. Exact up to the fourth order
-//! for linear equations, up to the third for others.
+//! where A is the tableau. The derivatives of g and s at t come from polynomials through their values within the
+//! step, which the harness is asked for. Exact up to the fourth order for linear equations, up to the third for
+//! others.
 
 use gridassay_scheme::{Harness, SchemeError, Side};
 
@@ -27,7 +29,8 @@ pub struct Prescribed {
     pub position: f64,
 }
 
-/// Parts of a step at which the boundary value is sampled: five values give four derivatives to the accuracy that is needed.
+/// Parts of a step at which the boundary value is sampled: five values give four derivatives to the accuracy that is
+/// needed.
 const SAMPLES: [f64; 5] = [0.0, 0.25, 0.5, 0.75, 1.0];
 
 /// How prescribed values enter the stages.

@@ -1,11 +1,12 @@
-//! Linear updates in flux form: u_j changes by the difference of the fluxes through its two faces, so that a uniform state stays
-//! as it is and the mean of the field is kept to rounding.
+//! Linear updates in flux form: u_j changes by the difference of the fluxes through its two faces, so that a uniform
+//! state stays as it is and the mean of the field is kept to rounding.
 
-/// Weights of u_{j-1}, u_j, u_{j+1}, u_{j+2} in the flux through the face between j and j + 1, times step over spacing.
+/// Weights of u_{j-1}, u_j, u_{j+1}, u_{j+2} in the flux through the face between j and j + 1, times step over
+/// spacing.
 pub type FaceWeights = [f64; 4];
 
-/// The weights for a velocity of either sign from those for a positive Courant number: the mirror image with the sign of the
-/// flux reversed.
+/// The weights for a velocity of either sign from those for a positive Courant number: the mirror image with the sign
+/// of the flux reversed.
 pub fn mirrored(courant: f64, positive: impl Fn(f64) -> FaceWeights) -> FaceWeights {
     if courant >= 0.0 {
         return positive(courant);

@@ -1,5 +1,6 @@
-//! Slope limiters: from the differences to the left, a = u_j - u_{j-1}, and to the right, b = u_{j+1} - u_j, the slope (times the spacing) within
-//! cell j. Each vanishes at extrema (a b <= 0), is symmetric in a and b, and gives a where a = b.
+//! Slope limiters: from the differences to the left, a = u_j - u_{j-1}, and to the right, b = u_{j+1} - u_j, the
+//! slope (times the spacing) within cell j. Each vanishes at extrema (a b <= 0), is symmetric in a and b, and gives a
+//! where a = b.
 
 /// A slope limiter.
 pub type Limiter = fn(f64, f64) -> f64;

@@ -1,6 +1,7 @@
 //! A copy of a field with layers around it, so that inner loops need no index arithmetic.
 
-/// Copies a periodic field with `layers` values of the other end on each side. The copy has u.len() + 2 layers values.
+/// Copies a periodic field with `layers` values of the other end on each side. The copy has u.len() + 2 layers
+/// values.
 pub fn pad_periodic(u: &[f64], layers: usize, padded: &mut Vec<f64>) {
     let n = u.len();
     padded.clear();

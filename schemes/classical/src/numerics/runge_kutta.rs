@@ -1,6 +1,7 @@
 //! Explicit Runge-Kutta methods as their tableaus.
 
-/// An explicit Runge-Kutta method: u_i = u + dt sum_j a_ij k_j, k_i = f(t + c_i dt, u_i), u_new = u + dt sum_i b_i k_i.
+/// An explicit Runge-Kutta method: u_i = u + dt sum_j a_ij k_j, k_i = f(t + c_i dt, u_i), u_new = u + dt sum_i b_i
+/// k_i.
 #[derive(Clone, Copy, Debug, PartialEq)]
 pub struct Tableau {
     /// Short name, as it stands in the names of schemes.
@@ -35,11 +36,12 @@ pub const RK4: Tableau = Tableau {
     c: &[0.0, 0.5, 0.5, 1.0],
 };
 
-/// Heun's method, order 2: the optimal strong-stability-preserving one of two stages (Shu & Osher 1988, J. Comput. Phys. 77:439-471).
+/// Heun's method, order 2: the optimal strong-stability-preserving one of two stages (Shu & Osher 1988, J. Comput.
+/// Phys. 77:439-471).
 pub const SSPRK2: Tableau = Tableau { name: "ssprk2", a: &[&[], &[1.0]], b: &[0.5, 0.5], c: &[0.0, 1.0] };
 
-/// The optimal strong-stability-preserving method of three stages, order 3 (Shu & Osher 1988, J. Comput. Phys. 77:439-471, eq. 2.18), in
-/// Butcher's form.
+/// The optimal strong-stability-preserving method of three stages, order 3 (Shu & Osher 1988, J. Comput. Phys.
+/// 77:439-471, eq. 2.18), in Butcher's form.
 pub const SSPRK3: Tableau = Tableau {
     name: "ssprk3",
     a: &[&[], &[1.0], &[0.25, 0.25]],
@@ -80,7 +82,8 @@ pub fn add_scaled(target: &mut [Vec<f64>], factor: f64, values: &[Vec<f64>]) {
 
 #[cfg(test)]
 mod tests {
-    //! Trusted: the order conditions (Butcher 2016, Numerical Methods for Ordinary Differential Equations, section 31).
+    //! Trusted: the order conditions (Butcher 2016, Numerical Methods for Ordinary Differential Equations, section
+    //! 31).
     use super::*;
 
     #[test]

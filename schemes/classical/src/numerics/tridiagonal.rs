@@ -1,9 +1,11 @@
 //! Direct solvers for tridiagonal systems, plain and cyclic: factor once, solve often.
 //!
-//! Elimination without pivoting (the Thomas algorithm). It is stable for the matrices met here: diagonally dominant ones, and those
-//! of implicit central advection, whose pivots d_i = 1 + c^2 / (4 d_{i-1}) never fall below 1. A pivot of zero gives a result that is not finite.
+//! Elimination without pivoting (the Thomas algorithm). It is stable for the matrices met here: diagonally dominant
+//! ones, and those of implicit central advection, whose pivots d_i = 1 + c^2 / (4 d_{i-1}) never fall below 1. A
+//! pivot of zero gives a result that is not finite.
 
-/// A factored tridiagonal matrix; row i is (lower\[i\], diagonal\[i\], upper\[i\]), lower\[0\] and upper\[n-1\] are not used.
+/// A factored tridiagonal matrix; row i is (lower\[i\], diagonal\[i\], upper\[i\]), lower\[0\] and upper\[n-1\] are
+/// not used.
 #[derive(Clone, Debug, Default)]
 pub struct Tridiagonal {
     lower: Vec<f64>,
@@ -40,8 +42,9 @@ impl Tridiagonal {
     }
 }
 
-/// A factored cyclic tridiagonal matrix with equal rows (lower, diagonal, upper): row 0 reaches back to the last column, the last row
-/// to column 0. Solved as a plain tridiagonal matrix plus a matrix of rank one (Sherman & Morrison 1950). At least 3 rows.
+/// A factored cyclic tridiagonal matrix with equal rows (lower, diagonal, upper): row 0 reaches back to the last
+/// column, the last row to column 0. Solved as a plain tridiagonal matrix plus a matrix of rank one (Sherman &
+/// Morrison 1950). At least 3 rows.
 #[derive(Clone, Debug, Default)]
 pub struct Cyclic {
     plain: Tridiagonal,

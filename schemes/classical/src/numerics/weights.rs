@@ -2,7 +2,8 @@
 
 /// Weights w\[m\]\[i\] of f(x_i) in the derivative of order m at `at`, for m from 0 to `highest`.
 ///
-/// Exact for polynomials of degree below the number of points. Source: Fornberg 1988, Math. Comp. 51:699-706, the algorithm of its section 2.
+/// Exact for polynomials of degree below the number of points. Source: Fornberg 1988, Math. Comp. 51:699-706, the
+/// algorithm of its section 2.
 pub fn finite_difference_weights(at: f64, points: &[f64], highest: usize) -> Vec<Vec<f64>> {
     let mut w = vec![vec![0.0; points.len()]; highest + 1];
     w[0][0] = 1.0;

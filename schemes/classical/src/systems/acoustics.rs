@@ -6,11 +6,12 @@ use gridassay_scheme::{Case, CellRule, Fields, Harness, Nodes, Offer, Operation,
 
 use crate::one_step::OneStep;
 
-/// First-order upwind flux splitting: F_{j+1/2} = A+ q_j + A- q_{j+1}, with A split by the signs of its eigenvalues V + c and V - c. Stable for
-/// (|V| + c) dt / h <= 1.
+/// First-order upwind flux splitting: F_{j+1/2} = A+ q_j + A- q_{j+1}, with A split by the signs of its eigenvalues V
+/// + c and V - c. Stable for (|V| + c) dt / h <= 1.
 ///
-/// Along the characteristic variables p + rho c u and p - rho c u it is the scalar upwind scheme at the Courant numbers (V + c) dt / h and (V - c) dt / h.
-/// Source: Steger & Warming 1981, J. Comput. Phys. 40:263-293 (for linear equations; Courant, Isaacson & Rees 1952).
+/// Along the characteristic variables p + rho c u and p - rho c u it is the scalar upwind scheme at the Courant
+/// numbers (V + c) dt / h and (V - c) dt / h. Source: Steger & Warming 1981, J. Comput. Phys. 40:263-293 (for linear
+/// equations; Courant, Isaacson & Rees 1952).
 #[derive(Clone, Debug, Default)]
 pub struct AcousticsUpwind {
     medium: Medium,
@@ -103,11 +104,11 @@ impl OneStep for AcousticsUpwind {
     }
 }
 
-/// Pressure at centres and whole steps, velocity at faces and half a step later:
-/// p_j^{n+1} = p_j^n - rho c^2 dt/h (u_{j+1/2} - u_{j-1/2})^{n+1/2}, then u_{j-1/2}^{n+3/2} = u_{j-1/2}^{n+1/2} - dt/(rho h) (p_j - p_{j-1})^{n+1}.
+/// Pressure at centres and whole steps, velocity at faces and half a step later: p_j^{n+1} = p_j^n - rho c^2 dt/h
+/// (u_{j+1/2} - u_{j-1/2})^{n+1/2}, then u_{j-1/2}^{n+3/2} = u_{j-1/2}^{n+1/2} - dt/(rho h) (p_j - p_{j-1})^{n+1}.
 ///
-/// Second order; stable for C = c dt / h <= 1, exact at C = 1, without damping: sin(omega dt / 2) = C sin(theta / 2). No mean flow.
-/// Source: Yee 1966, IEEE Trans. Antennas Propag. 14:302-307 (for Maxwell's equations).
+/// Second order; stable for C = c dt / h <= 1, exact at C = 1, without damping: sin(omega dt / 2) = C sin(theta / 2).
+/// No mean flow. Source: Yee 1966, IEEE Trans. Antennas Propag. 14:302-307 (for Maxwell's equations).
 #[derive(Clone, Debug, Default)]
 pub struct AcousticsStaggered {
     medium: Medium,

@@ -9,11 +9,12 @@ use crate::systems::riemann::{EulerFlux, Primitive, primitive};
 /// Cells beyond each end that a face's states reach into.
 const LAYERS: usize = 2;
 
-/// -(F_{j+1/2} - F_{j-1/2}) / h with a flux between the states at both sides of a face: the cells' own (first order), or with limited slopes of density,
-/// velocity and pressure (second order).
+/// -(F_{j+1/2} - F_{j-1/2}) / h with a flux between the states at both sides of a face: the cells' own (first order),
+/// or with limited slopes of density, velocity and pressure (second order).
 ///
 /// Periodic; `value`: the cell averages beyond the end are those of the harness; `none`: they repeat the last cell.
-/// Source: van Leer 1979, J. Comput. Phys. 32:101-136; Toro 2009, Riemann Solvers and Numerical Methods for Fluid Dynamics, ch. 10, 13 and 14.
+/// Source: van Leer 1979, J. Comput. Phys. 32:101-136; Toro 2009, Riemann Solvers and Numerical Methods for Fluid
+/// Dynamics, ch. 10, 13 and 14.
 #[derive(Clone, Debug)]
 pub struct EulerSpace {
     /// First part of the scheme's name.

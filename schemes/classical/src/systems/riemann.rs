@@ -1,4 +1,5 @@
-//! Fluxes between two states of a perfect gas. A state is (density, velocity, pressure); a flux is that of (density, momentum, energy).
+//! Fluxes between two states of a perfect gas. A state is (density, velocity, pressure); a flux is that of (density,
+//! momentum, energy).
 
 /// Density, velocity and pressure.
 pub type Primitive = [f64; 3];
@@ -44,7 +45,8 @@ pub fn rusanov(gamma: f64, left: Primitive, right: Primitive) -> Conserved {
 
 /// Two acoustic waves and a contact between them; exact for a lone contact.
 ///
-/// Source: Toro, Spruce & Speares 1994, Shock Waves 4:25-34; signal speeds after Davis 1988, SIAM J. Sci. Stat. Comput. 9:445-473.
+/// Source: Toro, Spruce & Speares 1994, Shock Waves 4:25-34; signal speeds after Davis 1988, SIAM J. Sci. Stat.
+/// Comput. 9:445-473.
 pub fn hllc(gamma: f64, left: Primitive, right: Primitive) -> Conserved {
     let (al, ar) = (sound_speed(gamma, left), sound_speed(gamma, right));
     let slowest = (left[1] - al).min(right[1] - ar);
