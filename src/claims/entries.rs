@@ -6,11 +6,11 @@ use gridassay_reference::expression::{Expression, Scope};
 use gridassay_reference::problem::Problem;
 use toml::Spanned;
 
-use super::file::{CellsEntry, ModesEntry, NumberOrList, OrderEntry, StabilityEntry};
-use super::plan::{ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim, StabilityRequest, StepSize};
+use super::file::{CellsEntry, InvariantsEntry, ModesEntry, NumberOrList, OrderEntry, StabilityEntry};
+use super::plan::{InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim, StabilityRequest, StepSize};
 use super::problem::ClaimsError;
 use super::read::Reader;
-use crate::record::{Norms, Parameters, Refinement, StepNumber};
+use crate::record::{Invariant, Norms, Parameters, Refinement, StepNumber};
 
 /// How far below a claimed order the observed one may lie, unless told otherwise.
 pub const DEFAULT_TOLERANCE: f64 = 0.1;
@@ -191,6 +191,33 @@ impl Reader<'_> {
             scan_to,
         };
         Ok(StabilityClaim { request, up_to, exactly: entry.exactly })
+    }
+
+    pub(super) fn invariants(&self, spanned: &Spanned<InvariantsEntry>) -> Result<InvariantsClaim, ClaimsError> {
+        let entry = spanned.get_ref();
+        let positive =
+            |value: &Option<Spanned<f64>>, key| value.as_ref().map(|value| self.positive(value, key)).transpose();
+        let held = entry.hold.get_ref();
+        if held.is_empty() {
+            let message = "[[invariants]] claims nothing; name what holds, for example `hold = [\"conservation\"]`";
+            return Err(self.at(entry.hold.span(), message));
+        }
+        if let Some(cells) = &entry.cells
+            && (cells.get_ref().contains(&0) || !(1..=3).contains(&cells.get_ref().len()))
+        {
+            let message = "`cells` gives the cells in each of one to three directions, for example [40] or [24, 18]";
+            return Err(self.at(cells.span(), message));
+        }
+        let request = InvariantsRequest {
+            equation: self.equation(&entry.equation)?,
+            parameters: parameters(&entry.parameters),
+            cells: entry.cells.as_ref().map(|cells| cells.get_ref().clone()),
+            courant: positive(&entry.courant, "courant")?,
+            diffusion_number: positive(&entry.diffusion_number, "diffusion_number")?,
+            invariants: Invariant::ALL.into_iter().filter(|invariant| held.contains(invariant)).collect(),
+            tolerance: positive(&entry.tolerance, "tolerance")?.unwrap_or(0.0),
+        };
+        Ok(InvariantsClaim { request })
     }
 
     /// Checks that a claimed symbol can be read; it is evaluated where G is measured.

@@ -21,6 +21,11 @@
 //! courant = 0.5
 //! phase_speed_error_within = 0.01
 //! from_points_per_wavelength = 20
+//!
+//! [[invariants]]
+//! equation = "advection"
+//! courant = 0.4
+//! hold = ["conservation", "total_variation", "mirror"]
 //! ```
 
 use std::collections::BTreeMap;
@@ -29,7 +34,7 @@ use schemars::JsonSchema;
 use serde::Deserialize;
 use toml::Spanned;
 
-use crate::record::Refinement;
+use crate::record::{Invariant, Refinement};
 
 /// A whole claims file.
 #[derive(Clone, Debug, Deserialize, JsonSchema)]
@@ -57,6 +62,10 @@ pub struct ClaimsFile {
     #[serde(default)]
     #[schemars(with = "Vec<StabilityEntry>")]
     pub stability: Vec<Spanned<StabilityEntry>>,
+    /// Claims about what a scheme keeps.
+    #[serde(default)]
+    #[schemars(with = "Vec<InvariantsEntry>")]
+    pub invariants: Vec<Spanned<InvariantsEntry>>,
 }
 
 /// A scheme: exactly one of `command`, `plugin` and `classical`.
@@ -259,4 +268,36 @@ pub struct StabilityEntry {
     /// How far the scan goes. Default: twice the claim, at least 4.
     #[schemars(with = "Option<f64>")]
     pub scan_to: Option<Spanned<f64>>,
+}
+
+/// `[[invariants]]`: the scheme keeps what the equation keeps.
+#[derive(Clone, Debug, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct InvariantsEntry {
+    /// Which of `[schemes]`, one name or a list. Default: all.
+    #[schemars(with = "Option<OneOrMany>")]
+    pub scheme: Option<Spanned<OneOrMany>>,
+    /// The equation's name.
+    #[schemars(with = "String")]
+    pub equation: Spanned<String>,
+    /// The equation's parameters. Default: generic values inside the offer, a velocity in every sign that is offered.
+    #[serde(default)]
+    pub parameters: BTreeMap<String, NumberOrList>,
+    /// Cells in each direction, which also say in how many dimensions the scheme is tried. Default: generic numbers, in every number of
+    /// dimensions that is offered.
+    #[schemars(with = "Option<Vec<usize>>")]
+    pub cells: Option<Spanned<Vec<usize>>>,
+    /// Courant number of the fastest signal. Default: small enough for most explicit schemes.
+    #[schemars(with = "Option<f64>")]
+    pub courant: Option<Spanned<f64>>,
+    /// Diffusion number. Default: small enough for most explicit schemes.
+    #[schemars(with = "Option<f64>")]
+    pub diffusion_number: Option<Spanned<f64>>,
+    /// Claim: these hold, within rounding: `conservation`, `uniform_state`, `total_variation`, `bounds`, `positivity`, `mirror`, `exchange`,
+    /// `still_water`, `free_stream`, `repeatability`.
+    #[schemars(with = "Vec<Invariant>")]
+    pub hold: Spanned<Vec<Invariant>>,
+    /// Relative figures up to this one still count as held: for a scheme that iterates to a tolerance of its own. Default: rounding alone.
+    #[schemars(with = "Option<f64>")]
+    pub tolerance: Option<Spanned<f64>>,
 }

@@ -1,7 +1,7 @@
 //! What the person claims: reads a claims file into a plan.
 //!
 //! A claims file is TOML. It names one scheme (`[scheme]`) or several (`[schemes.NAME]`) and then states claims, each in a table of its own:
-//! `[[order]]`, `[[modes]]` and `[[stability]]`. Unknown keys are errors. The keys are documented on the types of [`file`].
+//! `[[order]]`, `[[modes]]`, `[[stability]]` and `[[invariants]]`. Unknown keys are errors. The keys are documented on the types of [`file`].
 
 mod entries;
 pub mod file;
@@ -11,7 +11,7 @@ mod read;
 
 pub use entries::{DEFAULT_TOLERANCE, SYMBOL_NAMES, default_step_power, in_proportion};
 pub use plan::{
-    Claim, ClaimKind, ModesClaim, ModesRequest, OrderClaim, OrderRequest, Plan, RouteChoice, SchemeChoice,
+    Claim, ClaimKind, InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OrderClaim, OrderRequest, Plan, RouteChoice, SchemeChoice,
     StabilityClaim, StabilityRequest, StepSize,
 };
 pub use problem::ClaimsError;

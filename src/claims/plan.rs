@@ -6,7 +6,7 @@ use std::time::Duration;
 
 use gridassay_reference::problem::Problem;
 
-use crate::record::{ClaimsRecord, Parameters, Refinement, StepNumber};
+use crate::record::{ClaimsRecord, Invariant, Parameters, Refinement, StepNumber};
 
 /// What a claims file asks for, ready to run.
 #[derive(Clone, Debug)]
@@ -79,6 +79,8 @@ pub enum ClaimKind {
     Modes(ModesClaim),
     /// Stable steps.
     Stability(StabilityClaim),
+    /// What the scheme keeps.
+    Invariants(InvariantsClaim),
 }
 
 /// What to measure for an order of accuracy.
@@ -180,4 +182,30 @@ pub struct StabilityClaim {
     pub up_to: f64,
     /// Whether nothing beyond it is.
     pub exactly: bool,
+}
+
+/// What to measure for invariants.
+#[derive(Clone, Debug)]
+pub struct InvariantsRequest {
+    /// The equation's name.
+    pub equation: String,
+    /// Parameters that the person fixed.
+    pub parameters: Parameters,
+    /// Cells in each direction; `None`: generic numbers, in every number of dimensions that is offered.
+    pub cells: Option<Vec<usize>>,
+    /// Courant number of the fastest signal; `None`: the harness's choice.
+    pub courant: Option<f64>,
+    /// nu dt / h^2; `None`: the harness's choice.
+    pub diffusion_number: Option<f64>,
+    /// Which invariants to try, in the order of [`Invariant::ALL`].
+    pub invariants: Vec<Invariant>,
+    /// Relative figures up to this one count as held; 0: rounding alone.
+    pub tolerance: f64,
+}
+
+/// Claimed invariants: every one of the request's holds.
+#[derive(Clone, Debug)]
+pub struct InvariantsClaim {
+    /// What to measure.
+    pub request: InvariantsRequest,
 }

@@ -60,8 +60,12 @@ pub fn plan_of(path: &Path, text: &str, folder: &Path) -> Result<Plan, ClaimsErr
         let kind = ClaimKind::Stability(reader.stability(entry)?);
         reader.state(&mut claims, "stability", &known, entry.get_ref().scheme.as_ref(), kind)?;
     }
+    for entry in &file.invariants {
+        let kind = ClaimKind::Invariants(reader.invariants(entry)?);
+        reader.state(&mut claims, "invariants", &known, entry.get_ref().scheme.as_ref(), kind)?;
+    }
     if claims.is_empty() {
-        return Err(ClaimsError::whole(path, "states no claim; add a table [[order]], [[modes]] or [[stability]]"));
+        return Err(ClaimsError::whole(path, "states no claim; add a table [[order]], [[modes]], [[stability]] or [[invariants]]"));
     }
     plan.claims = claims;
     Ok(plan)

@@ -44,6 +44,7 @@ impl Session {
         if let Route::Classical(name) = &source.route {
             let mut session = Self::in_process(classical(name)?);
             session.identity.route = source.route.key();
+            session.source = Some(source.clone());
             return Ok(session);
         }
         let source = &built(source)?;
@@ -79,6 +80,14 @@ impl Session {
         };
         let runner = Runner::InProcess(scheme);
         Self { source: None, runner, description, identity, prepared: false, last_words: String::new() }
+    }
+
+    /// A second conversation with the same scheme, started anew; `None` for a scheme that was handed over in this process.
+    ///
+    /// # Errors
+    /// As [`Session::open`].
+    pub fn reopened(&self) -> Option<Result<Self, HostError>> {
+        self.source.as_ref().map(Self::open)
     }
 
     /// Who the scheme is and what it offers.

@@ -5,12 +5,14 @@
 //! finite); the `note` or `stopped` sentence beside it says why. Numbers are f64 and read back to the same bits.
 
 mod file;
+mod invariants;
 mod model;
 mod modes;
 mod order;
 mod stability;
 
 pub use file::{RecordError, read_results, write_bytes, write_results, write_text};
+pub use invariants::{Invariant, InvariantCheck, InvariantSetting, InvariantsRecord, WorstPlace};
 pub use model::{
     Claimed, ClaimsRecord, FORMAT, Parameters, Results, RunRecord, SchemeRecord, Study, StudyRecord, VERSION, Verdict,
     VerdictRecord, finite, utc_now,

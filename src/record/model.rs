@@ -5,7 +5,7 @@ use std::collections::BTreeMap;
 use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
-use super::{ModesRecord, OrderRecord, StabilityRecord};
+use super::{InvariantsRecord, ModesRecord, OrderRecord, StabilityRecord};
 
 /// What `format` says in every results file.
 pub const FORMAT: &str = "gridassay-results";
@@ -112,6 +112,8 @@ pub enum Study {
     Modes(ModesRecord),
     /// A study of the stable steps.
     Stability(StabilityRecord),
+    /// A study of invariants.
+    Invariants(InvariantsRecord),
 }
 
 impl Study {
@@ -121,6 +123,7 @@ impl Study {
             Self::Order(_) => "order",
             Self::Modes(_) => "modes",
             Self::Stability(_) => "stability",
+            Self::Invariants(_) => "invariants",
         }
     }
 
@@ -130,6 +133,7 @@ impl Study {
             Self::Order(record) => &record.equation,
             Self::Modes(record) => &record.equation,
             Self::Stability(record) => &record.equation,
+            Self::Invariants(record) => &record.equation,
         }
     }
 }

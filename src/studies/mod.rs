@@ -4,6 +4,7 @@ pub mod callbacks;
 pub mod case;
 pub mod cellwise;
 pub mod impulse;
+pub mod invariants;
 pub mod jitter;
 pub mod layout;
 pub mod linearity;

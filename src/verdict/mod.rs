@@ -1,5 +1,6 @@
 //! Measurements against claims: upheld, refuted or undecided, and why. Judges what stands in the record; measures nothing.
 
+pub mod invariants;
 pub mod modes;
 pub mod order;
 pub mod stability;

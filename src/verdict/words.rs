@@ -1,6 +1,6 @@
 //! Claims in the words of the trade.
 
-use crate::claims::{ClaimKind, ModesClaim, OrderClaim, StabilityClaim};
+use crate::claims::{ClaimKind, InvariantsClaim, ModesClaim, OrderClaim, StabilityClaim};
 use crate::record::{Claimed, StepNumber};
 
 /// A claim as a sentence without its scheme.
@@ -9,10 +9,11 @@ pub fn claim(kind: &ClaimKind) -> String {
         ClaimKind::Order(claim) => order(claim),
         ClaimKind::Modes(claim) => modes(claim),
         ClaimKind::Stability(claim) => stability(claim),
+        ClaimKind::Invariants(claim) => invariants(claim),
     }
 }
 
-/// The number in a claim; `None` where it is a formula.
+/// The number in a claim; `None` where it is a formula or has none.
 pub fn claimed(kind: &ClaimKind) -> Option<Claimed> {
     let bare = |quantity: &str, value| Claimed {
         quantity: quantity.to_owned(),
@@ -33,6 +34,7 @@ pub fn claimed(kind: &ClaimKind) -> Option<Claimed> {
             phase.or(claim.damping_error_within.map(|within| bare("damping_error", within)))
         }
         ClaimKind::Stability(claim) => Some(bare("stable_up_to", claim.up_to)),
+        ClaimKind::Invariants(_) => None,
     }
 }
 
@@ -80,4 +82,9 @@ fn stability(claim: &StabilityClaim) -> String {
     let number = claim.request.number.map_or("step", StepNumber::words);
     let exactly = if claim.exactly { " and no further" } else { "" };
     format!("stable up to {number} {}{exactly} for {}", claim.up_to, claim.request.equation)
+}
+
+fn invariants(claim: &InvariantsClaim) -> String {
+    let words: Vec<&str> = claim.request.invariants.iter().map(|invariant| invariant.words()).collect();
+    format!("{} for {}", words.join(", "), claim.request.equation)
 }
