@@ -115,7 +115,7 @@ fn physical(problem: &Problem, fields: &[f64]) -> Vec<(String, f64, bool, &'stat
 
 /// Both ends of each periodic direction have the same values.
 fn periodic(problem: &Problem, at: &At) -> Result<(), ProblemError> {
-    for axis in 0..problem.dimensions() {
+    for (axis, name) in AXES.into_iter().enumerate().take(problem.dimensions()) {
         if problem.boundaries()[axis][0] != BoundaryKind::Periodic {
             continue;
         }
@@ -130,7 +130,7 @@ fn periodic(problem: &Problem, at: &At) -> Result<(), ProblemError> {
                 (value(problem, Quantity::Value(field), &low)?, value(problem, Quantity::Value(field), &high)?);
             // 1e-9: phases such as 2 pi x / L lose a few digits over long domains, and images of a pulse are cut at round-off.
             if (lower - upper).abs() > 1e-9 * (1e-3 + lower.abs().max(upper.abs())) {
-                let (field, axis) = (problem.fields()[field].clone(), AXES[axis]);
+                let (field, axis) = (problem.fields()[field].clone(), name);
                 let place = problem.inner.domain_place();
                 return Err(ProblemError::NotPeriodic { place, field, axis, lower, upper, at: low });
             }

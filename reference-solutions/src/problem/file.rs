@@ -187,6 +187,8 @@ pub(super) enum ExactEntry {
         density: Argument,
         pressure: Argument,
     },
+    /// A hill in LeVeque's swirling flow.
+    Swirl { period: Argument, base: Argument, height: Argument, centre: [Argument; 2], width: Argument },
     /// A Fourier series between the walls of `axis`, with `coefficient` a formula in `n`.
     Series {
         field: String,
