@@ -91,7 +91,9 @@ pub(super) fn call(into: &mut [f64], function: Function, arguments: [Operand; 3]
         Function::Exp if block(a, kernels::exponential_range) => unary(into, a, kernels::exp_inside),
         Function::Log if block(a, kernels::logarithmic_range) => unary(into, a, kernels::log_inside),
         Function::Abs => unary(into, a, f64::abs),
-        Function::If => ternary(into, arguments, |condition, then, otherwise| if condition != 0.0 { then } else { otherwise }),
+        Function::If => {
+            ternary(into, arguments, |condition, then, otherwise| if condition != 0.0 { then } else { otherwise })
+        }
         Function::Less => binary(into, a, b, |a, b| truth(a < b)),
         Function::LessEqual => binary(into, a, b, |a, b| truth(a <= b)),
         Function::Greater => binary(into, a, b, |a, b| truth(a > b)),

@@ -110,7 +110,8 @@ impl Code {
         let lead = parts.iter().position(|part| part & 1 == 0).unwrap_or(0);
         let lead_class = self.dependencies[parts[lead] >> 1];
         let first_class = self.dependencies[parts[0] >> 1];
-        let mut sum = if lead_class == first_class || negative { parts.remove(lead) >> 1 } else { self.led(&mut parts) };
+        let mut sum =
+            if lead_class == first_class || negative { parts.remove(lead) >> 1 } else { self.led(&mut parts) };
         for part in parts {
             sum = match part & 1 == 1 && !negative {
                 true => self.emit(Operation::Subtract(sum, part >> 1)),
@@ -124,7 +125,8 @@ impl Code {
     /// positive part.
     fn led(&mut self, parts: &mut Vec<usize>) -> Value {
         let class = self.dependencies[parts[0] >> 1];
-        let count = parts.iter().take_while(|part| part.to_owned() & 1 == 1 && self.dependencies[*part >> 1] == class).count();
+        let count =
+            parts.iter().take_while(|part| part.to_owned() & 1 == 1 && self.dependencies[*part >> 1] == class).count();
         let leading: Vec<usize> = parts.drain(..count).collect();
         let (sum, _) = self.added(leading);
         let lead = parts.iter().position(|part| part & 1 == 0).expect("some part is positive");
@@ -138,8 +140,7 @@ impl Code {
         coefficient: Number,
         factors: &[(Expression, Number)],
     ) -> Result<Value, EvaluateError> {
-        let (coefficient, factors) =
-            self.shared.factors(whole).unwrap_or_else(|| (coefficient, factors.to_vec()));
+        let (coefficient, factors) = self.shared.factors(whole).unwrap_or_else(|| (coefficient, factors.to_vec()));
         let (mut above, mut below) = (Vec::new(), Vec::new());
         let mut constant = coefficient.to_f64();
         for (base, exponent) in &factors {

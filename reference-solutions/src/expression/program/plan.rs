@@ -209,7 +209,14 @@ impl Plan {
         }
     }
 
-    fn deliver(&self, outputs: &mut [&mut [f64]], at: Place, moment: &Moment, blocks: &[&[f64]], registers: &Registers) {
+    fn deliver(
+        &self,
+        outputs: &mut [&mut [f64]],
+        at: Place,
+        moment: &Moment,
+        blocks: &[&[f64]],
+        registers: &Registers,
+    ) {
         for (index, output) in outputs.iter_mut().enumerate() {
             let target = &mut output[at.start..at.start + at.length];
             match self.varying.result(index, at.length, &moment.scalars, blocks, registers) {

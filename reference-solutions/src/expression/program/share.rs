@@ -27,7 +27,9 @@ impl Shared {
 pub(super) fn shared(expressions: &[Expression]) -> Shared {
     let (mut products, mut sums, mut seen) = (Vec::new(), Vec::new(), HashSet::new());
     let mut collect = |expression: &Expression| match expression.node() {
-        Node::Product(coefficient, factors) if factors.len() > 1 => products.push((expression.key(), *coefficient, factors.clone())),
+        Node::Product(coefficient, factors) if factors.len() > 1 => {
+            products.push((expression.key(), *coefficient, factors.clone()))
+        }
         Node::Sum(_, terms) if terms.len() > 1 => sums.push((expression.key(), terms.clone())),
         _ => {}
     };

@@ -109,12 +109,15 @@ impl Tape {
             let into = &mut target[..length];
             if let Action::SinCos(other) = instruction.action {
                 let mut second = std::mem::take(&mut registers.0[other]);
-                if let Operand::Block(argument) = operand(instruction.sources[0], length, scalars, externals, &registers.0) {
+                if let Operand::Block(argument) =
+                    operand(instruction.sources[0], length, scalars, externals, &registers.0)
+                {
                     block::sin_cos(into, &mut second[..length], argument);
                 }
                 registers.0[other] = second;
             } else {
-                let operands = instruction.sources.map(|source| operand(source, length, scalars, externals, &registers.0));
+                let operands =
+                    instruction.sources.map(|source| operand(source, length, scalars, externals, &registers.0));
                 execute(instruction.action, into, operands);
             }
             registers.0[instruction.into] = target;
@@ -251,7 +254,8 @@ impl<'a> Assembler<'a> {
         let instruction = match other {
             Some(cosine) => {
                 let second = self.register();
-                let (sine, cosine_value) = if action_is(action, Function::Sin) { (into, second) } else { (second, into) };
+                let (sine, cosine_value) =
+                    if action_is(action, Function::Sin) { (into, second) } else { (second, into) };
                 self.places[cosine] = Some(Source::Register(second));
                 Instruction { action: Action::SinCos(cosine_value), into: sine, sources }
             }

@@ -29,7 +29,9 @@ fn same(a: f64, b: f64) -> bool {
 }
 
 fn grid(cells: [usize; 2]) -> [Vec<f64>; 2] {
-    [0, 1].map(|k| (0..cells[k]).map(|i| 0.05 + 1.9 * (i as f64 + 0.37) / cells[k] as f64 * (1.0 - 0.3 * k as f64)).collect())
+    [0, 1].map(|k| {
+        (0..cells[k]).map(|i| 0.05 + 1.9 * (i as f64 + 0.37) / cells[k] as f64 * (1.0 - 0.3 * k as f64)).collect()
+    })
 }
 
 #[test]
@@ -71,7 +73,11 @@ fn cartesian_grids_and_times_give_the_same_bits_as_points() {
                 let expected = program.at(&[x[point % cells[0]], y[point / cells[0]], *time, A]);
                 for (k, expected) in expected.iter().enumerate() {
                     let found = out[j * all.len() + k][point];
-                    assert!(found.to_bits() == expected.to_bits() || (found.is_nan() && expected.is_nan()), "{}", all[k]);
+                    assert!(
+                        found.to_bits() == expected.to_bits() || (found.is_nan() && expected.is_nan()),
+                        "{}",
+                        all[k]
+                    );
                 }
             }
         }
