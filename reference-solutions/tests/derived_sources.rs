@@ -3,9 +3,9 @@
 //! What is trusted: SymPy's differentiation, and NumPy's extended precision. Compared at 1000 random points; tolerance 1e-13 of the
 //! largest value of an output: a source is a sum of terms that cancel, each with a rounding error of a few 1e-16 of its own size.
 
+mod python;
+
 use std::collections::BTreeMap;
-use std::io::Write;
-use std::process::{Command, Stdio};
 
 use gridassay_reference::equation::{Definition, Equation, Parameters, Solution};
 use gridassay_reference::expression::{Expression, Program, Scope};
@@ -308,24 +308,6 @@ fn derived_sources_agree_with_sympy() {
         .map(|(name, d)| format!("{name} {d}-D"))
         .collect();
     assert!(missing.is_empty() && !covered.is_empty(), "not compared: {missing:?}");
-    let report = ask_python("derived_sources.py", &serde_json::to_string(&asked).unwrap());
+    let report = python::ask("derived_sources.py", &serde_json::to_string(&asked).unwrap());
     assert_eq!(report.lines().count(), CASES.len(), "{report}");
-}
-
-/// Runs a script of the tests folder; a Python without its libraries is a failure, not a reason to skip.
-fn ask_python(script: &str, input: &str) -> String {
-    let python = std::env::var("GRIDASSAY_PYTHON").unwrap_or_else(|_| "python3".into());
-    let path = std::path::Path::new(env!("CARGO_MANIFEST_DIR")).join("tests").join(script);
-    let mut child = Command::new(&python)
-        .arg(path)
-        .stdin(Stdio::piped())
-        .stdout(Stdio::piped())
-        .spawn()
-        .unwrap_or_else(|error| panic!("{python} does not start: {error}; set GRIDASSAY_PYTHON"));
-    child.stdin.take().unwrap().write_all(input.as_bytes()).unwrap();
-    let output = child.wait_with_output().unwrap();
-    let report = String::from_utf8_lossy(&output.stdout).into_owned();
-    assert!(output.status.success(), "{python} needs SymPy and NumPy; it reported:\n{report}");
-    println!("{report}");
-    report
 }
