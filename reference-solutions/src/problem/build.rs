@@ -2,60 +2,21 @@
 
 use std::collections::BTreeMap;
 use std::ops::Range;
-use std::sync::Arc;
 
 use toml::Spanned;
 
 use crate::equation::{Equation, EquationError, Parameter, Parameters, Solution};
 use crate::expression::{Expression, Function, Number, Scope};
 
-use super::error::{AXES, Place, ProblemError};
+use super::error::{AXES, ProblemError};
 use super::file::{FunctionalEntry, ProblemFile, SourceKind};
 use super::formula::Formula;
 use super::header;
 use super::names::by_dependency;
 use super::residuals;
 use super::solver::{Setting, Solved, solver};
+use super::text::Text;
 use super::{FieldSolution, Functional, Inner};
-
-/// A file's text and name, for messages.
-#[derive(Clone)]
-pub(super) struct Text {
-    label: Arc<str>,
-    text: Arc<str>,
-}
-
-impl Text {
-    pub fn new(label: &str, text: &str) -> Self {
-        Self { label: label.into(), text: text.into() }
-    }
-
-    pub fn parse(&self) -> Result<ProblemFile, ProblemError> {
-        toml::from_str(&self.text).map_err(|error| {
-            let place = self.place(error.span().unwrap_or(0..0));
-            ProblemError::Syntax { place, reason: error.message().to_string() }
-        })
-    }
-
-    pub fn place(&self, span: Range<usize>) -> Place {
-        let before = &self.text[..span.start.min(self.text.len())];
-        Place { file: self.label.to_string(), line: 1 + before.matches('\n').count() }
-    }
-
-    pub fn refuse<T>(
-        &self,
-        span: Range<usize>,
-        entry: impl Into<String>,
-        reason: impl Into<String>,
-    ) -> Result<T, ProblemError> {
-        Err(ProblemError::Entry { place: self.place(span), entry: entry.into(), reason: reason.into() })
-    }
-
-    /// Reads a formula.
-    fn formula(&self, entry: &str, text: &str, span: Range<usize>, scope: &Scope) -> Result<Expression, ProblemError> {
-        Expression::parse(text, scope).or_else(|error| self.refuse(span, entry, error.to_string()))
-    }
-}
 
 /// Everything that is known before a formula of the solution is read.
 struct Builder<'a> {

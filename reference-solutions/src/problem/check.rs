@@ -154,6 +154,7 @@ fn residuals(problem: &Problem, points: &[At]) -> Result<(), ProblemError> {
         let [coarse, fine] = &found[..] else { continue };
         for (field, (coarse, fine)) in coarse.iter().zip(fine).enumerate() {
             let source = value(problem, Quantity::Source(field), at)?;
+            solenoidal(problem, field, source, fine.scale, at)?;
             if let Some((misfit, scale)) = misfit(coarse, fine, source) {
                 return Err(ProblemError::Misfit {
                     place: problem.inner.solution_place(field),
@@ -166,6 +167,18 @@ fn residuals(problem: &Problem, points: &[At]) -> Result<(), ProblemError> {
         }
     }
     Ok(())
+}
+
+/// A scheme cannot be given a source of mass: the velocity of an incompressible flow must be free of divergence.
+fn solenoidal(problem: &Problem, field: usize, source: f64, scale: f64, at: &At) -> Result<(), ProblemError> {
+    let is_mass = problem.equation() == "incompressible" && field + 1 == problem.fields().len();
+    if !is_mass || source.abs() <= 1e-9 * scale {
+        return Ok(());
+    }
+    let reason = format!(
+        "the velocity is not free of divergence: div u = {source:.3e} at {at}; derive it from a stream function or a vector potential"
+    );
+    Err(ProblemError::Entry { place: problem.inner.solution_place(0), entry: "solution".into(), reason })
 }
 
 /// Misfit and scale, where the misfit is beyond what the patches leave uncertain.
