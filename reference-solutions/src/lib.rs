@@ -4,3 +4,4 @@ pub mod equation;
 pub mod exact;
 pub mod expression;
 pub mod problem;
+pub mod writer;

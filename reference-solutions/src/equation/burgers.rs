@@ -37,7 +37,7 @@ impl Family for Burgers {
     fn residual(&self, state: &State) -> Result<Vec<Expression>, EquationError> {
         let u = state.value("u");
         let flux = vec![u.powi(2).scaled(Number::HALF); state.dimensions];
-        let diffusion = state.diffusion(&state.parameter("viscosity"), &u);
+        let diffusion = state.parameter("viscosity") * state.laplacian(&u);
         Ok(vec![state.rate(&u) + state.divergence(&flux) - diffusion])
     }
 }

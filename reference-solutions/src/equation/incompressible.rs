@@ -41,7 +41,7 @@ impl Family for Incompressible {
         let viscosity = state.parameter("viscosity");
         let momentum = velocity.iter().zip(state.gradient(&state.value("p"))).map(|(component, slope)| {
             let inertia = state.rate(component) + state.advection(&velocity, component);
-            inertia + slope - state.diffusion(&viscosity, component)
+            inertia + slope - &viscosity * state.laplacian(component)
         });
         Ok(momentum.chain([state.divergence(&velocity)]).collect())
     }

@@ -77,6 +77,11 @@ impl State {
         self.divergence(&flux)
     }
 
+    /// lap of
+    pub fn laplacian(&self, of: &Expression) -> Expression {
+        self.divergence(&self.gradient(of))
+    }
+
     /// velocity . grad of
     pub fn advection(&self, velocity: &[Expression], of: &Expression) -> Expression {
         dot(velocity, &self.gradient(of))

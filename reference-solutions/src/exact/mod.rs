@@ -10,6 +10,7 @@ mod riemann;
 mod root;
 mod series;
 mod simple_wave;
+mod swirl;
 
 pub use characteristics::Characteristics;
 pub use cole_hopf::ColeHopf;
@@ -17,6 +18,7 @@ pub use dam_break::DamBreak;
 pub use riemann::{GasState, Riemann, StarRegion};
 pub use series::{Series, SeriesKind};
 pub use simple_wave::SimpleWave;
+pub use swirl::Swirl;
 
 /// Why an exact solver cannot be set up or evaluated.
 #[derive(Debug, Clone, PartialEq, thiserror::Error)]

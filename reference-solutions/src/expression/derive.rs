@@ -66,8 +66,11 @@ impl Differentiation<'_> {
             Node::Symbol(_) => Expression::zero(),
             Node::Named(name, definition) => {
                 let derivative = self.of(definition);
-                let separator = if name.contains("_d_") { "" } else { "_d_" };
-                Expression::named(&format!("{name}{separator}{}", self.name), derivative)
+                // In order, so that mixed derivatives have one name.
+                let (stem, letters) = name.split_once("_d_").unwrap_or((name, ""));
+                let mut letters: Vec<char> = letters.chars().chain(self.name.chars()).collect();
+                letters.sort_unstable();
+                Expression::named(&format!("{stem}_d_{}", letters.iter().collect::<String>()), derivative)
             }
             Node::Sum(_, terms) => {
                 Expression::sum(terms.iter().map(|(c, term)| (*c, self.of(term))).collect::<Vec<_>>())

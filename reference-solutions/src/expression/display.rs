@@ -44,6 +44,17 @@ impl fmt::Display for Number {
     }
 }
 
+impl Expression {
+    /// The text with named parts as their names.
+    pub(crate) fn named_text(&self) -> String {
+        let mut names = |part: &Expression| match part.node() {
+            Node::Named(name, _) => Some(Expression::symbol(name)),
+            _ => None,
+        };
+        self.rebuilt(&mut Default::default(), &mut names).to_string()
+    }
+}
+
 fn text(expression: &Expression) -> (String, Strength) {
     match expression.node() {
         Node::Number(number) => number_text(*number),

@@ -5,6 +5,8 @@
 //! a compiler may put them into vectors of any width without changing a bit. Arguments outside the fast range go to
 //! the scalar functions of `libm`, one by one, in blocks as well as alone.
 
+#![expect(clippy::excessive_precision, reason = "the constants stand as they were published")]
+
 /// The reduction by four parts of pi/2 is exact while the multiple has at most 20 bits.
 const TRIGONOMETRIC_LIMIT: f64 = 1e6;
 /// Beyond this, e^x leaves the normal range.
@@ -45,7 +47,8 @@ pub(super) fn exponential_range(x: f64) -> bool {
 
 #[inline(always)]
 pub(super) fn logarithmic_range(x: f64) -> bool {
-    (x >= f64::MIN_POSITIVE) & (x <= f64::MAX)
+    let (normal, finite) = (x >= f64::MIN_POSITIVE, x < f64::INFINITY);
+    normal & finite
 }
 
 /// Sine and cosine together for |x| < 1e6.

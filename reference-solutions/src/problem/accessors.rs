@@ -33,6 +33,12 @@ impl Problem {
         self.inner.file.equation.get_ref()
     }
 
+    /// The equation in one line of plain text.
+    #[must_use]
+    pub fn form(&self) -> &str {
+        self.inner.equation.form()
+    }
+
     /// Number of space dimensions: 1 to 3.
     #[must_use]
     pub fn dimensions(&self) -> usize {
@@ -119,7 +125,7 @@ impl Problem {
     #[must_use]
     pub fn weak(&self) -> Option<Weak> {
         let weak = self.inner.file.weak.as_ref()?.get_ref();
-        Some(Weak { wave: weak.wave, continuous: weak.smooth_derivatives })
+        Some(Weak { wave: weak.wave, continuous: weak.continuous })
     }
 
     /// The order in L1 that theory gives a first-order scheme on this weak solution; none for smooth ones.
@@ -177,6 +183,13 @@ impl Problem {
     pub fn coefficient_is_steady(&self) -> bool {
         let mut formulas = self.inner.coefficients.values().flatten();
         self.is_steady() || !formulas.any(|formula| formula.depends_on("t"))
+    }
+
+    /// The exact solver and the fields that it gives, where there is one.
+    #[must_use]
+    pub fn solver(&self) -> Option<(&'static str, &[String])> {
+        let entry = self.inner.file.exact.as_ref()?.get_ref();
+        self.inner.solved.as_ref().map(|solved| (entry.name(), &solved.fields[..]))
     }
 
     /// The formulas as they were written, for people: named sub-expressions, coefficients, then the solution.

@@ -2,60 +2,21 @@
 
 use std::collections::BTreeMap;
 use std::ops::Range;
-use std::sync::Arc;
 
 use toml::Spanned;
 
 use crate::equation::{Equation, EquationError, Parameter, Parameters, Solution};
 use crate::expression::{Expression, Function, Number, Scope};
 
-use super::error::{AXES, Place, ProblemError};
+use super::error::{AXES, ProblemError};
 use super::file::{FunctionalEntry, ProblemFile, SourceKind};
 use super::formula::Formula;
 use super::header;
 use super::names::by_dependency;
 use super::residuals;
 use super::solver::{Setting, Solved, solver};
+use super::text::Text;
 use super::{FieldSolution, Functional, Inner};
-
-/// A file's text and name, for messages.
-#[derive(Clone)]
-pub(super) struct Text {
-    label: Arc<str>,
-    text: Arc<str>,
-}
-
-impl Text {
-    pub fn new(label: &str, text: &str) -> Self {
-        Self { label: label.into(), text: text.into() }
-    }
-
-    pub fn parse(&self) -> Result<ProblemFile, ProblemError> {
-        toml::from_str(&self.text).map_err(|error| {
-            let place = self.place(error.span().unwrap_or(0..0));
-            ProblemError::Syntax { place, reason: error.message().to_string() }
-        })
-    }
-
-    pub fn place(&self, span: Range<usize>) -> Place {
-        let before = &self.text[..span.start.min(self.text.len())];
-        Place { file: self.label.to_string(), line: 1 + before.matches('\n').count() }
-    }
-
-    pub fn refuse<T>(
-        &self,
-        span: Range<usize>,
-        entry: impl Into<String>,
-        reason: impl Into<String>,
-    ) -> Result<T, ProblemError> {
-        Err(ProblemError::Entry { place: self.place(span), entry: entry.into(), reason: reason.into() })
-    }
-
-    /// Reads a formula.
-    fn formula(&self, entry: &str, text: &str, span: Range<usize>, scope: &Scope) -> Result<Expression, ProblemError> {
-        Expression::parse(text, scope).or_else(|error| self.refuse(span, entry, error.to_string()))
-    }
-}
 
 /// Everything that is known before a formula of the solution is read.
 struct Builder<'a> {
@@ -99,7 +60,7 @@ pub(super) fn assemble(
     let coefficients = builder.coefficients()?;
     let solved = builder.solved(start)?;
     let expressions = builder.solution(solved.as_ref())?;
-    let solution = builder.field_solutions(expressions, solved.as_ref());
+    let solution = builder.field_solutions(expressions, solved.as_ref())?;
     let sources = builder.sources()?;
     let residuals = builder.residuals()?;
     let breaks = builder.breaks()?;
@@ -243,7 +204,8 @@ impl Builder<'_> {
             }
             let read = |text: &String| self.text.formula(&parameter.name, text, entry.span(), &self.scope);
             let meanings = texts.iter().map(read).collect::<Result<Vec<_>, _>>()?;
-            coefficients.insert(parameter.name.clone(), meanings.iter().cloned().map(Formula::new).collect());
+            let formulas = meanings.iter().map(|meaning| self.compiled(&parameter.name, meaning.clone()));
+            coefficients.insert(parameter.name.clone(), formulas.collect::<Result<Vec<_>, _>>()?);
             self.define(parameter, meanings, false);
         }
         Ok(coefficients)
@@ -303,19 +265,29 @@ impl Builder<'_> {
         Ok(self.fields.iter().map(|field| formulas.get(field).cloned()).collect())
     }
 
-    fn field_solutions(&self, solution: Vec<Option<Expression>>, solved: Option<&Solved>) -> Vec<FieldSolution> {
-        let axes = &AXES[..self.dimensions];
+    fn field_solutions(
+        &self,
+        solution: Vec<Option<Expression>>,
+        solved: Option<&Solved>,
+    ) -> Result<Vec<FieldSolution>, ProblemError> {
         let field = |(name, formula): (&String, Option<Expression>)| match formula {
-            Some(formula) => FieldSolution::Formula {
-                derivatives: axes.iter().map(|axis| Formula::new(formula.derivative(axis))).collect(),
-                value: Formula::new(formula),
-            },
+            Some(formula) => {
+                let along = |axis: &&str| self.compiled(name, formula.derivative(axis));
+                let derivatives = AXES[..self.dimensions].iter().map(along).collect::<Result<Vec<_>, _>>()?;
+                Ok(FieldSolution::Formula { derivatives, value: self.compiled(name, formula.clone())? })
+            }
             None => {
                 let index = solved.and_then(|solved| solved.fields.iter().position(|known| known == name));
-                FieldSolution::Solved(index.unwrap_or(0))
+                Ok(FieldSolution::Solved(index.unwrap_or(0)))
             }
         };
         self.fields.iter().zip(solution).map(field).collect()
+    }
+
+    /// Compiles what an entry means.
+    fn compiled(&self, entry: &str, meaning: Expression) -> Result<Formula, ProblemError> {
+        let span = self.file.solution.get(entry).map_or(self.file.name.span(), Spanned::span);
+        Formula::new(meaning, self.dimensions).or_else(|error| self.text.refuse(span, entry, error.to_string()))
     }
 
     fn sources(&self) -> Result<Option<Vec<Formula>>, ProblemError> {
@@ -327,7 +299,11 @@ impl Builder<'_> {
             return self.text.refuse(exact.span(), "source", reason);
         }
         match self.equation.source_terms(self.dimensions, &self.meanings, &self.formulas()?) {
-            Ok(sources) => Ok(Some(sources.into_iter().map(|(_, source)| Formula::new(source)).collect())),
+            Ok(sources) => sources
+                .into_iter()
+                .map(|(field, source)| self.compiled(&field, source))
+                .collect::<Result<_, _>>()
+                .map(Some),
             Err(error) => self.equation_refuses(&error),
         }
     }
@@ -359,7 +335,8 @@ impl Builder<'_> {
                 return self.text.refuse(entry.span(), label, format!("no such coordinate; write {}", axes.join(", ")));
             };
             for text in entry.get_ref() {
-                let formula = Formula::new(self.text.formula(&label, text, entry.span(), &self.scope)?);
+                let meaning = self.text.formula(&label, text, entry.span(), &self.scope)?;
+                let formula = self.compiled(&label, meaning)?;
                 if axes.iter().any(|axis| formula.depends_on(axis)) {
                     let reason = format!("`{text}` must depend on t alone");
                     return self.text.refuse(entry.span(), label, reason);

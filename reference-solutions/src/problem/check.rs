@@ -115,7 +115,7 @@ fn physical(problem: &Problem, fields: &[f64]) -> Vec<(String, f64, bool, &'stat
 
 /// Both ends of each periodic direction have the same values.
 fn periodic(problem: &Problem, at: &At) -> Result<(), ProblemError> {
-    for axis in 0..problem.dimensions() {
+    for (axis, name) in AXES.into_iter().enumerate().take(problem.dimensions()) {
         if problem.boundaries()[axis][0] != BoundaryKind::Periodic {
             continue;
         }
@@ -130,7 +130,7 @@ fn periodic(problem: &Problem, at: &At) -> Result<(), ProblemError> {
                 (value(problem, Quantity::Value(field), &low)?, value(problem, Quantity::Value(field), &high)?);
             // 1e-9: phases such as 2 pi x / L lose a few digits over long domains, and images of a pulse are cut at round-off.
             if (lower - upper).abs() > 1e-9 * (1e-3 + lower.abs().max(upper.abs())) {
-                let (field, axis) = (problem.fields()[field].clone(), AXES[axis]);
+                let (field, axis) = (problem.fields()[field].clone(), name);
                 let place = problem.inner.domain_place();
                 return Err(ProblemError::NotPeriodic { place, field, axis, lower, upper, at: low });
             }
@@ -154,6 +154,7 @@ fn residuals(problem: &Problem, points: &[At]) -> Result<(), ProblemError> {
         let [coarse, fine] = &found[..] else { continue };
         for (field, (coarse, fine)) in coarse.iter().zip(fine).enumerate() {
             let source = value(problem, Quantity::Source(field), at)?;
+            solenoidal(problem, field, source, fine.scale, at)?;
             if let Some((misfit, scale)) = misfit(coarse, fine, source) {
                 return Err(ProblemError::Misfit {
                     place: problem.inner.solution_place(field),
@@ -166,6 +167,18 @@ fn residuals(problem: &Problem, points: &[At]) -> Result<(), ProblemError> {
         }
     }
     Ok(())
+}
+
+/// A scheme cannot be given a source of mass: the velocity of an incompressible flow must be free of divergence.
+fn solenoidal(problem: &Problem, field: usize, source: f64, scale: f64, at: &At) -> Result<(), ProblemError> {
+    let is_mass = problem.equation() == "incompressible" && field + 1 == problem.fields().len();
+    if !is_mass || source.abs() <= 1e-9 * scale {
+        return Ok(());
+    }
+    let reason = format!(
+        "the velocity is not free of divergence: div u = {source:.3e} at {at}; derive it from a stream function or a vector potential"
+    );
+    Err(ProblemError::Entry { place: problem.inner.solution_place(0), entry: "solution".into(), reason })
 }
 
 /// Misfit and scale, where the misfit is beyond what the patches leave uncertain.

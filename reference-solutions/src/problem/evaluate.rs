@@ -1,6 +1,5 @@
 //! Values and averages of a problem's quantities.
 
-use crate::exact::Sample;
 use crate::expression::Expression;
 
 use super::average::average;
@@ -15,8 +14,8 @@ const ACCEPTED_UNCERTAINTY: f64 = 1e-14;
 /// Where the values of a quantity come from.
 enum Origin<'a> {
     Formula(&'a Formula),
-    /// The solver, its field, and whether the slope is asked for.
-    Solver(&'a Solved, usize, bool),
+    /// The solver, its field, and the axis along which the slope is asked for.
+    Solver(&'a Solved, usize, Option<usize>),
     Zero,
 }
 
@@ -35,28 +34,17 @@ impl Problem {
         out: &mut [f64],
     ) -> Result<(), EvaluationError> {
         self.same_lengths(points, out.len())?;
-        let values: Result<(), EvaluationError> = match self.origin(quantity)? {
-            Origin::Zero => {
-                out.fill(0.0);
-                Ok(())
-            }
-            Origin::Formula(formula) => {
-                formula.evaluate(time, points, out);
-                Ok(())
-            }
+        match self.origin(quantity)? {
+            Origin::Zero => out.fill(0.0),
+            Origin::Formula(formula) => formula.evaluate(time, points, out),
             Origin::Solver(solved, field, slope) => {
-                let pick = |sample: Sample| if slope { sample.slope[field] } else { sample.value[field] };
-                for (value, position) in out.iter_mut().zip(points[solved.axis]) {
-                    let sample = solved.solution.sample(time, *position);
-                    *value = pick(
-                        sample
-                            .map_err(|source| EvaluationError::Solver { problem: self.name().to_string(), source })?,
-                    );
+                for (index, value) in out.iter_mut().enumerate() {
+                    let found = solved.solution.evaluate(field, slope, time, points, index);
+                    let problem = || self.name().to_string();
+                    *value = found.map_err(|source| EvaluationError::Solver { problem: problem(), source })?;
                 }
-                Ok(())
             }
-        };
-        values?;
+        }
         self.all_finite(quantity, time, points, out)
     }
 
@@ -102,7 +90,8 @@ impl Problem {
         let mut breaks: Vec<Vec<f64>> =
             self.inner.breaks.iter().map(|list| list.iter().map(|formula| formula.at_time(time)).collect()).collect();
         if let Some(solved) = &self.inner.solved {
-            breaks[solved.axis].extend(solved.solution.breaks(time));
+            let (axis, positions) = solved.solution.breaks(time);
+            breaks[axis].extend(positions);
         }
         for (axis, positions) in breaks.iter_mut().enumerate() {
             if self.boundaries()[axis][0] == super::BoundaryKind::Periodic {
@@ -156,24 +145,21 @@ impl Problem {
             reason,
         };
         let few_fields = || missing(format!("it has the fields {}", self.fields().join(", ")));
-        let solved = |index: usize, slope: bool| match &self.inner.solved {
+        let solved = |index: usize, slope: Option<usize>| match &self.inner.solved {
             Some(solved) => Ok(Origin::Solver(solved, index, slope)),
             None => Err(few_fields()),
         };
         match quantity {
             Quantity::Value(field) => match self.inner.solution.get(field).ok_or_else(few_fields)? {
                 FieldSolution::Formula { value, .. } => Ok(Origin::Formula(value)),
-                FieldSolution::Solved(index) => solved(*index, false),
+                FieldSolution::Solved(index) => solved(*index, None),
             },
             Quantity::Derivative { axis, .. } if axis >= self.dimensions() => {
                 Err(missing(format!("it has {} dimensions", self.dimensions())))
             }
             Quantity::Derivative { field, axis } => match self.inner.solution.get(field).ok_or_else(few_fields)? {
                 FieldSolution::Formula { derivatives, .. } => Ok(Origin::Formula(&derivatives[axis])),
-                FieldSolution::Solved(index) => match &self.inner.solved {
-                    Some(known) if known.axis != axis => Ok(Origin::Zero),
-                    _ => solved(*index, true),
-                },
+                FieldSolution::Solved(index) => solved(*index, Some(axis)),
             },
             Quantity::Source(field) if field >= self.fields().len() => Err(few_fields()),
             Quantity::Source(field) => {

@@ -16,7 +16,7 @@
 //! | `[domain]` | `lower`, `upper` (numbers), `boundaries` (a kind, or a pair of kinds, for each direction) | required |
 //! | `[time]` | `start` and `final`, or `steady = true` | required |
 //! | `[breaks]` | for each coordinate a list of formulas in `t`: where the solution or a slope jumps | none |
-//! | `[weak]` | `wave` (`linear` or `nonlinear`) and `smooth_derivatives`: see [`super::Weak`] | none |
+//! | `[weak]` | `wave` (`linear` or `nonlinear`) and `continuous` (0): see [`super::Weak`] | none |
 //! | `norms` | norms that make sense, of `l1`, `l2`, `linf` | all |
 //! | `step` | `courant_number` or `diffusion_number` that suits | none |
 //! | `[[functionals]]` | `name` and `integrand`, a formula in the fields and coordinates | none |
@@ -137,7 +137,7 @@ pub(super) struct TimeEntry {
 pub(super) struct WeakEntry {
     pub wave: Wave,
     #[serde(default)]
-    pub smooth_derivatives: u32,
+    pub continuous: u32,
 }
 
 /// What carries the singularity of a weak solution.
@@ -187,6 +187,8 @@ pub(super) enum ExactEntry {
         density: Argument,
         pressure: Argument,
     },
+    /// A hill in LeVeque's swirling flow.
+    Swirl { period: Argument, base: Argument, height: Argument, centre: [Argument; 2], width: Argument },
     /// A Fourier series between the walls of `axis`, with `coefficient` a formula in `n`.
     Series {
         field: String,
@@ -201,6 +203,21 @@ pub(super) enum ExactEntry {
         stride: usize,
         diffusivity: Argument,
     },
+}
+
+impl ExactEntry {
+    /// What the solver does, for people.
+    pub fn name(&self) -> &'static str {
+        match self {
+            Self::Riemann { .. } => "exact Riemann solver",
+            Self::DamBreak { .. } => "exact dam break",
+            Self::ColeHopf { .. } => "Cole-Hopf transform",
+            Self::Characteristics { .. } => "characteristics",
+            Self::SimpleWave { .. } => "simple wave",
+            Self::Swirl { .. } => "particle paths",
+            Self::Series { .. } => "Fourier series",
+        }
+    }
 }
 
 #[derive(Debug, Clone, Copy, PartialEq, Eq, Deserialize)]

@@ -5,9 +5,9 @@ use toml::Spanned;
 use crate::equation::{Definition, Equation};
 
 use super::BoundaryKind;
-use super::build::Text;
 use super::error::ProblemError;
 use super::file::{BoundaryName, ProblemFile};
+use super::text::Text;
 
 /// The equation, known or the file's own.
 pub(super) fn equation(file: &ProblemFile, text: &Text) -> Result<Equation, ProblemError> {

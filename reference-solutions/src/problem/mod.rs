@@ -21,6 +21,7 @@ mod names;
 mod patch;
 mod residuals;
 mod solver;
+mod text;
 
 use std::collections::BTreeMap;
 use std::path::Path;
@@ -33,10 +34,10 @@ pub use functional::Functional;
 use crate::equation::Equation;
 use crate::expression::Expression;
 
-use build::Text;
 use file::ProblemFile;
 use formula::Formula;
 use solver::Solved;
+use text::Text;
 
 /// A problem with a known solution. Cheap to clone; the clones share everything.
 #[derive(Clone)]
@@ -82,14 +83,14 @@ pub enum BoundaryKind {
 
 /// A solution that has jumps, or jumps in a derivative.
 ///
-/// A scheme of formal order p smears a jump that is carried along linearly over a width h^(p/(p+1)). The error in L1
-/// is that width times the jump; if the first s derivatives are continuous it is the width to the power s + 1 (Banks, Aslam & Rider 2008,
-/// J. Comput. Phys. 227:6985-7002, for s = 0). Nonlinear waves steepen again, and the order is 1.
+/// A scheme of formal order p smears a jump that is carried along linearly over a width h^(p/(p+1)), and its error in L1
+/// is that width times the jump (Banks, Aslam & Rider 2008, J. Comput. Phys. 227:6985-7002). Where the c-th derivative is the first
+/// that jumps, the error is the width to the power c + 1. Nonlinear waves steepen again, and their order is 1.
 #[derive(Debug, Clone, Copy, PartialEq)]
 pub struct Weak {
     /// What carries the jump.
     pub wave: Wave,
-    /// How many derivatives are continuous, the value itself not counted: 0 for a kink means the value alone is; a jump has none.
+    /// The first derivative that jumps: 0, the solution itself; 1, its slope (a kink); 2, its curvature.
     pub continuous: u32,
 }
 

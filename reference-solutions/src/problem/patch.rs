@@ -177,7 +177,7 @@ impl Patch {
 fn differentiation_matrix(nodes: &[f64]) -> Vec<Vec<f64>> {
     let count = nodes.len();
     let end = |index: usize| if index == 0 || index == count - 1 { 2.0 } else { 1.0 };
-    let sign = |index: usize| if index % 2 == 0 { 1.0 } else { -1.0 };
+    let sign = |index: usize| if index.is_multiple_of(2) { 1.0 } else { -1.0 };
     let mut matrix = vec![vec![0.0; count]; count];
     for row in 0..count {
         for column in (0..count).filter(|column| *column != row) {

@@ -1,18 +1,58 @@
 //! From an `[exact]` entry to a solver.
 
 use crate::exact::{
-    Characteristics, ColeHopf, DamBreak, ExactSolution, GasState, Riemann, Series, SeriesKind, SimpleWave,
+    Characteristics, ColeHopf, DamBreak, ExactError, ExactSolution, GasState, Riemann, Sample, Series, SeriesKind,
+    SimpleWave, Swirl,
 };
 use crate::expression::{Expression, Scope};
 
 use super::error::AXES;
 use super::file::{Argument, ExactEntry, SeriesName};
 
-/// A solver, the fields that it gives and the direction along which it varies.
+/// A solver and the fields that it gives.
 pub(super) struct Solved {
-    pub solution: Box<dyn ExactSolution>,
+    pub solution: Solution,
     pub fields: Vec<String>,
-    pub axis: usize,
+}
+
+/// A solver by what its solutions depend on.
+pub(super) enum Solution {
+    /// One coordinate.
+    Line { solution: Box<dyn ExactSolution>, axis: usize },
+    /// Two coordinates, one field.
+    Swirl(Swirl),
+}
+
+impl Solution {
+    /// A field's value, or its slope along `slope`, at the point with this index.
+    pub fn evaluate(
+        &self,
+        field: usize,
+        slope: Option<usize>,
+        time: f64,
+        points: &[&[f64]],
+        index: usize,
+    ) -> Result<f64, ExactError> {
+        match self {
+            Self::Line { axis, .. } if slope.is_some_and(|along| along != *axis) => Ok(0.0),
+            Self::Line { solution, axis } => {
+                let Sample { value, slope: slopes } = solution.sample(time, points[*axis][index])?;
+                Ok(if slope.is_some() { slopes[field] } else { value[field] })
+            }
+            Self::Swirl(swirl) => {
+                let point = [points[0][index], points[1][index]];
+                Ok(slope.map_or_else(|| swirl.value(time, point), |axis| swirl.gradient(time, point)[axis]))
+            }
+        }
+    }
+
+    /// Axis and positions at which a value or a slope jumps.
+    pub fn breaks(&self, time: f64) -> (usize, Vec<f64>) {
+        match self {
+            Self::Line { solution, axis } => (*axis, solution.breaks(time)),
+            Self::Swirl(_) => (0, Vec::new()),
+        }
+    }
 }
 
 /// What a solver is set up from.
@@ -88,13 +128,22 @@ pub(super) fn solver(entry: &ExactEntry, setting: &Setting<'_>) -> Result<Solved
             let wave = [sine[1], sine[2], sine[3]];
             Box::new(SimpleWave::new(ambient, wave, setting.constant("gamma")?, start).map_err(text)?)
         }
+        ExactEntry::Swirl { period, base, height, centre: [x, y], width } => {
+            if setting.lower.len() != 2 {
+                return Err(format!("the swirl is a flow in 2 dimensions, not {}", setting.lower.len()));
+            }
+            let [period, base, height, x, y, width] = setting.numbers([period, base, height, x, y, width])?;
+            let swirl = Swirl::new(period, [base, height, width], [x, y]).map_err(text)?;
+            return Ok(Solved { solution: Solution::Swirl(swirl), fields: setting.fields.to_vec() });
+        }
         ExactEntry::Series { .. } => return series(entry, setting),
     };
     let count = solution.fields();
     if count > setting.fields.len() {
         return Err(format!("the solver gives {count} fields, but the equation has {}", setting.fields.len()));
     }
-    Ok(Solved { fields: setting.fields[..count].to_vec(), solution, axis: 0 })
+    let fields = setting.fields[..count].to_vec();
+    Ok(Solved { fields, solution: Solution::Line { solution, axis: 0 } })
 }
 
 fn series(entry: &ExactEntry, setting: &Setting<'_>) -> Result<Solved, String> {
@@ -130,5 +179,5 @@ fn series(entry: &ExactEntry, setting: &Setting<'_>) -> Result<Solved, String> {
         origin: 0.0,
     };
     let solution = Box::new(series.checked().map_err(|error| error.to_string())?);
-    Ok(Solved { solution, fields: vec![field.clone()], axis: direction })
+    Ok(Solved { solution: Solution::Line { solution, axis: direction }, fields: vec![field.clone()] })
 }

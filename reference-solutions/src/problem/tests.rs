@@ -5,8 +5,11 @@ use std::f64::consts::PI;
 
 #[test]
 fn every_problem_of_the_catalogue_is_read_and_checked() {
+    let read = |name: &&str| Problem::named(name).err().map(|error| format!("{name}: {error}"));
+    let refused: Vec<String> = Problem::catalogue().iter().filter_map(read).collect();
+    assert!(refused.is_empty(), "{}", refused.join("\n"));
     for name in Problem::catalogue() {
-        let problem = Problem::named(name).unwrap_or_else(|error| panic!("{name}: {error}"));
+        let problem = Problem::named(name).unwrap();
         assert_eq!(problem.name(), *name, "the file's name and the problem's name must agree");
         assert!(!problem.title().is_empty() && !problem.reference().is_empty(), "{name}");
     }
@@ -44,6 +47,30 @@ fn both_signs_of_the_velocity_are_usable() {
     reversed.evaluate(Quantity::Value(0), 0.3, &[&[0.2]], &mut out).unwrap();
     let expected = 0.31 + 0.9 * (4.0 * PI / 1.3 * (0.2 + 0.83 * 0.3) + 0.7).sin();
     assert!((out[0] - expected).abs() <= 4e-15, "{} against {expected}", out[0]);
+}
+
+/// The check on reading shows that the solution still satisfies its equation for every combination of signs.
+#[test]
+fn every_velocity_may_have_every_sign() {
+    let mut tried = 0;
+    for name in Problem::catalogue() {
+        let problem = Problem::named(name).unwrap();
+        let Some(velocity) = problem.parameters().get("velocity") else { continue };
+        for signs in 0..1_u32 << velocity.len() {
+            let turned = |(axis, value): (usize, &f64)| if signs >> axis & 1 == 1 { -value } else { *value };
+            let values = velocity.iter().enumerate().map(turned).collect();
+            let turned = problem.with_parameters(&BTreeMap::from([("velocity".to_string(), values)]));
+            assert!(turned.is_ok(), "{name}: {}", turned.err().unwrap());
+            tried += 1;
+        }
+    }
+    assert!(tried >= 30, "{tried}");
+}
+
+#[test]
+fn problems_can_be_shared_among_threads() {
+    fn shareable<T: Clone + Send + Sync>() {}
+    shareable::<Problem>();
 }
 
 #[test]
@@ -131,5 +158,65 @@ fn tells_place_value_and_remedy_of_bad_entries() {
     for (from, to, beginning) in cases {
         let error = refusal(from, to);
         assert!(error.starts_with(beginning), "{error}\nshould begin with\n{beginning}");
+    }
+}
+
+/// An incompressible velocity with a divergence has no source that would repair it.
+#[test]
+fn refuses_a_velocity_with_a_divergence() {
+    let text = catalogue::text("manufactured-incompressible-walls").unwrap();
+    let error =
+        Problem::from_text("walls.toml", &text.replace("u = \"beat", "u = \"1.001*beat")).err().unwrap().to_string();
+    assert!(error.contains("the velocity is not free of divergence: div u = "), "{error}");
+}
+
+/// Fields and sources of Roy, Nelson, Smith & Ober (2004) at two points, computed apart with 14 digits: density, velocities,
+/// pressure, then the sources of mass, momentum and energy.
+#[test]
+fn solutions_of_roy_and_others_have_their_sources() {
+    type Sample = (&'static str, [f64; 2], [f64; 4], [f64; 4]);
+    let samples: [Sample; 4] = [
+        (
+            "roy-supersonic-euler",
+            [0.5, 0.5],
+            [1.0792893218813, 817.72178149055, 781.60800756239, 130000.0],
+            [-47.794366832675, -147531.02522096, 71500.078350060, -90923635.986815],
+        ),
+        (
+            "roy-supersonic-euler",
+            [0.25, 0.75],
+            [1.0677976739415, 841.50094267436, 770.70903506165, 135355.33905933],
+            [488.52992401908, 412419.49754206, 305952.55204439, -170869169.92114],
+        ),
+        (
+            "roy-navier-stokes",
+            [0.5, 0.5],
+            [1.1368335718927, 86.722327043557, 99.777670002131, 104588.33482474],
+            [-76.101170147518, 67893.298787358, -50111.080838692, 3867207.6588890],
+        ),
+        (
+            "roy-navier-stokes",
+            [0.25, 0.75],
+            [1.0087670961524, 91.517597046749, 75.684680231689, 71999.725668969],
+            [-28.747560159261, 26484.215625169, -85557.049235655, -19956612.774602],
+        ),
+    ];
+    for (name, [x, y], [density, u, v, pressure], sources) in samples {
+        let problem = Problem::named(name).unwrap();
+        let at = |quantity| {
+            let mut out = [0.0];
+            problem.evaluate(quantity, 0.0, &[&[x], &[y]], &mut out).unwrap();
+            out[0]
+        };
+        let energy = pressure / 0.4 + 0.5 * density * (u * u + v * v);
+        for (field, expected) in [density, density * u, density * v, energy].into_iter().enumerate() {
+            let value = at(Quantity::Value(field));
+            assert!((value - expected).abs() <= 1e-13 * expected.abs() * 4.0, "{name}: {value} against {expected}");
+        }
+        for (field, expected) in sources.into_iter().enumerate() {
+            let value = at(Quantity::Source(field));
+            // Fourteen digits, less the two that the largest terms lose by cancelling.
+            assert!((value - expected).abs() <= 2e-12 * expected.abs(), "{name}: {value} against {expected}");
+        }
     }
 }
