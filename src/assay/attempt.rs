@@ -4,11 +4,11 @@
 //! offers both signs, every study is made twice, the second time with the velocity turned round, and a claim stands only if both
 //! uphold it.
 
-use crate::claims::{ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim, StabilityRequest};
+use crate::claims::{InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim, StabilityRequest};
 use crate::host::Session;
 use crate::record::{OrderRecord, Parameters, Study, StudyRecord};
 use crate::studies::setting::generic_parameters;
-use crate::studies::{Made, modes, order, stability};
+use crate::studies::{Made, invariants, modes, order, stability};
 use crate::verdict::{self, Judgement};
 
 /// The studies made for a claim, and what came of them.
@@ -74,6 +74,17 @@ pub fn attempt_stability(session: &mut Session, claim: &StabilityClaim, place: P
     judged(studies, judge)
 }
 
+/// Tries a claim about invariants. The study itself tries every sign of the velocity that is offered.
+pub fn attempt_invariants(session: &mut Session, claim: &InvariantsClaim, place: Place<'_>) -> Attempt {
+    let make = |session: &mut Session, request: &InvariantsRequest| invariants::run(session, request, place.seed);
+    let studies = both(session, place, &claim.request, None, make);
+    let judge = |study: &StudyRecord| match &study.study {
+        Study::Invariants(record) => verdict::invariants::judge(claim, study, record),
+        _ => unreachable!("a study of invariants was made"),
+    };
+    judged(studies, judge)
+}
+
 /// The study as asked for and, where there is one, its twin. A twin that the scheme does not offer is left out.
 fn both<R>(
     session: &mut Session,
@@ -82,7 +93,7 @@ fn both<R>(
     mirrored: Option<&R>,
     mut make: impl FnMut(&mut Session, &R) -> Made,
 ) -> Vec<StudyRecord> {
-    let mut record = |id: String, made: Made| StudyRecord {
+    let record = |id: String, made: Made| StudyRecord {
         id,
         scheme: place.scheme.to_owned(),
         study: made.study,

@@ -6,6 +6,6 @@ pub mod progress;
 mod run;
 pub mod schemes;
 
-pub use attempt::{Attempt, Place, attempt_modes, attempt_order, attempt_stability};
+pub use attempt::{Attempt, Place, attempt_invariants, attempt_modes, attempt_order, attempt_stability};
 pub use expect::{Expectation, expect};
 pub use run::{run, single};

@@ -2,7 +2,7 @@
 
 use std::time::Instant;
 
-use super::attempt::{Attempt, Place, attempt_modes, attempt_order, attempt_stability};
+use super::attempt::{Attempt, Place, attempt_invariants, attempt_modes, attempt_order, attempt_stability};
 use super::progress::Progress;
 use super::schemes::{Schemes, session_record};
 use crate::claims::{Claim, ClaimKind, Plan};
@@ -79,6 +79,7 @@ fn attempt(schemes: &mut Schemes<'_>, claim: &Claim, seed: u64) -> Attempt {
         ClaimKind::Order(claim) => attempt_order(session, claim, place),
         ClaimKind::Modes(claim) => attempt_modes(session, claim, place),
         ClaimKind::Stability(claim) => attempt_stability(session, claim, place),
+        ClaimKind::Invariants(claim) => attempt_invariants(session, claim, place),
     }
 }
 

@@ -4,6 +4,7 @@
 //! itself is wrong.
 
 mod arguments;
+mod invariants;
 mod judge;
 mod modes;
 mod order;
@@ -36,6 +37,7 @@ enum Command {
     Modes(modes::Modes),
     Order(order::Order),
     Stability(stability::Stability),
+    Invariants(invariants::Invariants),
 }
 
 impl Program {
@@ -46,6 +48,7 @@ impl Program {
             Command::Modes(command) => command.run(),
             Command::Order(command) => command.run(),
             Command::Stability(command) => command.run(),
+            Command::Invariants(command) => command.run(),
         };
         match done {
             Ok(outcome) => outcome.exit_code(),

@@ -18,6 +18,9 @@ use crate::studies::{Stop, impulse, linearity};
 /// more wavenumbers than one grid holds are tried. The worst theta of central differences is on a grid only when its cells divide by four.
 const GRIDS: [usize; 4] = [96, 88, 92, 100];
 
+/// Rounding of a stencil's coefficients by the scheme, relative to the largest: a step of several stages sums some dozens of terms.
+const STEP_ROUNDING: f64 = 16.0 * f64::EPSILON;
+
 /// Rounding of G by a step and a transform, relative to its size.
 const ROUNDING: f64 = 256.0 * f64::EPSILON;
 
@@ -54,7 +57,7 @@ impl<'a> Growth<'a> {
         let nodes = setting.prepare(session)?;
         let cellwise = Cellwise::new(&setting.offer, nodes.as_ref(), &cells[..1]);
         let trial = linearity::trial(session, &setting, &cellwise, seed)?;
-        let noise = trial.superposition.max(trial.shift).max(f64::EPSILON);
+        let noise = trial.superposition.max(trial.shift).max(STEP_ROUNDING);
         Ok(Self {
             session,
             request,
