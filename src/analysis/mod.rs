@@ -7,12 +7,17 @@
 //! * arrays over cells are flat with x fastest;
 //! * a number that is NaN or infinite never passes a comparison.
 
+pub mod branches;
 pub mod compare;
+pub mod dispersion;
 pub mod eigen;
 pub mod integrators;
 pub mod matrix;
+pub mod modified_equation;
 pub mod norms;
 pub mod order;
 pub mod powers;
+pub mod spectrum;
 pub mod stability;
 pub mod symbol;
+pub mod uncertainty;
