@@ -128,7 +128,11 @@ fn advection_schemes_have_their_closed_forms_at_every_wavenumber() {
         for cells in [64, 1000] {
             for c in [0.1, 0.5, 0.9, 1.0] {
                 let record = measure(scheme, "advection", cells, Some(c), None);
-                let worst = largest_difference(&record, cells, |theta| closed(theta, c));
+                let exact_at_one = scheme == "leapfrog" && c == 1.0;
+                // The roots of leapfrog meet at theta = pi / 2 and Courant number 1, and the branches pass through each other there: the physical
+                // one is exp(-i theta) throughout, where the principal square root changes over.
+                let closed = |theta: f64| if exact_at_one { (-I * theta).exp() } else { closed(theta, c) };
+                let worst = largest_difference(&record, cells, closed);
                 assert!(worst <= tolerance(scheme, c), "{scheme}, {cells} cells, c = {c}: {worst:e}");
             }
         }

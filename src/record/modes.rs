@@ -98,14 +98,24 @@ pub struct ModeRecord {
     pub exact_modulus: Option<f64>,
     /// |G| - |G exact| in one step.
     pub damping_error: Option<f64>,
-    /// arg G - arg G exact in one step, in radians, followed continuously from theta = 0; negative: the mode lags.
+    /// Phase by which the wave runs ahead (positive: towards larger x) of the exact one in one step, -arg G + arg G exact, in radians,
+    /// followed continuously from theta = 0.
     pub phase_error: Option<f64>,
+    /// |G|^n - |G exact|^n over the n steps of an exact period; `null` for a wave that does not move.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub damping_error_per_period: Option<f64>,
+    /// The phase error over an exact period, in radians; `null` for a wave that does not move.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub phase_error_per_period: Option<f64>,
     /// Numerical over exact phase speed; `null` where the exact speed is zero.
     pub phase_speed_ratio: Option<f64>,
     /// Numerical over exact group speed; `null` where the exact speed is zero.
     pub group_speed_ratio: Option<f64>,
     /// Cells per wavelength; `null` at theta = 0.
     pub points_per_wavelength: Option<f64>,
+    /// Share of the branch in a wave that the equation would carry along, where there are several branches and one field.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub share: Option<f64>,
     /// Share of the wave's energy that one step moves to other wavenumbers; `null` for a linear scheme, which moves none.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub leaked: Option<f64>,

@@ -63,7 +63,7 @@ impl StencilGrowth {
                 *q = 0.0;
             }
         }
-        let errors = coefficients.iter().zip(&sizes).map(|(q, s)| if *q == 0.0 { 0.0 } else { noise * s }).collect();
+        let errors = errors(&coefficients, &sizes.iter().map(|s| noise * s).collect::<Vec<_>>());
         let series_error = noise * r_size.iter().sum::<f64>();
         Some(StencilGrowth { coefficients, errors, series: r, series_error })
     }
@@ -89,6 +89,7 @@ impl StencilGrowth {
         // Growth at long waves alone may begin below every sampled theta; the first coefficient tells.
         if let Some(first) = self.coefficients.iter().position(|q| *q != 0.0)
             && self.coefficients[first] > 0.0
+            && self.errors[..first].iter().all(|error| *error == 0.0)
             && worst.excess.value <= 0.0
         {
             let theta = 1e-7;
@@ -97,6 +98,21 @@ impl StencilGrowth {
         }
         worst
     }
+}
+
+/// Bounds on the errors of the coefficients, of which `noise` bounds the rounding.
+///
+/// Coefficients before the first that stands above rounding are zero by consistency, without error, where that one outweighs their
+/// rounding at long waves; else they may as well be small, and the sign at long waves is open.
+fn errors(coefficients: &[f64], noise: &[f64]) -> Vec<f64> {
+    let mut errors = noise.to_vec();
+    if let Some(first) = coefficients.iter().position(|q| *q != 0.0) {
+        let outweighs = |n: usize| coefficients[first].abs() * LONG.powi((first - n) as i32) > noise[n];
+        if (0..first).all(outweighs) {
+            errors[..first].fill(0.0);
+        }
+    }
+    errors
 }
 
 fn theta_power(theta: f64, n: usize) -> f64 {

@@ -1,9 +1,10 @@
 //! The Fourier study: what one step does to every mode that a periodic grid holds.
 
 mod claimed;
+mod exact;
 mod linear;
+mod modified;
 mod nonlinear;
-mod quantities;
 
 use super::setting::{Numbers, Setting};
 use super::{Made, Stop, linearity};
@@ -53,9 +54,15 @@ fn measure(
             .push(format!("{}: what follows is its approximate dispersion relation (Pirozzoli 2006)", trial.failing()));
         return nonlinear::measure(session, &setting, record);
     }
-    linear::measure(session, &setting, &cellwise, record)?;
+    let offsets = nodes.map_or_else(|| shared_offsets(cellwise.per_direction), |nodes| nodes.offsets);
+    linear::measure(session, &setting, &cellwise, &offsets, record)?;
     if let Some(formula) = symbol {
         record.claimed_symbol = Some(claimed::compare(formula, record)?);
     }
     Ok(())
+}
+
+/// Where the values of a cell sit within it, as shares of the cell: `count` intervals of nodes, each at its lower end.
+fn shared_offsets(count: usize) -> Vec<f64> {
+    (0..count).map(|value| value as f64 / count as f64).collect()
 }

@@ -4,8 +4,9 @@
 use num_complex::Complex64;
 use rustfft::FftPlanner;
 
-use super::linear::Exact;
-use super::quantities::{Wave, records};
+use super::exact::Exact;
+use super::linear::scalar_records;
+use crate::analysis::dispersion::Mode;
 use crate::host::Session;
 use crate::record::ModesRecord;
 use crate::studies::Stop;
@@ -33,25 +34,19 @@ pub fn measure(session: &mut Session, setting: &Setting, record: &mut ModesRecor
     }
     let cells = setting.case.grid.cells[0];
     let exact = Exact::new(setting)?;
-    let mut waves = Vec::new();
+    let (mut modes, mut leaks) = (Vec::new(), Vec::new());
     let mut dependence = 0.0_f64;
     for mode in 0..=cells / 2 {
         let theta = 2.0 * std::f64::consts::PI * mode as f64 / cells as f64;
         let (factor, leaked) = response(session, setting, cells, mode, AMPLITUDE)?;
         let (other, _) = response(session, setting, cells, mode, OTHER_AMPLITUDE)?;
         dependence = dependence.max((factor - other).norm());
-        let (omega, group_speed) = (exact.branches(&[theta])?[0].omega, exact.group_speed(theta, 0)?);
-        waves.push(Wave {
-            theta: vec![theta],
-            factor,
-            derivative: None,
-            omega: Some(omega),
-            group_speed,
-            leaked: Some(leaked),
-        });
+        let omega = exact.branches(&[theta])?[0].omega * setting.step;
+        modes.push(Mode { theta, factor, derivative: None, exact: omega, exact_group: exact.group(theta, 0)? });
+        leaks.push(leaked);
     }
     record.amplitude_dependence = Some(dependence);
-    record.modes = records(&setting.names[0], &waves, setting.step, setting.case.grid.spacing(0));
+    record.modes = scalar_records(&setting.names[0], &modes, &leaks);
     Ok(())
 }
 
