@@ -25,3 +25,6 @@ pub use registry::{names, scheme};
 
 /// What the textbooks say of these schemes, as a claims file: what `gridassay judge` judges where it is given no other.
 pub const CLAIMS: &str = include_str!("../claims.toml");
+
+#[cfg(feature = "plugin")]
+gridassay_scheme::export_schemes!(|name: Option<&str>| scheme(name.unwrap_or("lax-wendroff")));
