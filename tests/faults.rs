@@ -49,7 +49,12 @@ fn run(source: &SchemeSource) -> Result<Session, HostError> {
 
 /// Limits that a fault meets soon; the start is long, since a busy machine starts an interpreter slowly.
 fn limits() -> Limits {
-    Limits { start: Duration::from_secs(30), request: Duration::from_millis(1500), message: 1 << 20, ..Limits::default() }
+    Limits {
+        start: Duration::from_secs(30),
+        request: Duration::from_millis(1500),
+        message: 1 << 20,
+        ..Limits::default()
+    }
 }
 
 /// What a fault must lead to: words of the sentence.
@@ -103,7 +108,7 @@ const CONVERSATION: &[(&str, &[&str])] = &[
     ("too short", &["state.u has 7 values where 8 are needed", "during advance"]),
     ("too long", &["state.u has 9 values where 8 are needed"]),
     ("empty array", &["state.u has 0 values where 8 are needed"]),
-    ("array a text", &["state.u cannot be read", "no base64"]),
+    ("array a text", &["state.u cannot be read", "no multiple of 8"]),
     ("array a number", &["state.u is the number 0.0, not an array of numbers"]),
     ("array an object", &["state.u is an object, not an array of numbers"]),
     ("array of texts", &["state.u is a list, not an array of numbers"]),
@@ -225,7 +230,8 @@ fn a_program_that_cannot_be_started_is_named_with_the_remedy() {
         use std::os::unix::fs::PermissionsExt;
         let path = here.join(name);
         std::fs::write(&path, text).unwrap();
-        std::fs::set_permissions(&path, std::fs::Permissions::from_mode(if executable { 0o755 } else { 0o644 })).unwrap();
+        std::fs::set_permissions(&path, std::fs::Permissions::from_mode(if executable { 0o755 } else { 0o644 }))
+            .unwrap();
     };
     write("plain.sh", "#!/bin/sh\ncat\n", false);
     write("no-interpreter", "#!/no/such/interpreter\n", true);
@@ -274,7 +280,8 @@ fn a_scheme_that_stays_after_the_end_is_ended() {
 }
 
 fn c_source(fault: &str) -> SchemeSource {
-    let library = c_library(&schemes().join("faulty.c"), &[&format!("-DFAULT={fault}"), "-Wno-infinite-recursion", "-O1"]);
+    let library =
+        c_library(&schemes().join("faulty.c"), &[&format!("-DFAULT={fault}"), "-Wno-infinite-recursion", "-O1"]);
     SchemeSource { folder: folder(), limits: limits(), ..support::source(plugin(library)) }
 }
 
@@ -353,7 +360,8 @@ fn every_fault_of_a_plugin_crate_has_its_sentence() {
 fn what_is_no_library_is_named_with_the_remedy() {
     let here = folder();
     std::fs::write(here.join("text.so"), "this is no library\n").unwrap();
-    let at = |path: &str| SchemeSource { folder: here.clone(), limits: limits(), ..support::source(plugin(path.into())) };
+    let at =
+        |path: &str| SchemeSource { folder: here.clone(), limits: limits(), ..support::source(plugin(path.into())) };
     expect("missing", &at("missing.so"), &["cannot be loaded", "No such file"], None);
     expect("text", &at("text.so"), &["cannot be loaded", "text.so"], None);
     let broken = |folder: &str, manifest: &str, source: &str| {

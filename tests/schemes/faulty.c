@@ -5,8 +5,23 @@
 
 #include "gridassay_scheme.h"
 
-enum { NONE, OTHER_CONTRACT, NO_CONTRACT, NO_DESCRIBE, NULL_TEXT, NO_JSON, MISFIT, SEGFAULT, EXIT, STACK, WRITE_TO_1, BAD_SIDE,
-       WRONG_ROOM, OWN_MESSAGE, OWN_CODE, DESCRIBES_CONTRACT_3, CLOSES_ALL };
+#define NONE 0
+#define OTHER_CONTRACT 1
+#define NO_CONTRACT 2
+#define NO_DESCRIBE 3
+#define NULL_TEXT 4
+#define NO_JSON 5
+#define MISFIT 6
+#define SEGFAULT 7
+#define EXIT 8
+#define STACK 9
+#define WRITE_TO_1 10
+#define BAD_SIDE 11
+#define WRONG_ROOM 12
+#define OWN_MESSAGE 13
+#define OWN_CODE 14
+#define DESCRIBES_CONTRACT_3 15
+#define CLOSES_ALL 16
 
 #if FAULT != NO_CONTRACT
 int32_t gridassay_contract(void) { return FAULT == OTHER_CONTRACT ? 7 : GRIDASSAY_CONTRACT; }
