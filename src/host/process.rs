@@ -50,6 +50,10 @@ pub(super) struct Process {
 impl Process {
     /// Starts `command` in `folder` under a guard, which is the program `executable`.
     pub fn start(executable: &Path, command: &[OsString], folder: &Path, limits: Limits) -> Result<Self, FaultKind> {
+        if command.is_empty() {
+            let reason = io::Error::new(io::ErrorKind::InvalidInput, "the command is empty");
+            return Err(FaultKind::NotStarted { reason, remedy: "name a program" });
+        }
         let (control, theirs) = UnixStream::pair().map_err(FaultKind::System)?;
         let orders = Orders { control: theirs.as_raw_fd(), memory: limits.memory, processes: limits.processes };
         let orders = serde_json::to_string(&orders).expect("orders are plain data");

@@ -267,7 +267,8 @@ fn start(source: &SchemeSource) -> Result<Started, HostError> {
         Route::Command(command) => (command.iter().map(OsString::from).collect(), Form::Lines(ArrayEncoding::Text)),
         _ => (vec![program.clone().into(), plugin_child::ARGUMENT.into()], Form::Frames),
     };
-    let process = Process::start(&program, &command, &source.folder, source.limits).map_err(|kind| {
+    let process = Process::start(&program, &command, &source.folder, source.limits);
+    let process = process.map_err(|kind| {
         let (scheme, during) = (shown(source), "start-up".to_owned());
         HostError::Fault(Box::new(Fault { kind, scheme, during, stderr: String::new() }))
     })?;

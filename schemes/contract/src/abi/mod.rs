@@ -4,6 +4,7 @@
 
 mod export;
 mod layout;
+mod macros;
 mod plugin_harness;
 mod problem;
 
