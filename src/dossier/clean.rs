@@ -50,6 +50,11 @@ pub(crate) fn latex(text: &str) -> String {
                 out.push('\\');
                 out.push(c);
             }
+            'θ' => out.push_str("$\\theta$"),
+            'π' => out.push_str("$\\pi$"),
+            'Δ' => out.push_str("$\\Delta$"),
+            '×' => out.push_str("$\\times$"),
+            '−' => out.push_str("$-$"),
             _ => out.push(c),
         }
     }

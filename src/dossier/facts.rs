@@ -5,7 +5,7 @@ use serde::Serialize;
 use super::clean::visible;
 use super::invariants;
 use super::words;
-use crate::record::{ModesRecord, Observed, OrderRecord, Parameters, StabilityRecord, Study, StudyRecord};
+use crate::record::{ClaimedSymbol, ModesRecord, Observed, OrderRecord, Parameters, StabilityRecord, Study, StudyRecord};
 
 /// A piece of a statement. Numbers stay numbers until an output rounds them for reading.
 #[derive(Clone, Debug, PartialEq, Serialize)]
@@ -145,13 +145,21 @@ fn modes_findings(record: &ModesRecord) -> Vec<Fact> {
             Part::Number(trial.superposition),
             text(", shift "),
             Part::Number(trial.shift),
-            text("; rounding allows "),
+            text(", time "),
+            Part::Number(trial.time),
+            text("; allowed "),
             Part::Number(trial.allowed),
         ];
         facts.push(fact("Deviations of the trial", parts));
     }
     if let Some(uncertainty) = record.uncertainty {
         facts.push(fact("Uncertainty of G", vec![Part::Number(uncertainty)]));
+    }
+    if let Some(dependence) = record.amplitude_dependence {
+        facts.push(fact("G moves with amplitude by", vec![Part::Number(dependence)]));
+    }
+    if let Some(claimed) = &record.claimed_symbol {
+        claimed_symbol(&mut facts, claimed);
     }
     if let Some(equation) = &record.modified_equation {
         if let Some(order) = equation.formal_order {
@@ -164,6 +172,38 @@ fn modes_findings(record: &ModesRecord) -> Vec<Fact> {
         }
     }
     facts
+}
+
+/// G against a claimed formula.
+fn claimed_symbol(facts: &mut Vec<Fact>, claimed: &ClaimedSymbol) {
+    facts.push(fact("Claimed formula of G", vec![text(visible(&claimed.formula))]));
+    let mut parts = vec![
+        text("differs at "),
+        Part::Count(claimed.disagreeing as u64),
+        text(" of "),
+        Part::Count(claimed.compared as u64),
+        text(" wavenumbers"),
+    ];
+    if let Some(difference) = claimed.largest_difference {
+        parts.extend([text(", by at most "), Part::Number(difference)]);
+    }
+    if let Some(theta) = claimed.worst_theta {
+        parts.extend([text(" (at θ = "), Part::Number(theta), text(")")]);
+    }
+    parts.extend([text("; allowed "), Part::Number(claimed.allowed)]);
+    facts.push(fact("G against the formula", parts));
+    if let Some(neighbour) = &claimed.neighbour {
+        let parts = vec![
+            text("the neighbour at "),
+            Part::Number(neighbour.offset as f64),
+            text(": "),
+            Part::Number(neighbour.built),
+            text(" as built, "),
+            Part::Number(neighbour.claimed),
+            text(" as claimed"),
+        ];
+        facts.push(fact("Coefficient that differs most", parts));
+    }
 }
 
 fn stability_findings(record: &StabilityRecord, stopped: bool) -> Vec<Fact> {

@@ -13,6 +13,7 @@ mod invariants;
 mod junit;
 mod number;
 mod page;
+mod statement;
 mod summary;
 mod table;
 mod table_files;
@@ -52,11 +53,17 @@ pub(crate) trait Exporter {
 }
 
 /// The outputs of every dossier, in the order in which they are written.
-const EXPORTERS: [&dyn Exporter; 5] =
-    [&summary::Summary, &junit::JUnit, &page::Page, &table_files::TableFiles, &figure_files::FigureFiles];
+const EXPORTERS: [&dyn Exporter; 6] = [
+    &summary::Summary,
+    &junit::JUnit,
+    &page::Page,
+    &statement::Statement,
+    &table_files::TableFiles,
+    &figure_files::FigureFiles,
+];
 
 /// Writes a dossier of `results` into `folder`, which is created where it is missing: `results.json`, `index.html`, `summary.md`,
-/// `junit.xml`, `figures/` (SVG and PNG) and `tables/` (CSV and LaTeX).
+/// `junit.xml`, `statement.md`, `statement.tex`, `figures/` (SVG and PNG) and `tables/` (CSV and LaTeX).
 ///
 /// The results are written first, and one output that fails does not keep the others from being written.
 ///

@@ -6,7 +6,7 @@ use super::table::{Cell, Table, of_study};
 use super::{Dossier, DossierError, Exporter, OutputFile, clean, number};
 
 /// Most rows of a LaTeX table: a page of a paper holds no more.
-const ROWS: usize = 40;
+pub(super) const ROWS: usize = 40;
 
 /// The exporter.
 pub(crate) struct TableFiles;
@@ -65,7 +65,7 @@ pub(crate) fn latex(table: &Table) -> String {
             Cell::Number(Some(value)) => format!("${}$", number::latex(*value, number::DIGITS)),
             Cell::Number(None) => "--".into(),
             Cell::Count(count) => format!("${count}$"),
-            Cell::Text(text) => clean::latex(text).replace('×', "$\\times$"),
+            Cell::Text(text) => clean::latex(text),
         });
         let _ = writeln!(out, "{} \\\\", cells.collect::<Vec<_>>().join(" & "));
     }

@@ -1,5 +1,6 @@
 //! The words and look-ups that several outputs share.
 
+use super::facts::Part;
 use crate::record::{Claimed, Norms, OrderRecord, Results, SchemeRecord, Verdict, VerdictRecord};
 
 /// What a dossier says of itself, on every page that people decide by.
@@ -107,4 +108,14 @@ pub(crate) fn count(count: usize) -> String {
     const WORDS: [&str; 13] =
         ["no", "one", "two", "three", "four", "five", "six", "seven", "eight", "nine", "ten", "eleven", "twelve"];
     WORDS.get(count).map_or_else(|| count.to_string(), |word| (*word).into())
+}
+
+/// A statement as one text, with its numbers written by `number`.
+pub(crate) fn joined(parts: &[Part], number: fn(f64) -> String) -> String {
+    let word = |part: &Part| match part {
+        Part::Text(text) => text.clone(),
+        Part::Number(value) => number(*value),
+        Part::Count(count) => count.to_string(),
+    };
+    parts.iter().map(word).collect()
 }

@@ -9,6 +9,7 @@ mod hostile;
 mod numbers;
 mod page;
 mod sample;
+mod schema;
 mod texts;
 
 use std::path::PathBuf;

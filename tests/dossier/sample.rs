@@ -62,6 +62,7 @@ pub fn modes(scheme: &Scheme, cells: usize, c: f64) -> ModesRecord {
             phase_speed_ratio: ratio.and_then(finite),
             group_speed_ratio: None,
             points_per_wavelength: (theta != 0.0).then(|| TAU / theta.abs()),
+            leaked: None,
         }
     };
     ModesRecord {
@@ -72,9 +73,11 @@ pub fn modes(scheme: &Scheme, cells: usize, c: f64) -> ModesRecord {
         diffusion_number: None,
         step: c / 1.3 / cells as f64,
         linear: Some(true),
-        linearity: Some(Linearity { superposition: 2.3e-16, shift: 1.9e-16, allowed: 1.4e-14 }),
+        linearity: Some(Linearity { superposition: 2.3e-16, shift: 1.9e-16, time: 0.0, allowed: 1.4e-14 }),
         uncertainty: Some(2.3e-16),
         modes: (1 - half..=half).map(mode).collect(),
+        amplitude_dependence: None,
+        claimed_symbol: None,
         stencil: Vec::new(),
         modified_equation: Some(ModifiedEquation {
             formal_order: Some(scheme.order as usize),
@@ -129,6 +132,10 @@ pub fn order(scheme: &Scheme, cells: &[usize], c: f64) -> OrderRecord {
         courant: Some(c),
         diffusion_number: None,
         step_power: Some(1.0),
+        solution_size: BTreeMap::from([(
+            "u".into(),
+            Norms { l1: Some(2.0 / PI), l2: Some(0.5f64.sqrt()), linf: Some(1.0) },
+        )]),
         observed: BTreeMap::from([("u".into(), BTreeMap::from(observed))]),
         levels,
     }

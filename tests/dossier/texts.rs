@@ -13,6 +13,11 @@ fn summary() {
 }
 
 #[test]
+fn statement() {
+    insta::assert_snapshot!("statement", read(&dossier("statement", &sample::one_scheme()), "statement.md"));
+}
+
+#[test]
 fn junit() {
     insta::assert_snapshot!("junit", read(&dossier("junit", &sample::one_scheme()), "junit.xml"));
 }

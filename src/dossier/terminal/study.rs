@@ -53,12 +53,7 @@ fn paragraph(out: &mut String, text: &str) {
 
 /// A statement as one text.
 fn joined(parts: &[Part]) -> String {
-    let word = |part: &Part| match part {
-        Part::Text(text) => text.clone(),
-        Part::Number(value) => number::plain_short(*value),
-        Part::Count(count) => count.to_string(),
-    };
-    parts.iter().map(word).collect()
+    words::joined(parts, number::plain_short)
 }
 
 /// The levels of each field, with the errors and the slopes of each norm.
