@@ -129,6 +129,15 @@ fn cosine_kernel(x: f64, low: f64) -> f64 {
 /// e^x for |x| < 708.
 #[inline(always)]
 pub(super) fn exp_inside(x: f64) -> f64 {
+    let (shifted, high, small) = exp_parts(x);
+    let scaled = 1.0 - (small - high);
+    // Adds n to the exponent; the shift drops everything of the rounder but its low bits.
+    f64::from_bits(scaled.to_bits().wrapping_add(shifted.to_bits() << 52))
+}
+
+/// e^x = 2^n (1 + high - small), with n in the low bits of the first result.
+#[inline(always)]
+fn exp_parts(x: f64) -> (f64, f64, f64) {
     const LN2_HIGH: f64 = 6.931_471_803_691_238_164_90e-01;
     const LN2_LOW: f64 = 1.908_214_929_270_587_700_02e-10;
     const P1: f64 = 1.666_666_666_666_660_190_37e-01;
@@ -142,14 +151,35 @@ pub(super) fn exp_inside(x: f64) -> f64 {
     let r = high - low;
     let square = r * r;
     let c = r - square * (P1 + square * (P2 + square * (P3 + square * (P4 + square * P5))));
-    let scaled = 1.0 - ((low - (r * c) / (2.0 - c)) - high);
-    // Adds n to the exponent; the shift drops everything of the rounder but its low bits.
-    f64::from_bits(scaled.to_bits().wrapping_add(shifted.to_bits() << 52))
+    (shifted, high, low - (r * c) / (2.0 - c))
+}
+
+/// e^x for |x| < 708 as a sum of two, with an error below 1e-17 relative.
+pub(super) fn exp_pair(x: f64) -> (f64, f64) {
+    let (shifted, high, small) = exp_parts(x);
+    let exponent = f64::from_bits((shifted.to_bits().wrapping_add(1023)) << 52);
+    // 1 + high - small, with the errors of both additions.
+    let sum = high - small;
+    let lost = (high - sum) - small;
+    let main = 1.0 + sum;
+    let low = ((1.0 - main) + sum) + lost;
+    (exponent * main, exponent * low)
+}
+
+/// ln(high + low) for normal positive numbers, |low| at most an ulp of high.
+pub(super) fn log_sum(high: f64, low: f64) -> f64 {
+    log_with(high, low / high)
 }
 
 /// ln x for normal positive x.
 #[inline(always)]
 pub(super) fn log_inside(x: f64) -> f64 {
+    log_with(x, 0.0)
+}
+
+/// ln x + correction
+#[inline(always)]
+fn log_with(x: f64, correction: f64) -> f64 {
     const LN2_HIGH: f64 = 6.931_471_803_691_238_164_90e-01;
     const LN2_LOW: f64 = 1.908_214_929_270_587_700_02e-10;
     const L1: f64 = 6.666_666_666_666_735_130e-01;
@@ -173,7 +203,7 @@ pub(super) fn log_inside(x: f64) -> f64 {
     let w = z * z;
     let even = w * (L2 + w * (L4 + w * L6));
     let odd = z * (L1 + w * (L3 + w * (L5 + w * L7)));
-    s * (half_square + (odd + even)) + exponent * LN2_LOW - half_square + f + exponent * LN2_HIGH
+    s * (half_square + (odd + even)) + (exponent * LN2_LOW + correction) - half_square + f + exponent * LN2_HIGH
 }
 
 #[cfg(test)]

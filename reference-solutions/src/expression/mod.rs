@@ -5,6 +5,7 @@
 //! sums are never multiplied out: an expression does not grow by being simplified.
 
 mod build;
+mod compensated;
 mod derive;
 mod display;
 mod error;

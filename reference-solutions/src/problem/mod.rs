@@ -165,6 +165,44 @@ impl Problem {
 
     /// The problem in a text, which messages call `label`.
     ///
+    /// ```
+    /// use gridassay_reference::problem::{Problem, Quantity};
+    ///
+    /// let text = r#"
+    /// name = "my-wave"
+    /// title = "A wave in a channel"
+    /// reference = "own"
+    /// equation = "advection"
+    /// dimensions = 1
+    /// source = "derived"
+    ///
+    /// [parameters]
+    /// velocity = [-0.7]
+    ///
+    /// [names]
+    /// k = "2*pi/1.3"
+    ///
+    /// [solution]
+    /// u = "1 + 0.2*sin(k*x)*exp(-0.4*t)"
+    ///
+    /// [domain]
+    /// lower = [0.0]
+    /// upper = [1.3]
+    /// boundaries = ["periodic"]
+    ///
+    /// [time]
+    /// start = 0.0
+    /// final = 0.37
+    /// "#;
+    /// let problem = Problem::from_text("my-wave.toml", text)?;
+    /// let mut source = [0.0];
+    /// problem.evaluate(Quantity::Source(0), 0.0, &[&[0.0]], &mut source).unwrap();
+    /// // u_t + a u_x at x = 0, t = 0
+    /// let expected = -0.7 * 0.2 * 2.0 * std::f64::consts::PI / 1.3;
+    /// assert!((source[0] - expected).abs() < 1e-15);
+    /// # Ok::<(), gridassay_reference::problem::ProblemError>(())
+    /// ```
+    ///
     /// # Errors
     /// As [`Problem::from_file`].
     pub fn from_text(label: &str, text: &str) -> Result<Self, ProblemError> {
