@@ -9,7 +9,9 @@ mod judge;
 mod modes;
 mod order;
 mod outcome;
+mod problems;
 mod single;
+mod source;
 mod stability;
 
 use std::process::ExitCode;
@@ -38,6 +40,8 @@ enum Command {
     Order(order::Order),
     Stability(stability::Stability),
     Invariants(invariants::Invariants),
+    Problems(problems::Problems),
+    Source(source::Source),
 }
 
 impl Program {
@@ -49,6 +53,8 @@ impl Program {
             Command::Order(command) => command.run(),
             Command::Stability(command) => command.run(),
             Command::Invariants(command) => command.run(),
+            Command::Problems(command) => command.run(),
+            Command::Source(command) => command.run(),
         };
         match done {
             Ok(outcome) => outcome.exit_code(),

@@ -3,6 +3,7 @@
 use super::{Argument, Listing, Output};
 use crate::equation::{COORDINATES, Equation, EquationError, Parameters, Solution};
 use crate::expression::Expression;
+use crate::problem::Problem;
 
 /// The source terms of `equation` that make `solution` a solution, with arguments and units described.
 ///
@@ -67,5 +68,27 @@ fn meaning(equation: &str, field: &str) -> &'static str {
         ("burgers", _) => "rate of u, m/s^2",
         ("poisson", _) => "source density, unit of k u per m^2",
         _ => "rate of the field, its unit per second",
+    }
+}
+
+impl Listing {
+    /// The source terms of a problem as it stands, its parameters being numbers; `sources` holds one expression a field.
+    pub fn of_problem(problem: &Problem, sources: Vec<Expression>) -> Listing {
+        let mut arguments: Vec<Argument> = COORDINATES[..problem.dimensions()]
+            .iter()
+            .map(|name| Argument { name: name.to_string(), meaning: "coordinate, m".into() })
+            .collect();
+        arguments.push(Argument { name: "t".into(), meaning: "time, s".into() });
+        let mut title = vec![
+            format!("Source term of `{}` in {}-D", problem.equation(), problem.dimensions()),
+            format!("for the problem {}: {}", problem.name(), problem.title()),
+        ];
+        title.extend(problem.formulas().into_iter().map(|(name, text)| format!("  {name} = {text}")));
+        let outputs = problem.fields().iter().zip(sources).map(|(field, expression)| Output {
+            name: format!("S_{field}"),
+            meaning: meaning(problem.equation(), field).to_string(),
+            expression,
+        });
+        Listing { function: "source".into(), title, arguments, outputs: outputs.collect() }
     }
 }

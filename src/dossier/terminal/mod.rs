@@ -4,6 +4,7 @@
 //! same without colour.
 
 mod plot;
+mod problem;
 mod study;
 mod verdicts;
 
@@ -12,6 +13,7 @@ use unicode_width::UnicodeWidthStr;
 
 use crate::record::Verdict;
 
+pub use problem::{catalogue_text, problem_text};
 pub use study::study_text;
 pub use verdicts::verdict_table;
 
