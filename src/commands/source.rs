@@ -2,7 +2,7 @@
 
 use std::path::Path;
 
-use clap::Args;
+use clap::{ArgGroup, Args};
 use gridassay_reference::equation::{COORDINATES, Definition, Equation, Parameters, Solution};
 use gridassay_reference::expression::{Expression, ParseError, Scope};
 use gridassay_reference::problem::Problem;
@@ -19,7 +19,7 @@ use super::outcome::Outcome;
                   A parameter of the equation that is not given stays open and becomes an argument of the code. The components of a vector are\n\
                   called velocity_x, velocity_y, velocity_z. A line \"k = ...\" whose left side is no field names a sub-expression."
 )]
-#[group(id = "subject", required = true, multiple = false, args = ["equation", "residual", "problem"])]
+#[command(group = ArgGroup::new("subject").args(["equation", "residual", "problem"]).required(true).multiple(false))]
 pub struct Source {
     /// An equation of the contract.
     #[arg(long)]

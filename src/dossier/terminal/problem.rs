@@ -111,7 +111,7 @@ fn picture(problem: &Problem) -> String {
     };
     let mut out = format!("  {} at the end, from {least:.4} to {greatest:.4}\n", problem.fields()[0]);
     for line in lines {
-        out += &format!("    {}\n", line.trim_end());
+        out += &format!("    {}\n", line.trim_end_matches([' ', '\u{2800}']));
     }
     out
 }
