@@ -3,6 +3,7 @@
 use serde::Serialize;
 
 use super::clean::visible;
+use super::invariants;
 use super::words;
 use crate::record::{ModesRecord, Observed, OrderRecord, Parameters, StabilityRecord, Study, StudyRecord};
 
@@ -22,11 +23,11 @@ pub(crate) struct Fact {
     pub parts: Vec<Part>,
 }
 
-fn text(text: impl Into<String>) -> Part {
+pub(super) fn text(text: impl Into<String>) -> Part {
     Part::Text(text.into())
 }
 
-fn fact(label: impl Into<String>, parts: Vec<Part>) -> Fact {
+pub(super) fn fact(label: impl Into<String>, parts: Vec<Part>) -> Fact {
     Fact { label: label.into(), parts }
 }
 
@@ -44,6 +45,7 @@ pub(crate) fn heading(study: &StudyRecord) -> Vec<Part> {
             }
             parts
         }
+        Study::Invariants(record) => vec![text(format!("Invariants of {}", visible(&record.equation)))],
         Study::Stability(record) => {
             vec![text(format!("Stable range of the {}, {}", record.number.words(), visible(&record.equation)))]
         }
@@ -54,6 +56,7 @@ pub(crate) fn heading(study: &StudyRecord) -> Vec<Part> {
 pub(crate) fn findings(study: &StudyRecord) -> Vec<Fact> {
     match &study.study {
         Study::Order(record) => order_findings(record),
+        Study::Invariants(record) => invariants::findings(record),
         Study::Modes(record) => modes_findings(record),
         Study::Stability(record) => stability_findings(record, study.stopped.is_some()),
     }
@@ -63,6 +66,7 @@ pub(crate) fn findings(study: &StudyRecord) -> Vec<Fact> {
 pub(crate) fn settings(study: &StudyRecord) -> Vec<Fact> {
     match &study.study {
         Study::Order(record) => order_settings(record),
+        Study::Invariants(record) => invariants::settings(record),
         Study::Modes(record) => modes_settings(record),
         Study::Stability(record) => stability_settings(record),
     }

@@ -9,6 +9,7 @@ mod error;
 mod facts;
 mod figure;
 mod figure_files;
+mod invariants;
 mod junit;
 mod number;
 mod page;

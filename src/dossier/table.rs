@@ -4,6 +4,7 @@ use serde::Serialize;
 
 use super::chart::thin;
 use super::clean::visible;
+use super::invariants;
 use super::words;
 use crate::record::{ModesRecord, OrderRecord, StabilityRecord, Study, StudyRecord};
 
@@ -43,7 +44,7 @@ pub(crate) enum Cell {
     Text(String),
 }
 
-fn column(head: &str, key: &str, latex: &str) -> Column {
+pub(super) fn column(head: &str, key: &str, latex: &str) -> Column {
     Column { head: head.into(), key: key.into(), latex: latex.into(), numeric: true, powers: false }
 }
 
@@ -52,6 +53,7 @@ pub(crate) fn of_study(study: &StudyRecord, most: usize) -> Vec<Table> {
     match &study.study {
         Study::Order(record) => order_tables(record),
         Study::Modes(record) => modes_tables(record, most),
+        Study::Invariants(record) => invariants::tables(record),
         Study::Stability(record) => stability_tables(record, most),
     }
 }

@@ -143,7 +143,7 @@ fn claim<'a>(dossier: &'a Dossier<'a>, verdict: &'a VerdictRecord) -> ClaimView<
         Some(study) => study.kind(),
         // Without evidence the claim's id still tells its kind: it begins with it.
         None => {
-            ["order", "modes", "stability"].into_iter().find(|kind| verdict.claim.starts_with(kind)).unwrap_or("other")
+            ["order", "modes", "stability", "invariants"].into_iter().find(|kind| verdict.claim.starts_with(kind)).unwrap_or("other")
         }
     };
     let evidence =
@@ -168,6 +168,7 @@ fn study_view<'a>(results: &'a Results, study: &'a StudyRecord, id: &'a str, fig
             Study::Order(_) => "order",
             Study::Modes(_) => "modes",
             Study::Stability(_) => "stability",
+            Study::Invariants(_) => "invariants",
         },
         heading: facts::heading(study),
         findings: facts::findings(study),
@@ -195,7 +196,7 @@ fn figure_view(figure: &Figure) -> FigureView<'_> {
 /// The kinds of claim that occur, in the order of the page.
 fn kinds(schemes: &[SchemeView<'_>]) -> Vec<&'static str> {
     let occurs = |kind: &str| schemes.iter().flat_map(|scheme| &scheme.claims).any(|claim| claim.kind == kind);
-    ["order", "modes", "stability", "other"].into_iter().filter(|kind| occurs(kind)).collect()
+    ["order", "modes", "stability", "invariants", "other"].into_iter().filter(|kind| occurs(kind)).collect()
 }
 
 /// An argument as a shell would need it.
