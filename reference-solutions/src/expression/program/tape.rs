@@ -124,6 +124,25 @@ impl Tape {
         }
     }
 
+    /// Number of results.
+    pub(super) fn results(&self) -> usize {
+        self.results.len()
+    }
+
+    /// Result `index`, which varies from point to point, of the block that was run last.
+    pub(super) fn block<'a>(
+        &self,
+        index: usize,
+        length: usize,
+        externals: &[&'a [f64]],
+        registers: &'a Registers,
+    ) -> &'a [f64] {
+        match operand(self.results[index], length, &[f64::NAN], externals, &registers.0) {
+            Operand::Block(values) => values,
+            Operand::Scalar(_) => unreachable!("the caller asks for what varies"),
+        }
+    }
+
     /// Result `index` of the block that was run last.
     pub(super) fn result<'a>(
         &self,
