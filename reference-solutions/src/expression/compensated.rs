@@ -88,7 +88,7 @@ pub(super) fn atan2(y: f64, x: f64) -> f64 {
     if !ordinary(above) || !ordinary(right) {
         return libm::atan2(y, x);
     }
-    const PI: Pair = (3.141_592_653_589_793_116_00, 1.224_646_799_147_353_207_2e-16);
+    const PI: Pair = (std::f64::consts::PI, 1.224_646_799_147_353_207_2e-16);
     let mut angle = atan_below_one(quotient((above.min(right), 0.0), (above.max(right), 0.0)));
     if above > right {
         angle = less((0.5 * PI.0, 0.5 * PI.1), angle);
@@ -123,7 +123,7 @@ fn atan_below_one(q: Pair) -> Pair {
             (base, quotient(less((2.0 * q.0, 2.0 * q.1), one), plus((2.0, 0.0), q)))
         }
         _ => {
-            let base = (7.853_981_633_974_482_789_99e-01, 3.061_616_997_868_383_017_93e-17);
+            let base = (std::f64::consts::FRAC_PI_4, 3.061_616_997_868_383_017_93e-17);
             (base, quotient(less(q, one), plus(one, q)))
         }
     };

@@ -171,6 +171,9 @@ impl<'a> Code<'a> {
             |(k, output): (usize, &super::Output)| format!("  {}: {}, {}", place(k), output.name, output.meaning);
         lines.extend(self.listing.outputs.iter().enumerate().map(output));
         lines
+            .iter()
+            .flat_map(|line| wrapped(line, 96, "", "    ").lines().map(str::to_string).collect::<Vec<_>>())
+            .collect()
     }
 }
 

@@ -39,8 +39,7 @@ impl Dialect for Fortran {
 pub(super) fn write(code: &Code) -> Result<String, WriteError> {
     let single = code.results.len() == 1;
     let place = |k: usize| if single { "result".to_string() } else { format!("{}({})", code.array, k + 1) };
-    let mut lines: Vec<String> =
-        code.description(place).iter().map(|line| wrapped(&format!("! {line}"), 120, "", "!     ")).collect();
+    let mut lines: Vec<String> = code.description(place).iter().map(|line| format!("! {line}")).collect();
     let arguments: Vec<&str> = code.arguments.iter().map(|(name, _)| name.as_str()).collect();
     let statement = |line: String| wrapped(&line, 120, " &", "        & ");
     match single {

@@ -49,7 +49,21 @@ pub struct Plan {
     fixed: Tape,
     /// The rest; its externals include the results of `fixed`.
     varying: Tape,
-    fixed_results: Vec<Value>,
+    fixed_feeds: Vec<Feed>,
+    varying_feeds: Vec<Feed>,
+}
+
+/// Where a tape's external block comes from.
+#[derive(Clone, Copy)]
+enum Feed {
+    /// A slice of an input that has a number for each point.
+    Points(usize),
+    /// The coordinate of a direction itself.
+    Axis { input: usize },
+    /// A result of `lines`.
+    Line { line: usize, result: usize },
+    /// A result of the fixed tape.
+    Fixed(usize),
 }
 
 struct Line {
@@ -138,13 +152,32 @@ impl Plan {
             let tape = Tape::new(program, &is_member, &is_scalar, &results);
             Line { input, results, tape }
         };
-        let lines = (0..kinds.len()).filter(|input| kinds[*input] == Kind::Axis).map(line).collect();
+        let lines: Vec<Line> = (0..kinds.len()).filter(|input| kinds[*input] == Kind::Axis).map(line).collect();
         let is_fixed = |value: Value| time.is_some() && classes.is_pointwise(value) && !classes.changes(value);
         let is_varying = |value: Value| classes.is_pointwise(value) && !is_fixed(value);
         let fixed_results = classes.frontier(is_fixed, is_varying);
         let fixed = Tape::new(program, &is_fixed, &is_scalar, &fixed_results);
         let varying = Tape::new(program, &is_varying, &is_scalar, &program.outputs);
-        Plan { program: program.clone(), kinds: kinds.to_vec(), time, lines, fixed, varying, fixed_results }
+        let feed = |value: &Value| match program.operations[*value] {
+            Operation::Input(input) if kinds[input] == Kind::Points => Feed::Points(input),
+            Operation::Input(input) => Feed::Axis { input },
+            _ => match fixed_results.iter().position(|result| result == value) {
+                Some(result) => Feed::Fixed(result),
+                None => line_feed(&lines, *value),
+            },
+        };
+        let fixed_feeds = fixed.externals.iter().map(feed).collect();
+        let varying_feeds = varying.externals.iter().map(feed).collect();
+        Plan {
+            program: program.clone(),
+            kinds: kinds.to_vec(),
+            time,
+            lines,
+            fixed,
+            varying,
+            fixed_feeds,
+            varying_feeds,
+        }
     }
 
     /// Computes all outputs at all points, in blocks, on one thread.
@@ -173,38 +206,23 @@ impl Plan {
         let Some(first) = moments.first() else { return };
         let mut fixed_registers = self.fixed.registers();
         let mut varying_registers = self.varying.registers();
-        let (mut fixed_buffers, mut varying_buffers) = (buffers(&self.fixed), buffers(&self.varying));
+        let mut fixed_buffers = Buffers::new(&self.fixed);
+        // One set a time: values along a slow axis then stay where they are from block to block.
+        let mut varying_buffers: Vec<Buffers> = times.iter().map(|_| Buffers::new(&self.varying)).collect();
         for start in (0..points).step_by(BLOCK) {
-            let length = BLOCK.min(points - start);
-            let at = Place { start, length };
-            self.gather(&self.fixed, inputs, first, at, &mut fixed_buffers);
-            let externals = self.externals(&self.fixed, inputs, at, &fixed_buffers);
-            self.fixed.run(length, &first.scalars, &externals, &mut fixed_registers);
-            for (moment, outputs) in moments.iter().zip(outputs.chunks_mut(self.program.outputs.len().max(1))) {
-                self.gather(&self.varying, inputs, moment, at, &mut varying_buffers);
-                let mut blocks = self.externals(&self.varying, inputs, at, &varying_buffers);
-                self.hand_over(&mut blocks, at, &externals, &moment.scalars, &fixed_registers);
-                self.varying.run(length, &moment.scalars, &blocks, &mut varying_registers);
+            let at = Place { start, length: BLOCK.min(points - start) };
+            self.gather(&self.fixed_feeds, inputs, first, at, &mut fixed_buffers);
+            let fixed_blocks = self.blocks(&self.fixed_feeds, inputs, at, &fixed_buffers, &[]);
+            self.fixed.run(at.length, &first.scalars, &fixed_blocks, &mut fixed_registers);
+            let results: Vec<&[f64]> = (0..self.fixed.results())
+                .map(|k| self.fixed.block(k, at.length, &fixed_blocks, &fixed_registers))
+                .collect();
+            let outputs = outputs.chunks_mut(self.program.outputs.len().max(1));
+            for ((moment, buffers), outputs) in moments.iter().zip(&mut varying_buffers).zip(outputs) {
+                self.gather(&self.varying_feeds, inputs, moment, at, buffers);
+                let blocks = self.blocks(&self.varying_feeds, inputs, at, buffers, &results);
+                self.varying.run(at.length, &moment.scalars, &blocks, &mut varying_registers);
                 self.deliver(outputs, at, moment, &blocks, &varying_registers);
-            }
-        }
-    }
-
-    /// Puts the results of the fixed part among the externals of the varying one.
-    fn hand_over<'a>(
-        &self,
-        blocks: &mut [&'a [f64]],
-        at: Place,
-        externals: &[&'a [f64]],
-        scalars: &[f64],
-        registers: &'a Registers,
-    ) {
-        for (block, value) in blocks.iter_mut().zip(&self.varying.externals) {
-            if let Some(result) = self.fixed_results.iter().position(|result| result == value) {
-                match self.fixed.result(result, at.length, scalars, externals, registers) {
-                    Operand::Block(values) => *block = values,
-                    Operand::Scalar(_) => unreachable!("fixed results vary from point to point"),
-                }
             }
         }
     }
@@ -280,37 +298,49 @@ impl Plan {
         results
     }
 
-    /// Spreads the values along axes that `tape` reads over the points of a block.
-    fn gather(&self, tape: &Tape, inputs: &[Input], moment: &Moment, at: Place, buffers: &mut [Vec<f64>]) {
-        for (value, buffer) in tape.externals.iter().zip(buffers) {
-            let mut stride = 1;
-            for (number, input) in inputs.iter().enumerate() {
-                let Input::Axis(axis) = input else { continue };
-                let line = self.lines.iter().position(|line| line.input == number).expect("every axis has a line");
-                let result = self.lines[line].results.iter().position(|result| result == value);
-                let values = match result {
-                    Some(result) => Some(moment.lines[line][result].as_slice()),
-                    None => (self.program.operations[*value] == Operation::Input(number)).then_some(*axis),
-                };
-                if let Some(values) = values {
-                    spread(values, stride, at, buffer);
-                }
-                stride *= axis.len();
-            }
+    /// Spreads the values along axes over the points of a block.
+    fn gather(&self, feeds: &[Feed], inputs: &[Input], moment: &Moment, at: Place, buffers: &mut Buffers) {
+        for (number, feed) in feeds.iter().enumerate() {
+            let (input, values) = match *feed {
+                Feed::Axis { input } => match inputs[input] {
+                    Input::Axis(values) => (input, values),
+                    _ => continue,
+                },
+                Feed::Line { line, result } => (self.lines[line].input, moment.lines[line][result].as_slice()),
+                Feed::Points(_) | Feed::Fixed(_) => continue,
+            };
+            let before = inputs[..input].iter();
+            let stride = before.map(|input| if let Input::Axis(axis) = input { axis.len() } else { 1 }).product();
+            buffers.spread(number, values, stride, at);
         }
     }
 
-    /// The blocks that `tape` reads: slices of point inputs, buffers for the rest.
-    fn externals<'a>(&self, tape: &Tape, inputs: &[Input<'a>], at: Place, buffers: &'a [Vec<f64>]) -> Vec<&'a [f64]> {
-        let block = |(value, buffer): (&Value, &'a Vec<f64>)| match self.program.operations[*value] {
-            Operation::Input(number) => match inputs[number] {
+    /// The blocks that a tape reads: slices of point inputs, results of the fixed part, buffers for the rest.
+    fn blocks<'a>(
+        &self,
+        feeds: &[Feed],
+        inputs: &[Input<'a>],
+        at: Place,
+        buffers: &'a Buffers,
+        fixed: &[&'a [f64]],
+    ) -> Vec<&'a [f64]> {
+        let block = |(feed, buffer): (&Feed, &'a Vec<f64>)| match *feed {
+            Feed::Fixed(result) => fixed[result],
+            Feed::Points(input) => match inputs[input] {
                 Input::Points(values) => &values[at.start..at.start + at.length],
                 _ => buffer.as_slice(),
             },
-            _ => buffer.as_slice(),
+            Feed::Axis { .. } | Feed::Line { .. } => buffer.as_slice(),
         };
-        tape.externals.iter().zip(buffers).map(block).collect()
+        feeds.iter().zip(&buffers.blocks).map(block).collect()
     }
+}
+
+fn line_feed(lines: &[Line], value: Value) -> Feed {
+    let place = |(line, found): (usize, &Line)| {
+        found.results.iter().position(|result| *result == value).map(|result| Feed::Line { line, result })
+    };
+    lines.iter().enumerate().find_map(place).expect("a value along an axis is a result of its line")
 }
 
 struct Moment {
@@ -325,23 +355,42 @@ struct Place {
     length: usize,
 }
 
-fn buffers(tape: &Tape) -> Vec<Vec<f64>> {
-    vec![vec![0.0; BLOCK]; tape.externals.len()]
+/// Blocks filled from axes.
+struct Buffers {
+    blocks: Vec<Vec<f64>>,
+    /// The number along its axis that a whole block is filled with.
+    filled: Vec<Option<usize>>,
 }
 
-/// The values of an axis at the points of a block: each stands `stride` times, and the axis starts again at its end.
-fn spread(values: &[f64], stride: usize, at: Place, into: &mut [f64]) {
-    let mut done = 0;
-    while done < at.length {
-        let point = at.start + done;
-        let index = point / stride % values.len();
-        if stride == 1 {
-            let run = (values.len() - index).min(at.length - done);
-            into[done..done + run].copy_from_slice(&values[index..index + run]);
-            done += run;
-        } else {
-            let run = (stride - point % stride).min(at.length - done);
-            into[done..done + run].fill(values[index]);
+impl Buffers {
+    fn new(tape: &Tape) -> Buffers {
+        let count = tape.externals.len();
+        Buffers { blocks: vec![vec![0.0; BLOCK]; count], filled: vec![None; count] }
+    }
+
+    /// The values of an axis at the points of a block: each stands `stride` times, and the axis starts again at its end.
+    fn spread(&mut self, number: usize, values: &[f64], stride: usize, at: Place) {
+        let (into, filled) = (&mut self.blocks[number], &mut self.filled[number]);
+        let index = at.start / stride % values.len();
+        if stride - at.start % stride >= at.length {
+            if *filled != Some(index) {
+                into.fill(values[index]);
+                *filled = Some(index);
+            }
+            return;
+        }
+        *filled = None;
+        let mut done = 0;
+        while done < at.length {
+            let point = at.start + done;
+            let index = point / stride % values.len();
+            let run = if stride == 1 { values.len() - index } else { stride - point % stride }.min(at.length - done);
+            let target = &mut into[done..done + run];
+            if stride == 1 {
+                target.copy_from_slice(&values[index..index + run]);
+            } else {
+                target.fill(values[index]);
+            }
             done += run;
         }
     }

@@ -26,15 +26,23 @@ enum Action {
     Negate,
     SquareRoot,
     Power,
-    /// a * b + c, rounded twice.
-    MultiplyAdd,
-    /// c - a * b, rounded twice.
-    SubtractProduct,
-    /// a * b - c, rounded twice.
-    MultiplySubtract,
+    /// Two operations in one pass, each rounded by itself: the outer one on the inner one's result and a third operand.
+    Fused {
+        inner: Simple,
+        outer: Simple,
+        inner_first: bool,
+    },
     /// Sine into the register, cosine into the other one.
     SinCos(usize),
     Call(Function),
+}
+
+/// An operation that can be half of a fused one.
+#[derive(Clone, Copy, Debug, PartialEq)]
+enum Simple {
+    Add,
+    Subtract,
+    Multiply,
 }
 
 #[derive(Clone, Debug)]
@@ -124,6 +132,25 @@ impl Tape {
         }
     }
 
+    /// Number of results.
+    pub(super) fn results(&self) -> usize {
+        self.results.len()
+    }
+
+    /// Result `index`, which varies from point to point, of the block that was run last.
+    pub(super) fn block<'a>(
+        &self,
+        index: usize,
+        length: usize,
+        externals: &[&'a [f64]],
+        registers: &'a Registers,
+    ) -> &'a [f64] {
+        match operand(self.results[index], length, &[f64::NAN], externals, &registers.0) {
+            Operand::Block(values) => values,
+            Operand::Scalar(_) => unreachable!("the caller asks for what varies"),
+        }
+    }
+
     /// Result `index` of the block that was run last.
     pub(super) fn result<'a>(
         &self,
@@ -163,11 +190,38 @@ fn execute(action: Action, into: &mut [f64], operands: [Operand; 3]) {
         Action::Negate => block::unary(into, a, |a| -a),
         Action::SquareRoot => block::unary(into, a, f64::sqrt),
         Action::Power => block::binary(into, a, b, libm::pow),
-        Action::MultiplyAdd => block::ternary(into, operands, |a, b, c| a * b + c),
-        Action::SubtractProduct => block::ternary(into, operands, |a, b, c| c - a * b),
-        Action::MultiplySubtract => block::ternary(into, operands, |a, b, c| a * b - c),
+        Action::Fused { inner, outer, inner_first } => fused(into, inner, outer, inner_first, operands),
         Action::Call(function) => block::call(into, function, operands),
         Action::SinCos(_) => unreachable!("written to two registers by the caller"),
+    }
+}
+
+#[inline(always)]
+fn fused(into: &mut [f64], inner: Simple, outer: Simple, inner_first: bool, operands: [Operand; 3]) {
+    use Simple::{Add, Multiply, Subtract};
+    match (inner, outer, inner_first) {
+        (Multiply, Add, _) => block::ternary(into, operands, |a, b, c| a * b + c),
+        (Multiply, Subtract, true) => block::ternary(into, operands, |a, b, c| a * b - c),
+        (Multiply, Subtract, false) => block::ternary(into, operands, |a, b, c| c - a * b),
+        (Multiply, Multiply, _) => block::ternary(into, operands, |a, b, c| a * b * c),
+        (Add, Add, _) => block::ternary(into, operands, |a, b, c| a + b + c),
+        (Add, Subtract, true) => block::ternary(into, operands, |a, b, c| a + b - c),
+        (Add, Subtract, false) => block::ternary(into, operands, |a, b, c| c - (a + b)),
+        (Add, Multiply, _) => block::ternary(into, operands, |a, b, c| (a + b) * c),
+        (Subtract, Add, _) => block::ternary(into, operands, |a, b, c| a - b + c),
+        (Subtract, Subtract, true) => block::ternary(into, operands, |a, b, c| a - b - c),
+        (Subtract, Subtract, false) => block::ternary(into, operands, |a, b, c| c - (a - b)),
+        (Subtract, Multiply, _) => block::ternary(into, operands, |a, b, c| (a - b) * c),
+    }
+}
+
+/// The parts of an operation that can be half of a fused one.
+fn simple(operation: Operation) -> Option<(Simple, Value, Value)> {
+    match operation {
+        Operation::Add(a, b) => Some((Simple::Add, a, b)),
+        Operation::Subtract(a, b) => Some((Simple::Subtract, a, b)),
+        Operation::Multiply(a, b) => Some((Simple::Multiply, a, b)),
+        _ => None,
     }
 }
 
@@ -178,7 +232,7 @@ struct Assembler<'a> {
     wanted: Vec<bool>,
     /// How often a value is still to be read.
     uses: Vec<usize>,
-    /// Products that are computed by the sum that uses them.
+    /// Values that are computed within the only operation that reads them.
     absorbed: Vec<bool>,
     places: Vec<Option<Source>>,
     free: Vec<usize>,
@@ -217,23 +271,22 @@ impl<'a> Assembler<'a> {
             free: Vec::new(),
             tape: Tape::default(),
         };
-        assembler.absorb_products();
+        assembler.absorb();
         assembler
     }
 
-    /// Marks products that only one sum or difference reads.
-    fn absorb_products(&mut self) {
-        for value in 0..self.program.operations.len() {
-            let (a, b) = match self.program.operations[value] {
-                Operation::Add(a, b) | Operation::Subtract(a, b) if self.wanted[value] && a != b => (a, b),
-                _ => continue,
+    /// Marks operations that only one other reads, so that both are done in one pass: every pass saved is a load and a store.
+    fn absorb(&mut self) {
+        let mut fused = vec![false; self.absorbed.len()];
+        for value in (0..fused.len()).filter(|value| self.wanted[*value]).collect::<Vec<_>>() {
+            let Some((_, a, b)) = simple(self.program.operations[value]).filter(|(_, a, b)| a != b) else { continue };
+            let fits = |operand: &Value| {
+                let free = self.wanted[*operand] && self.uses[*operand] == 1 && !fused[*operand];
+                free && simple(self.program.operations[*operand]).is_some()
             };
-            let fits = |operand: Value| {
-                let product = matches!(self.program.operations[operand], Operation::Multiply(..));
-                product && self.wanted[operand] && self.uses[operand] == 1
-            };
-            if let Some(product) = [b, a].into_iter().find(|operand| fits(*operand)) {
-                self.absorbed[product] = true;
+            if let Some(inner) = [b, a].into_iter().find(fits) {
+                self.absorbed[inner] = true;
+                fused[value] = true;
             }
         }
     }
@@ -271,24 +324,21 @@ impl<'a> Assembler<'a> {
         }
     }
 
-    /// What to do and the operands to read, absorbed products opened.
+    /// What to do and the operands to read, absorbed operations opened.
     fn action(&self, value: Value) -> (Action, Vec<Value>) {
         let operation = self.program.operations[value];
-        let product = |operand: Value| match self.program.operations[operand] {
-            Operation::Multiply(a, b) if self.absorbed[operand] => Some((a, b)),
-            _ => None,
-        };
+        if let Some((outer, a, b)) = simple(operation) {
+            let absorbed = |operand: Value| simple(self.program.operations[operand]).filter(|_| self.absorbed[operand]);
+            if let Some((inner, x, y)) = absorbed(b) {
+                return (Action::Fused { inner, outer, inner_first: false }, vec![x, y, a]);
+            }
+            if let Some((inner, x, y)) = absorbed(a) {
+                return (Action::Fused { inner, outer, inner_first: true }, vec![x, y, b]);
+            }
+        }
         let action = match operation {
-            Operation::Add(a, b) => match (product(b), product(a)) {
-                (Some((x, y)), _) => return (Action::MultiplyAdd, vec![x, y, a]),
-                (None, Some((x, y))) => return (Action::MultiplyAdd, vec![x, y, b]),
-                _ => Action::Add,
-            },
-            Operation::Subtract(a, b) => match (product(b), product(a)) {
-                (Some((x, y)), _) => return (Action::SubtractProduct, vec![x, y, a]),
-                (None, Some((x, y))) => return (Action::MultiplySubtract, vec![x, y, b]),
-                _ => Action::Subtract,
-            },
+            Operation::Add(..) => Action::Add,
+            Operation::Subtract(..) => Action::Subtract,
             Operation::Multiply(..) => Action::Multiply,
             Operation::Divide(..) => Action::Divide,
             Operation::Negate(_) => Action::Negate,
