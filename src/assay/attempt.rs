@@ -115,15 +115,17 @@ fn both<R>(
 }
 
 fn judged(studies: Vec<StudyRecord>, judge: impl Fn(&StudyRecord) -> Judgement) -> Attempt {
-    let judgement = |study: &StudyRecord| {
-        let mut judgement = judge(study);
-        if study.id.ends_with("-mirrored") {
-            judgement.reason = format!("with the velocity turned round: {}", judgement.reason);
+    let mut judgements: Vec<Judgement> = studies.iter().map(judge).collect();
+    if let [first, twin] = judgements.as_mut_slice() {
+        match first.reason == twin.reason {
+            true => {
+                first.reason += "; the same with the velocity turned round";
+                twin.reason.clone_from(&first.reason);
+            }
+            false => twin.reason = format!("with the velocity turned round: {}", twin.reason),
         }
-        judgement
-    };
-    let judgement = Judgement::all(studies.iter().map(judgement).collect());
-    Attempt { studies, judgement }
+    }
+    Attempt { studies, judgement: Judgement::all(judgements) }
 }
 
 fn mirrored_order(request: &OrderRequest) -> Option<OrderRequest> {

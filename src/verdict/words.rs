@@ -40,13 +40,9 @@ pub fn claimed(kind: &ClaimKind) -> Option<Claimed> {
 
 fn order(claim: &OrderClaim) -> String {
     let of = claim.field.as_ref().map_or_else(String::new, |field| format!(" of `{field}`"));
-    format!(
-        "order {} in {}{of} on {}, refined in {}",
-        claim.expect,
-        norm(&claim.norm),
-        claim.request.problem.name(),
-        claim.request.refine.word()
-    )
+    let problem = &claim.request.problem;
+    let refined = if problem.is_steady() { "space" } else { claim.request.refine.word() };
+    format!("order {} in {}{of} on {}, refined in {refined}", claim.expect, norm(&claim.norm), problem.name())
 }
 
 /// A norm as it is written in papers.
