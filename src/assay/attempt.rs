@@ -4,7 +4,10 @@
 //! offers both signs, every study is made twice, the second time with the velocity turned round, and a claim stands only if both
 //! uphold it.
 
-use crate::claims::{InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim, StabilityRequest};
+use crate::claims::{
+    InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim,
+    StabilityRequest,
+};
 use crate::host::Session;
 use crate::record::{OrderRecord, Parameters, Study, StudyRecord};
 use crate::studies::setting::generic_parameters;

@@ -5,7 +5,9 @@ use serde::Serialize;
 use super::clean::visible;
 use super::invariants;
 use super::words;
-use crate::record::{ClaimedSymbol, ModesRecord, Observed, OrderRecord, Parameters, StabilityRecord, Study, StudyRecord};
+use crate::record::{
+    ClaimedSymbol, ModesRecord, Observed, OrderRecord, Parameters, StabilityRecord, Study, StudyRecord,
+};
 
 /// A piece of a statement. Numbers stay numbers until an output rounds them for reading.
 #[derive(Clone, Debug, PartialEq, Serialize)]
