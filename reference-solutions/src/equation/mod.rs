@@ -2,6 +2,19 @@
 //!
 //! An equation is written `residual(solution) = S`. Deriving the source of a manufactured solution is evaluating the residual of
 //! its expressions. Families are one file each; a person's own equation ([`defined`]) is text and works the same way.
+//!
+//! ```
+//! use gridassay_reference::equation::{Equation, Parameters, Solution};
+//! use gridassay_reference::expression::{Expression, Scope};
+//!
+//! // u = x^2 t in u_t = (nu u_x)_x + S with nu = 3 needs S = x^2 - 6 t.
+//! let u = Expression::parse("x^2*t", &Scope::new(["x", "t"])).unwrap();
+//! let parameters: Parameters = [("diffusivity".to_string(), vec![3.into()])].into();
+//! let solution: Solution = [("u".to_string(), u)].into();
+//! let sources = Equation::named("diffusion")?.source_terms(1, &parameters, &solution)?;
+//! assert_eq!(sources[0].1.evaluate(&[("x", 2.0), ("t", 0.5)]), Ok(1.0));
+//! # Ok::<(), gridassay_reference::equation::EquationError>(())
+//! ```
 
 mod acoustics;
 mod burgers;

@@ -98,10 +98,8 @@ fn extrapolated<const N: usize>(state: &[f64; N], step: f64) -> [f64; N] {
         for column in (0..row).rev() {
             let ratio = (row + 1) as f64 / (column + 1) as f64;
             let factor = 1.0 / (ratio * ratio - 1.0);
-            for index in 0..N {
-                table[column][index] =
-                    table[column + 1][index] + factor * (table[column + 1][index] - table[column][index]);
-            }
+            let (finer, coarser) = (table[column + 1], table[column]);
+            table[column] = std::array::from_fn(|i| finer[i] + factor * (finer[i] - coarser[i]));
         }
     }
     table[0]

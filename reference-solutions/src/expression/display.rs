@@ -93,17 +93,18 @@ fn at_least(expression: &Expression, needed: Strength) -> String {
     if strength < needed { format!("({text})") } else { text }
 }
 
+/// What is added first, what is subtracted last: `x - t`, not `-t + x`.
 fn sum(constant: Number, terms: &[(Number, Expression)]) -> String {
-    let mut result = if constant.is_zero() { String::new() } else { constant.to_string() };
-    for (coefficient, term) in terms {
-        let size = if coefficient.is_negative() { coefficient.negated() } else { *coefficient };
-        let piece = at_least(&term.scaled(size), Strength::Product);
-        match (result.is_empty(), coefficient.is_negative()) {
-            (true, true) => result = format!("-{piece}"),
-            (true, false) => result = piece,
-            (false, true) => result += &format!(" - {piece}"),
-            (false, false) => result += &format!(" + {piece}"),
-        }
+    let size = |number: Number| if number.is_negative() { number.negated() } else { number };
+    let constant_piece = (!constant.is_zero()).then(|| (constant.is_negative(), size(constant).to_string()));
+    let term_pieces = terms.iter().map(|(coefficient, term)| {
+        (coefficient.is_negative(), at_least(&term.scaled(size(*coefficient)), Strength::Product))
+    });
+    let (subtracted, added): (Vec<_>, Vec<_>) =
+        constant_piece.into_iter().chain(term_pieces).partition(|(minus, _)| *minus);
+    let mut result = added.into_iter().map(|(_, piece)| piece).collect::<Vec<_>>().join(" + ");
+    for (_, piece) in subtracted {
+        result += &if result.is_empty() { format!("-{piece}") } else { format!(" - {piece}") };
     }
     result
 }

@@ -3,6 +3,16 @@
 //! An [`Expression`] is an immutable graph that shares its parts. Its constructors keep a normal form: sums collect like terms,
 //! products collect equal bases, constants are folded exactly, so that differentiation needs no clean-up afterwards. Products of
 //! sums are never multiplied out: an expression does not grow by being simplified.
+//!
+//! ```
+//! use gridassay_reference::expression::{Expression, Scope};
+//!
+//! let scope = Scope::new(["x", "nu", "t"]);
+//! let u = Expression::parse("sin(2*pi*x)*exp(-nu*t)", &scope)?;
+//! assert_eq!(u.derivative("t").to_string(), "-nu*exp(-nu*t)*sin(2*pi*x)");
+//! assert_eq!(u.evaluate(&[("x", 0.25), ("nu", 0.1), ("t", 0.0)]), Ok(1.0));
+//! # Ok::<(), gridassay_reference::expression::ParseError>(())
+//! ```
 
 mod build;
 mod compensated;

@@ -4,12 +4,18 @@ use super::gauss::gauss_legendre;
 
 /// Points along a direction, from rule to rule. A result is kept when it agrees with the rule before.
 const ORDERS: [usize; 5] = [3, 5, 8, 11, 15];
-/// Two rules agree when they differ by less than this beside the largest value. The better of the two is then far closer.
+/// Two rules agree when they differ by less than this beside the largest value.
 const AGREEMENT: f64 = 3e-15;
+/// For a function that is smooth over the box, rules with a and b points have errors e and e^(b/a): the better of two is good to
+/// [`AGREEMENT`] where they differ by its power a/b. This fraction of it is asked for. Boxes that had to be halved may hold
+/// a kink, and are given no such credit.
+const CREDIT: f64 = 0.01;
 /// Points evaluated at once.
 const BLOCK: usize = 1 << 16;
 /// How often a box is halved, by number of directions.
-const DEEPEST: [u32; 4] = [0, 48, 9, 4];
+const DEEPEST: [u32; 4] = [0, 48, 7, 4];
+/// Beside the largest value: where two rules differ by more than this, a jump is near, and halving is cheaper than a better rule.
+const HOPELESS: f64 = 1e-2;
 
 /// One coordinate range a direction. A direction in which the bounds coincide is not integrated over.
 type Bounds = [[f64; 2]; 3];
@@ -54,9 +60,10 @@ pub(super) fn average<E>(
         for (piece, estimate) in settle(pending, dimensions, integrand, &mut largest)? {
             let directions = directions(&piece.bounds, dimensions);
             let doubt = piece.share * estimate.difference;
-            if doubt <= AGREEMENT * largest || piece.depth >= DEEPEST[directions] {
+            let settled = doubt <= estimate.allowed * largest;
+            if settled || piece.depth >= DEEPEST[directions] {
                 out[piece.owner] += piece.share * estimate.value;
-                let uncertainty = if doubt <= AGREEMENT * largest { 0.0 } else { doubt / largest };
+                let uncertainty = if settled { 0.0 } else { doubt / largest };
                 if uncertainty > accuracy.uncertainty || uncertainty.is_nan() {
                     accuracy = Accuracy { uncertainty, worst: piece.owner };
                 }
@@ -117,7 +124,14 @@ fn largest_at_centres<E>(pieces: &[Piece], dimensions: usize, integrand: &Integr
 #[derive(Clone, Copy)]
 struct Estimate {
     value: f64,
+    /// From the rule before.
     difference: f64,
+    /// Difference beside the largest value at which the estimate is good enough.
+    allowed: f64,
+}
+
+impl Estimate {
+    const NONE: Self = Self { value: f64::NAN, difference: f64::INFINITY, allowed: AGREEMENT };
 }
 
 /// Goes through the rules until each piece has settled or the rules are used up.
@@ -128,18 +142,24 @@ fn settle<E>(
     largest: &mut f64,
 ) -> Result<Vec<(Piece, Estimate)>, E> {
     let mut settled: Vec<(Piece, Estimate)> = Vec::with_capacity(pieces.len());
-    let mut open: Vec<(Piece, Estimate)> =
-        pieces.into_iter().map(|piece| (piece, Estimate { value: f64::NAN, difference: f64::INFINITY })).collect();
+    let mut open: Vec<(Piece, Estimate)> = pieces.into_iter().map(|piece| (piece, Estimate::NONE)).collect();
     for (round, order) in ORDERS.into_iter().enumerate() {
         apply_rule(&mut open, order, dimensions, integrand, largest)?;
-        if round == 0 {
-            // A piece without extent is a point: the first value is its average.
-            for (piece, estimate) in &mut open {
-                estimate.difference = if directions(&piece.bounds, dimensions) == 0 { 0.0 } else { f64::INFINITY };
+        for (piece, estimate) in &mut open {
+            let points = directions(&piece.bounds, dimensions) == 0;
+            match round {
+                // A piece without extent is a point: the first value is its average.
+                0 => estimate.difference = if points { 0.0 } else { f64::INFINITY },
+                _ if piece.depth > 0 => {}
+                _ => estimate.allowed = CREDIT * AGREEMENT.powf(ORDERS[round - 1] as f64 / order as f64),
             }
         }
-        let agrees = |(piece, estimate): &(Piece, Estimate)| piece.share * estimate.difference <= AGREEMENT * *largest;
-        let (done, rest): (Vec<_>, Vec<_>) = open.into_iter().partition(agrees);
+        let done = |(piece, estimate): &(Piece, Estimate)| {
+            let agrees = piece.share * estimate.difference <= estimate.allowed * *largest;
+            let hopeless = round > 0 && estimate.difference > HOPELESS * *largest;
+            agrees || hopeless
+        };
+        let (done, rest): (Vec<_>, Vec<_>) = open.into_iter().partition(done);
         settled.extend(done);
         open = rest;
         if open.is_empty() {
@@ -179,7 +199,8 @@ fn apply_rule<E>(
                 *largest = largest.max(value.abs());
                 sum += value * weight;
             }
-            *estimate = Estimate { value: sum, difference: (sum - estimate.value).abs() };
+            estimate.difference = (sum - estimate.value).abs();
+            estimate.value = sum;
             first = last;
         }
         begin = end;

@@ -15,7 +15,7 @@ const SYMBOLS: [(&str, &str); 19] = [
     ("velocity", "V"),
     ("momentum", "m"),
     ("energy", "E"),
-    ("total_enthalpy", "\\rho H"),
+    ("total_enthalpy", "(\\rho H)"),
     ("stress", "\\tau"),
     ("depth", "h"),
     ("discharge", "q"),
@@ -122,18 +122,18 @@ fn number(value: Number) -> (String, Strength) {
     (text, strength)
 }
 
+/// What is added first, what is subtracted last.
 fn sum(constant: Number, terms: &[(Number, Expression)]) -> String {
-    let mut result = if constant.is_zero() { String::new() } else { number(constant).0 };
-    for (coefficient, term) in terms {
-        let size = if coefficient.is_negative() { coefficient.negated() } else { *coefficient };
-        let piece = at_least(&term.scaled(size), Strength::Product);
-        let sign = match (result.is_empty(), coefficient.is_negative()) {
-            (true, false) => "",
-            (true, true) => "-",
-            (false, false) => " + ",
-            (false, true) => " - ",
-        };
-        result += &format!("{sign}{piece}");
+    let size = |value: Number| if value.is_negative() { value.negated() } else { value };
+    let constant_piece = (!constant.is_zero()).then(|| (constant.is_negative(), number(size(constant)).0));
+    let term_pieces = terms.iter().map(|(coefficient, term)| {
+        (coefficient.is_negative(), at_least(&term.scaled(size(*coefficient)), Strength::Product))
+    });
+    let (subtracted, added): (Vec<_>, Vec<_>) =
+        constant_piece.into_iter().chain(term_pieces).partition(|(minus, _)| *minus);
+    let mut result = added.into_iter().map(|(_, piece)| piece).collect::<Vec<_>>().join(" + ");
+    for (_, piece) in subtracted {
+        result += &if result.is_empty() { format!("-{piece}") } else { format!(" - {piece}") };
     }
     result
 }
@@ -142,21 +142,29 @@ fn product(coefficient: Number, factors: &[(Expression, Number)]) -> (String, St
     if coefficient.is_negative() {
         return (format!("-{}", product(coefficient.negated(), factors).0), Strength::Sum);
     }
-    let (mut above, mut below) = (Vec::new(), Vec::new());
+    let (mut above, mut below, mut denominator) = (Vec::new(), Vec::new(), String::new());
     match coefficient {
         _ if coefficient.is_one() => {}
         Number::Fraction(n, d) if coefficient.to_string().contains('/') => {
             above.extend((n != 1).then(|| n.to_string()));
-            below.push(d.to_string());
+            denominator = d.to_string();
         }
         _ => above.push(number(coefficient).0),
     }
     for (base, exponent) in factors {
         match exponent.is_negative() {
-            true => below.push(factor(base, exponent.negated())),
+            true => below.push((base, exponent.negated())),
             false => above.push(factor(base, *exponent)),
         }
     }
+    // A denominator that is one factor needs no parentheses.
+    let below: Vec<String> = match below.as_slice() {
+        [(base, exponent)] if denominator.is_empty() && exponent.is_one() => vec![text(base).0],
+        many => {
+            let factors = many.iter().map(|(base, exponent)| factor(base, *exponent));
+            std::iter::once(denominator).filter(|number| !number.is_empty()).chain(factors).collect()
+        }
+    };
     match (above.as_slice(), below.as_slice()) {
         ([one], []) => (one.clone(), Strength::Power),
         (many, []) => (many.join("\\,"), Strength::Product),
