@@ -47,6 +47,15 @@ fn run(source: &SchemeSource) -> Result<Session, HostError> {
     Ok(session)
 }
 
+/// Whether the log holds `text`, now or soon: it is read beside the conversation, not in step with it.
+fn logged(session: &Session, text: &str) -> bool {
+    let until = Instant::now() + Duration::from_secs(10);
+    while !session.stderr_tail().contains(text) && Instant::now() < until {
+        std::thread::sleep(Duration::from_millis(5));
+    }
+    session.stderr_tail().contains(text)
+}
+
 /// Limits that a fault meets soon; the start is long, since a busy machine starts an interpreter slowly.
 fn limits() -> Limits {
     Limits {
@@ -298,7 +307,7 @@ fn every_fault_of_a_library_has_its_sentence() {
         ("SEGFAULT", &["signal 11 (SIGSEGV", "outside an array"]),
         ("EXIT", &["left with exit status 4"]),
         ("STACK", &["signal", "stack"]),
-        ("CLOSES_ALL", &["left with exit status"]),
+        ("CLOSES_ALL", &["was ended by signal 6 (SIGABRT, abort)"]),
     ];
     for (fault, words) in cases {
         expect(fault, &c_source(fault), words, None);
@@ -321,7 +330,7 @@ fn a_library_that_says_no_is_no_fault() {
         }
     }
     let session = run(&c_source("WRITE_TO_1")).unwrap();
-    assert!(session.stderr_tail().contains("what a library writes goes to the log"));
+    assert!(logged(&session, "what a library writes goes to the log"));
 }
 
 #[test]
@@ -346,9 +355,9 @@ fn every_fault_of_a_plugin_crate_has_its_sentence() {
         expect(fault, &source(fault, limits()), words, None);
     }
     let small = source("faulty-allocates", Limits { memory: Some(2 << 30), ..limits() });
-    expect("allocates", &small, &["signal 6", "memory limit is 2147483648 bytes", "memory allocation of"], None);
+    expect("allocates", &small, &["signal 6", "memory limit is 2147483648 bytes"], None);
     let session = run(&source("faulty-prints", limits())).unwrap();
-    assert!(session.stderr_tail().contains("what a library prints goes to the log"));
+    assert!(logged(&session, "what a library prints goes to the log"));
     match run(&source("faulty-lengthens", limits())) {
         Err(HostError::Refused(SchemeError::Failed(message))) => assert!(message.contains("[9]"), "{message}"),
         Err(error) => panic!("{error}"),

@@ -45,9 +45,13 @@ pub fn rust_executable() -> String {
     let build = || {
         let folder = schemes().join("rust");
         let cargo = std::env::var_os("CARGO").unwrap_or_else(|| "cargo".into());
-        let status = Command::new(cargo).args(["build", "--release", "--quiet"]).current_dir(&folder).status().unwrap();
+        // Named, since CARGO_TARGET_DIR would send what is built elsewhere.
+        let target = folder.join("../../../target/test-schemes");
+        let mut build = Command::new(cargo);
+        build.args(["build", "--release", "--quiet", "--target-dir"]).arg(&target).current_dir(&folder);
+        let status = build.status().unwrap();
         assert!(status.success(), "the test schemes do not build");
-        let built = folder.join("../../../target/test-schemes/release/serve").canonicalize().unwrap();
+        let built = target.join("release/serve").canonicalize().unwrap();
         built.to_str().unwrap().to_owned()
     };
     BUILT.get_or_init(build).clone()
