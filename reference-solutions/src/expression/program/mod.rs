@@ -5,6 +5,7 @@
 //! depends on one coordinate once a line, and the rest in blocks by loops that the compiler vectorises.
 
 mod block;
+mod buffers;
 mod lower;
 mod plan;
 mod share;

@@ -1,6 +1,7 @@
 //! A program fitted to its inputs: what is computed once, once a line, once for all times, and once a point.
 
 use super::block::Operand;
+use super::buffers::{Buffers, Place};
 use super::tape::{BLOCK, Registers, Tape};
 use super::{Operation, Program, Value};
 
@@ -71,6 +72,9 @@ struct Line {
     results: Vec<Value>,
     tape: Tape,
 }
+
+/// Times whose values along axes are kept at once: they take some hundred kilobytes each on a grid with lines of 1000.
+const TIMES_AT_ONCE: usize = 8;
 
 /// Classes of values for given kinds.
 struct Classes<'a> {
@@ -182,7 +186,7 @@ impl Plan {
 
     /// Computes all outputs at all points, in blocks, on one thread.
     ///
-    /// Memory beyond the outputs: a few kilobytes a register, and for Cartesian grids the values along each axis.
+    /// Memory beyond the outputs: four kilobytes a register, and for Cartesian grids the values along each axis.
     ///
     /// # Panics
     /// If the inputs are not of the kinds that the plan was made for, or lengths do not fit: every [`Input::Points`] and every
@@ -202,6 +206,13 @@ impl Plan {
     /// As [`Plan::evaluate`].
     pub fn evaluate_at_times(&self, inputs: &[Input], times: &[f64], outputs: &mut [&mut [f64]]) {
         let points = self.check(inputs, times, outputs);
+        let count = self.program.outputs.len().max(1);
+        for (times, outputs) in times.chunks(TIMES_AT_ONCE).zip(outputs.chunks_mut(TIMES_AT_ONCE * count)) {
+            self.evaluate_together(inputs, times, outputs, points);
+        }
+    }
+
+    fn evaluate_together(&self, inputs: &[Input], times: &[f64], outputs: &mut [&mut [f64]], points: usize) {
         let moments: Vec<Moment> = times.iter().map(|time| self.moment(inputs, *time)).collect();
         let Some(first) = moments.first() else { return };
         let mut fixed_registers = self.fixed.registers();
@@ -347,51 +358,4 @@ struct Moment {
     scalars: Vec<f64>,
     /// By line and result.
     lines: Vec<Vec<Vec<f64>>>,
-}
-
-#[derive(Clone, Copy)]
-struct Place {
-    start: usize,
-    length: usize,
-}
-
-/// Blocks filled from axes.
-struct Buffers {
-    blocks: Vec<Vec<f64>>,
-    /// The number along its axis that a whole block is filled with.
-    filled: Vec<Option<usize>>,
-}
-
-impl Buffers {
-    fn new(tape: &Tape) -> Buffers {
-        let count = tape.externals.len();
-        Buffers { blocks: vec![vec![0.0; BLOCK]; count], filled: vec![None; count] }
-    }
-
-    /// The values of an axis at the points of a block: each stands `stride` times, and the axis starts again at its end.
-    fn spread(&mut self, number: usize, values: &[f64], stride: usize, at: Place) {
-        let (into, filled) = (&mut self.blocks[number], &mut self.filled[number]);
-        let index = at.start / stride % values.len();
-        if stride - at.start % stride >= at.length {
-            if *filled != Some(index) {
-                into.fill(values[index]);
-                *filled = Some(index);
-            }
-            return;
-        }
-        *filled = None;
-        let mut done = 0;
-        while done < at.length {
-            let point = at.start + done;
-            let index = point / stride % values.len();
-            let run = if stride == 1 { values.len() - index } else { stride - point % stride }.min(at.length - done);
-            let target = &mut into[done..done + run];
-            if stride == 1 {
-                target.copy_from_slice(&values[index..index + run]);
-            } else {
-                target.fill(values[index]);
-            }
-            done += run;
-        }
-    }
 }

@@ -59,7 +59,8 @@ fn blocks_agree_with_single_points() {
 fn cartesian_grids_and_times_give_the_same_bits_as_points() {
     let all = expressions();
     let program = Program::new(&all, &["x", "y", "t", "a"]).unwrap();
-    let times = [0.1, 0.45, -2.0];
+    // More times than are kept at once.
+    let times = [0.1, 0.45, -2.0, 0.0, 1.0, 1.1, 1.2, 1.3, 1.4, 1.5, 3.0];
     for cells in [[300, 7], [5, 40], [1, 3], [128, 2]] {
         let [x, y] = grid(cells);
         let points = cells[0] * cells[1];
