@@ -72,9 +72,10 @@ impl Linearity {
             ),
             ("depends on the time (a later step differs by", self.time),
         ];
+        // NaN fails too.
         let fails = |(words, deviation): &(&str, f64)| {
-            // Written so that NaN fails.
-            (!(*deviation <= self.allowed)).then(|| format!("{words} {deviation:.1e} of the largest value)"))
+            let holds = *deviation <= self.allowed;
+            (!holds).then(|| format!("{words} {deviation:.1e} of the largest value)"))
         };
         let failing: Vec<String> = parts.iter().filter_map(fails).collect();
         format!("the scheme {}", failing.join(", "))

@@ -78,7 +78,7 @@ fn refuses_parameters_that_do_not_fit() {
     let problem = Problem::named("travelling-decaying-sine").unwrap();
     let refusal = |name: &str, values: &[f64]| {
         let error = problem.with_parameters(&BTreeMap::from([(name.to_string(), values.to_vec())]));
-        error.err().expect("it must be refused").to_string()
+        error.expect_err("it must be refused").to_string()
     };
     assert!(refusal("diffusivity", &[-0.1]).contains("ill-posed"), "{}", refusal("diffusivity", &[-0.1]));
     assert!(refusal("velocity", &[1.0, 2.0]).contains("2 values given, but it has 1"));
@@ -122,7 +122,7 @@ final = 0.37
 
 fn refusal(from: &str, to: &str) -> String {
     assert!(FILE.contains(from), "{from}");
-    Problem::from_text("own.toml", &FILE.replace(from, to)).err().expect("it must be refused").to_string()
+    Problem::from_text("own.toml", &FILE.replace(from, to)).expect_err("it must be refused").to_string()
 }
 
 /// A change of one part in ten thousand of the decay, of the speed, or of a sign is seen.

@@ -51,11 +51,10 @@ pub fn problem_text(problem: &Problem) -> String {
     for (name, text) in problem.formulas() {
         line(if problem.fields().contains(&name) { "solution" } else { "where" }, &format!("{name} = {text}"));
     }
-    let axes = ["x", "y", "z"];
-    for axis in 0..problem.dimensions() {
-        let [lower, upper] = problem.boundaries()[axis];
-        let kinds = format!("{} and {}", boundary_word(lower), boundary_word(upper));
-        line("domain", &format!("{} from {} to {}: {kinds}", axes[axis], problem.lower()[axis], problem.upper()[axis]));
+    let ends = problem.lower().iter().zip(problem.upper()).zip(problem.boundaries());
+    for (name, ((from, to), [lower, upper])) in ["x", "y", "z"].iter().zip(ends) {
+        let kinds = format!("{} and {}", boundary_word(*lower), boundary_word(*upper));
+        line("domain", &format!("{name} from {from} to {to}: {kinds}"));
     }
     match problem.is_steady() {
         true => line("time", "steady"),

@@ -54,8 +54,9 @@ pub fn compare(formula: &str, record: &ModesRecord) -> Result<ClaimedSymbol, Sto
             compared.largest_difference = Some(difference);
             compared.worst_theta = Some(theta);
         }
-        // Written so that a difference that is NaN disagrees.
-        compared.disagreeing += usize::from(!(difference <= allowed));
+        // A difference that is NaN disagrees.
+        let agrees = difference <= allowed;
+        compared.disagreeing += usize::from(!agrees);
     }
     if compared.disagreeing > 0 {
         compared.neighbour = neighbour(record, &claimed);

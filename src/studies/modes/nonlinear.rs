@@ -64,7 +64,8 @@ fn response(
     let (before, after) = (spectrum(&before), spectrum(&after[0][0]));
     let factor = after[mode] / before[mode];
     let energy = |spectrum: &[Complex64]| spectrum.iter().map(|value| value.norm_sqr()).sum::<f64>();
-    let own = after[mode].norm_sqr() + if 2 * mode % cells == 0 { 0.0 } else { after[cells - mode].norm_sqr() };
+    let own =
+        after[mode].norm_sqr() + if (2 * mode).is_multiple_of(cells) { 0.0 } else { after[cells - mode].norm_sqr() };
     let leaked = (energy(&after) - own).max(0.0) / energy(&before);
     Ok((factor, leaked))
 }

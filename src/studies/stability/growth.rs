@@ -150,7 +150,7 @@ impl<'a> Growth<'a> {
         }
         self.used_all_grids = true;
         let mut worst = sampled(&SampledSymbol::from_responses(&responses), self.noise)?;
-        for cells in self.cells[1..].to_vec() {
+        for cells in self.cells.clone().into_iter().skip(1) {
             let other = sampled(&SampledSymbol::from_responses(&self.responses(cells, value)?), self.noise)?;
             if other.excess.value - other.excess.uncertainty > worst.excess.value - worst.excess.uncertainty {
                 worst = other;
