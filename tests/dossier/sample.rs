@@ -62,6 +62,9 @@ pub fn modes(scheme: &Scheme, cells: usize, c: f64) -> ModesRecord {
             phase_speed_ratio: ratio.and_then(finite),
             group_speed_ratio: None,
             points_per_wavelength: (theta != 0.0).then(|| TAU / theta.abs()),
+            damping_error_per_period: None,
+            phase_error_per_period: None,
+            share: None,
             leaked: None,
         }
     };
