@@ -260,3 +260,12 @@ fn a_nonlinear_scheme_has_an_approximate_dispersion_relation_and_no_factor_is_cl
     assert_eq!(record.linear, Some(false));
     assert!(record.modes.iter().any(|mode| mode.leaked.is_some_and(|leaked| leaked > 1e-6)), "short waves leak");
 }
+
+#[test]
+fn bounded_runs_of_a_nonlinear_scheme_uphold_no_stable_range() {
+    let (status, results, said) = judge(
+        "nonlinear-stability",
+        "[scheme]\nclassical = \"muscl-minmod\"\n[[stability]]\nequation = \"advection\"\ncourant_up_to = 0.5\n",
+    );
+    assert_eq!((status, verdicts(&results.unwrap())), (3, vec![Verdict::Undecided]), "{said}");
+}

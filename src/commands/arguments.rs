@@ -50,6 +50,17 @@ impl Scheme {
     }
 }
 
+/// A finite number above zero.
+///
+/// # Errors
+/// What it is instead.
+pub fn positive(text: &str) -> Result<f64, String> {
+    match text.trim().parse::<f64>() {
+        Ok(number) if number.is_finite() && number > 0.0 => Ok(number),
+        _ => Err("it must be a finite number above zero".to_owned()),
+    }
+}
+
 /// Parameters of the equation.
 #[derive(Clone, Debug, Args)]
 pub struct ParameterArguments {

@@ -2,7 +2,7 @@
 
 use clap::Args;
 
-use super::arguments::{Output, ParameterArguments, Scheme};
+use super::arguments::{Output, ParameterArguments, Scheme, positive};
 use super::outcome::Outcome;
 use super::single;
 use crate::claims::InvariantsRequest;
@@ -20,10 +20,10 @@ pub struct Invariants {
     #[arg(long, value_delimiter = ',')]
     cells: Option<Vec<usize>>,
     /// Courant number of the runs.
-    #[arg(long)]
+    #[arg(long, value_parser = positive)]
     courant: Option<f64>,
     /// Diffusion number of the runs.
-    #[arg(long)]
+    #[arg(long, value_parser = positive)]
     diffusion_number: Option<f64>,
     #[command(flatten)]
     parameters: ParameterArguments,

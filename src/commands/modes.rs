@@ -2,7 +2,7 @@
 
 use clap::Args;
 
-use super::arguments::{Output, ParameterArguments, Scheme};
+use super::arguments::{Output, ParameterArguments, Scheme, positive};
 use super::outcome::Outcome;
 use super::single;
 use crate::claims::ModesRequest;
@@ -21,10 +21,10 @@ pub struct Modes {
     #[arg(long, value_delimiter = ',', default_value = "64")]
     cells: Vec<usize>,
     /// Courant number a dt / h.
-    #[arg(long)]
+    #[arg(long, value_parser = positive)]
     courant: Option<f64>,
     /// Diffusion number nu dt / h^2.
-    #[arg(long)]
+    #[arg(long, value_parser = positive)]
     diffusion_number: Option<f64>,
     #[command(flatten)]
     parameters: ParameterArguments,
@@ -37,6 +37,9 @@ pub struct Modes {
 impl Modes {
     /// Measures and shows.
     pub fn run(self) -> Result<Outcome, Box<dyn std::error::Error>> {
+        if self.courant.is_none() && self.diffusion_number.is_none() {
+            return Err("a study of modes needs a step: give --courant or --diffusion-number, or both".into());
+        }
         let request = ModesRequest {
             equation: self.equation,
             parameters: self.parameters.parse()?,

@@ -5,7 +5,7 @@ use std::path::Path;
 use clap::{Args, ValueEnum};
 use gridassay_reference::problem::Problem;
 
-use super::arguments::{Output, ParameterArguments, Scheme};
+use super::arguments::{Output, ParameterArguments, Scheme, positive};
 use super::outcome::Outcome;
 use super::single;
 use crate::claims::{
@@ -32,7 +32,7 @@ pub struct Order {
     #[arg(long, value_enum, default_value = "space-time")]
     refine: Refine,
     /// The step falls as this power of the cell width.
-    #[arg(long)]
+    #[arg(long, value_parser = positive)]
     step_power: Option<f64>,
     /// Where the run ends; the problem's own final time without it.
     #[arg(long)]
@@ -41,7 +41,7 @@ pub struct Order {
     #[arg(long, default_value = "l2", value_parser = ["l1", "l2", "linf"])]
     norm: String,
     /// A claimed order: with it the study is judged.
-    #[arg(long)]
+    #[arg(long, value_parser = positive)]
     expect: Option<f64>,
     #[command(flatten)]
     parameters: ParameterArguments,
@@ -55,13 +55,13 @@ pub struct Order {
 #[group(multiple = false)]
 struct StepArguments {
     /// Courant number on the coarsest level.
-    #[arg(long)]
+    #[arg(long, value_parser = positive)]
     courant: Option<f64>,
     /// Diffusion number on the coarsest level.
-    #[arg(long)]
+    #[arg(long, value_parser = positive)]
     diffusion_number: Option<f64>,
     /// The step on the coarsest level.
-    #[arg(long)]
+    #[arg(long, value_parser = positive)]
     step: Option<f64>,
 }
 

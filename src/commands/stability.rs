@@ -2,7 +2,7 @@
 
 use clap::Args;
 
-use super::arguments::{Output, ParameterArguments, Scheme};
+use super::arguments::{Output, ParameterArguments, Scheme, positive};
 use super::outcome::Outcome;
 use super::single;
 use crate::claims::StabilityRequest;
@@ -20,10 +20,10 @@ pub struct Stability {
     #[arg(long)]
     vary_diffusion_number: bool,
     /// The other number, held fixed, where the equation has both.
-    #[arg(long, value_name = "NUMBER")]
+    #[arg(long, value_name = "NUMBER", value_parser = positive)]
     held: Option<f64>,
     /// How far the scan goes.
-    #[arg(long, default_value_t = 4.0)]
+    #[arg(long, default_value_t = 4.0, value_parser = positive)]
     scan_to: f64,
     #[command(flatten)]
     parameters: ParameterArguments,

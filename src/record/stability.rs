@@ -53,6 +53,10 @@ pub struct StabilityRecord {
     pub refused_from: Option<f64>,
     /// The scan: (number, largest modulus of an eigenvalue of G over all wavenumbers).
     pub scan: Vec<(f64, Option<f64>)>,
+    /// Whether the scheme has no amplification factor (it is not linear, not the same everywhere, or depends on the time), so that only the runs
+    /// from noise below tell anything.
+    #[serde(default, skip_serializing_if = "std::ops::Not::not")]
+    pub by_runs_alone: bool,
     /// Long runs from noise on either side of the limit.
     #[serde(default, skip_serializing_if = "Vec::is_empty")]
     pub confirmation: Vec<Confirmation>,

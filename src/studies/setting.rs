@@ -50,6 +50,11 @@ impl Setting {
         cells: &[usize],
         numbers: Numbers,
     ) -> Result<Self, Stop> {
+        if let Some(offer) = session.description().offers.first()
+            && session.description().offers.iter().all(|offer| offer.equation != equation)
+        {
+            return Err(Stop::NotOffered(format!("the scheme offers `{}`, not `{equation}`", offer.equation)));
+        }
         let dimensions = cells.len();
         let upper: Vec<f64> = (0..dimensions).map(|axis| LOWER[axis] + LENGTH[axis]).collect();
         let grid = Grid::uniform(cells, &LOWER[..dimensions], &upper);

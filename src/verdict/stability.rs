@@ -16,6 +16,9 @@ pub fn judge(claim: &StabilityClaim, study: &StudyRecord, record: &StabilityReco
             "a scheme that can be run over the whole range",
         );
     }
+    if record.by_runs_alone {
+        return by_runs(claim, record);
+    }
     if let Some(weak) = &record.weak_growth {
         return Judgement::refuted(format!(
             "no {words} is stable: the largest growth in a step is {:.3e} times the {words} to the power {:.2}, tenfold after {:.3e} steps at 0.1",
@@ -40,6 +43,23 @@ pub fn judge(claim: &StabilityClaim, study: &StudyRecord, record: &StabilityReco
             Judgement::refuted(format!("stable up to {words} {limit:.9}, beyond the claimed limit {}", claim.up_to))
         }
         Some(limit) => Judgement::upheld(format!("stable up to {words} {limit:.9}{}", worst(record))),
+    }
+}
+
+/// A scheme without amplification factor: a run that blows up refutes, bounded runs uphold nothing.
+fn by_runs(claim: &StabilityClaim, record: &StabilityRecord) -> Judgement {
+    let words = record.number.words();
+    let blew_up = record.confirmation.iter().find(|run| run.growth.is_none_or(|growth| growth > 1e6));
+    match blew_up {
+        Some(run) if run.number <= claim.up_to => Judgement::refuted(format!(
+            "a run of {} steps from noise at {words} {} blows up, claimed stable up to {}",
+            run.steps, run.number, claim.up_to
+        )),
+        _ => Judgement::undecided(
+            "the scheme is not linear, so that it has no amplification factor; runs from noise stay bounded up to the claim, which shows no \
+             instability but does not exclude one",
+            "a claim of what it keeps, such as total variation or bounds ([[invariants]])",
+        ),
     }
 }
 

@@ -15,7 +15,7 @@ const CELLS: usize = 96;
 const STEPS: usize = 2000;
 
 /// A bounded run may still grow by this: modes that are not orthogonal, and the many modes of noise that meet at one point.
-const BOUNDED: f64 = 30.0;
+pub const BOUNDED: f64 = 30.0;
 
 /// Below the limit, and beyond it.
 const BESIDE: [f64; 2] = [0.99, 1.05];

@@ -29,6 +29,7 @@ pub fn run(session: &mut Session, request: &StabilityRequest, seed: u64) -> Made
         worst_theta: None,
         weak_growth: None,
         refused_from: None,
+        by_runs_alone: false,
         scan: Vec::new(),
         confirmation: Vec::new(),
     };
@@ -64,6 +65,7 @@ fn measure(
     record.parameters = growth.parameters();
     if let Some(failing) = growth.not_linear() {
         notes.push(format!("{failing}: there is no amplification factor, so that only runs from noise are told"));
+        record.by_runs_alone = true;
         return confirm::by_noise_alone(session, request, seed, record);
     }
     let scan = Scan { up_to: request.scan_to, ..Scan::default() };
