@@ -159,6 +159,7 @@ pub fn stability(scheme: &Scheme) -> StabilityRecord {
         intervals: vec![[0.0, limit]],
         worst_theta: Some(PI),
         weak_growth: None,
+        by_runs_alone: false,
         refused_from: None,
         scan: (1..=200).map(|i| (f64::from(i) / 50.0, finite(growth(f64::from(i) / 50.0)))).collect(),
         confirmation: vec![
