@@ -76,7 +76,7 @@ fn of_mode(mode: &Mode, exact_modulus: f64, lead: f64) -> Errors {
         damping: modulus - exact_modulus,
         phase: lead,
         damping_per_period: moves.then(|| modulus.powf(steps) - exact_modulus.powf(steps)),
-        phase_per_period: moves.then(|| lead * steps),
+        phase_per_period: moves.then_some(lead * steps),
         phase_speed_ratio: moves.then(|| (exact_phase + lead) / exact_phase),
         group_speed_ratio: mode.derivative.and_then(group),
         frequency: Complex64::new(exact_phase + lead, modulus.ln()),
@@ -240,9 +240,7 @@ mod tests {
             ),
         ] {
             for (tolerance, expected) in [0.1, 0.01, 0.001].iter().zip(expected) {
-                agree(resolving_efficiency(&k, *tolerance), expected, 1e-6)
-                    .map_err(|e| format!("{name}: {e}"))
-                    .unwrap();
+                agree(resolving_efficiency(k, *tolerance), expected, 1e-6).map_err(|e| format!("{name}: {e}")).unwrap();
             }
         }
         agree(resolving_efficiency(Complex64::from, 1e-3), 1.0, 0.0).unwrap();

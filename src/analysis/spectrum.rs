@@ -137,7 +137,7 @@ fn rightmost_on_line(operator: &Matrix, epsilon: f64, y: f64) -> Result<Option<f
     let n = operator.size();
     let shift = |i: usize, j: usize| if i == j { Complex64::new(0.0, y) } else { Complex64::ZERO };
     let b = |i: usize, j: usize| operator.at(i, j) - shift(i, j);
-    let entries = paired(n, |i, j| b(i, j), epsilon, epsilon, |i, j| b(j, i).conj());
+    let entries = paired(n, b, epsilon, epsilon, |i, j| b(j, i).conj());
     let values = dense::eigenvalues(2 * n, &entries)?;
     // Real eigenvalues come out with a small imaginary part where two are close, as at the rightmost point itself.
     let tolerance = f64::EPSILON.sqrt() * (operator.frobenius_norm() + y.abs() + epsilon);
@@ -149,7 +149,7 @@ fn crossings_of_column(operator: &Matrix, epsilon: f64, x: f64, scale: f64) -> R
     let n = operator.size();
     let shift = |i: usize, j: usize| if i == j { Complex64::from(x) } else { Complex64::ZERO };
     let a = |i: usize, j: usize| operator.at(i, j) - shift(i, j);
-    let entries = paired(n, |i, j| a(i, j), epsilon, -epsilon, |i, j| -a(j, i).conj());
+    let entries = paired(n, a, epsilon, -epsilon, |i, j| -a(j, i).conj());
     let values = dense::eigenvalues(2 * n, &entries)?;
     let tolerance = f64::EPSILON.sqrt() * (scale + x.abs());
     let mut crossings: Vec<f64> = values.iter().filter(|v| v.re.abs() <= tolerance).map(|v| v.im).collect();

@@ -108,8 +108,8 @@ fn conjugate_product(m: usize, n: usize, k: usize) -> f64 {
     if k % 2 == 1 {
         return 0.0; // imaginary, and cancelled by the term with m and n exchanged
     }
-    let sign = if (k / 2) % 2 == 0 { 1.0 } else { -1.0 };
-    let term = |l: usize| binomial(m, k - l) * binomial(n, l) * if l % 2 == 0 { 1.0 } else { -1.0 };
+    let sign = if (k / 2).is_multiple_of(2) { 1.0 } else { -1.0 };
+    let term = |l: usize| binomial(m, k - l) * binomial(n, l) * if l.is_multiple_of(2) { 1.0 } else { -1.0 };
     sign * (0..=k).map(term).sum::<f64>()
 }
 
