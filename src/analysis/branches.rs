@@ -197,4 +197,36 @@ mod tests {
             }
         }
     }
+
+    /// Rate of the discontinuous Galerkin method of degree N with upwind flux for u_t + u_x = 0 and h = 1, in Legendre coefficients:
+    /// (2n + 1) (sum over m of a_m (D_nm - 1) + (-1)^n exp(-i theta) sum of a_m), D_nm = 2 where n - m is positive and odd.
+    fn discontinuous_galerkin(degree: usize, theta: f64) -> Matrix {
+        Matrix::from_fn(degree + 1, |n, m| {
+            let inner = if n > m && (n - m) % 2 == 1 { 2.0 } else { 0.0 };
+            let sign = if n.is_multiple_of(2) { 1.0 } else { -1.0 };
+            (2 * n + 1) as f64 * (inner - 1.0 + sign * Complex64::cis(-theta))
+        })
+    }
+
+    #[test]
+    fn physical_branch_of_discontinuous_galerkin() {
+        // i lambda = theta + B theta^(2N+3) - i A theta^(2N+2): orders after Hu & Atkins (2002), J. Comput. Phys. 182:516-545, and Ainsworth
+        // (2004), J. Comput. Phys. 198:106-130; A = (N!/(2N+1)!)^2 / 2 and B = 2 A (N+1) / ((2N+1)(2N+3)), re-derived with SymPy.
+        for (degree, a, b) in [(1, 72.0, 270.0), (2, 7200.0, 42_000.0), (3, 1_411_200.0, 11_113_200.0)] {
+            let thetas: Vec<f64> = (1..=60).map(|k| 0.02 * f64::from(k)).collect();
+            let blocks: Vec<Matrix> = thetas.iter().map(|&t| discontinuous_galerkin(degree, t)).collect();
+            let mut branches = follow(&blocks).unwrap();
+            let exact: Vec<Complex64> = thetas.iter().map(|t| Complex64::new(0.0, -t)).collect();
+            pair_with_exact(&mut branches, &[exact], 5);
+            let physical = branches.iter().find(|b| b.exact == Some(0)).unwrap();
+            for at in [9, 14, 19] {
+                let (t, n) = (thetas[at], 2 * degree as i32);
+                let error = Complex64::I * physical.values[at] - t;
+                // The next terms are smaller by about t^2; rounding is that of the other eigenvalues, of size up to 20.
+                let rounding = 200.0 * f64::EPSILON;
+                agree(error.im, -t.powi(n + 2) / a, 0.3 * t * t * t.powi(n + 2) / a + rounding).unwrap();
+                agree(error.re, t.powi(n + 3) / b, 0.3 * t * t * t.powi(n + 3) / b + rounding).unwrap();
+            }
+        }
+    }
 }
