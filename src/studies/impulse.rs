@@ -35,8 +35,12 @@ pub fn responses(session: &mut Session, setting: &Setting, cellwise: &Cellwise) 
             let (level, field, value) = component(output);
             let begin = (output * components + input) * count;
             let answer = &after[level][field];
-            let to = values[begin..begin + count].iter_mut().enumerate();
-            to.for_each(|(cell, to)| *to = answer[cellwise.index(cell, value)]);
+            let to = &mut values[begin..begin + count];
+            if per_cell == 1 {
+                to.copy_from_slice(answer);
+            } else {
+                to.iter_mut().enumerate().for_each(|(cell, to)| *to = answer[cellwise.index(cell, value)]);
+            }
         }
     }
     ImpulseResponses::new(grid, components, &at, values).map_err(|error| Stop::Analysis(error.to_string()))

@@ -4,6 +4,7 @@ use super::response::{Grid, ImpulseResponses};
 use crate::analysis::matrix::Matrix;
 use num_complex::Complex64;
 use rustfft::{Fft, FftPlanner};
+use std::cell::RefCell;
 use std::sync::Arc;
 
 /// G(theta), an m x m block at each wavenumber of a periodic grid.
@@ -42,8 +43,14 @@ impl SampledSymbol {
         let transform = GridTransform::new(&grid);
         let mut values = vec![Complex64::ZERO; m * m * n];
         for (pair, block) in values.chunks_mut(n).enumerate() {
-            for (cell, r) in responses.response(pair / m, pair % m).iter().enumerate() {
-                block[responses.turned(cell)] = weight(cell) * r;
+            let response = responses.response(pair / m, pair % m);
+            if grid.dimensions() == 1 {
+                // The same as below without a division a cell, which would cost as much as the transform.
+                let at = n - responses.turned(0);
+                let turned = response.iter().enumerate().cycle().skip(at % n);
+                block.iter_mut().zip(turned).for_each(|(to, (cell, r))| *to = weight(cell) * r);
+            } else {
+                response.iter().enumerate().for_each(|(cell, r)| block[responses.turned(cell)] = weight(cell) * r);
             }
             transform.forward(block);
         }
@@ -73,6 +80,11 @@ impl SampledSymbol {
     }
 }
 
+thread_local! {
+    /// Making a plan costs several transforms, so that plans are kept for the next study.
+    static PLANNER: RefCell<FftPlanner<f64>> = RefCell::new(FftPlanner::new());
+}
+
 /// Forward transform along every direction of a grid.
 struct GridTransform {
     plans: Vec<Arc<dyn Fft<f64>>>,
@@ -80,8 +92,8 @@ struct GridTransform {
 
 impl GridTransform {
     fn new(grid: &Grid) -> Self {
-        let mut planner = FftPlanner::new();
-        GridTransform { plans: grid.cells().iter().map(|&n| planner.plan_fft_forward(n)).collect() }
+        let plan = |n: &usize| PLANNER.with_borrow_mut(|planner| planner.plan_fft_forward(*n));
+        GridTransform { plans: grid.cells().iter().map(plan).collect() }
     }
 
     fn forward(&self, values: &mut [Complex64]) {
