@@ -4,14 +4,17 @@
 //! itself is wrong.
 
 mod arguments;
+mod contrast;
 mod invariants;
 mod judge;
 mod modes;
 mod order;
 mod outcome;
 mod problems;
+mod redraw;
 mod single;
 mod source;
+mod splice;
 mod stability;
 
 use std::process::ExitCode;
@@ -42,6 +45,9 @@ enum Command {
     Invariants(invariants::Invariants),
     Problems(problems::Problems),
     Source(source::Source),
+    Contrast(contrast::Contrast),
+    Redraw(redraw::Redraw),
+    Splice(splice::Splice),
 }
 
 impl Program {
@@ -55,6 +61,9 @@ impl Program {
             Command::Invariants(command) => command.run(),
             Command::Problems(command) => command.run(),
             Command::Source(command) => command.run(),
+            Command::Contrast(command) => command.run(),
+            Command::Redraw(command) => command.run(),
+            Command::Splice(command) => command.run(),
         };
         match done {
             Ok(outcome) => outcome.exit_code(),

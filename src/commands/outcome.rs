@@ -14,6 +14,8 @@ pub enum Outcome {
     Judged(Verdict),
     /// There was no claim, and everything could be measured.
     Measured,
+    /// Held against earlier results, something got worse.
+    Worse,
     /// There was no claim, and something could not be measured.
     NotMeasured,
 }
@@ -32,7 +34,7 @@ impl Outcome {
     pub fn exit_code(self) -> ExitCode {
         match self {
             Self::Judged(Verdict::Upheld) | Self::Measured => ExitCode::SUCCESS,
-            Self::Judged(Verdict::Refuted) => 1.into(),
+            Self::Judged(Verdict::Refuted) | Self::Worse => 1.into(),
             Self::Judged(Verdict::Undecided) | Self::NotMeasured => 3.into(),
         }
     }

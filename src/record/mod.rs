@@ -4,8 +4,10 @@
 //! Null rule: `null` (or an absent field) means that the number does not exist (it was not asked for, or could not be measured, or is not
 //! finite); the `note` or `stopped` sentence beside it says why. Numbers are f64 and read back to the same bits.
 
+pub mod comparison;
 mod file;
 mod invariants;
+mod join;
 mod model;
 mod modes;
 mod order;
@@ -13,6 +15,7 @@ mod stability;
 
 pub use file::{RecordError, read_results, write_bytes, write_results, write_text};
 pub use invariants::{Invariant, InvariantCheck, InvariantSetting, InvariantsRecord, WorstPlace};
+pub use join::join;
 pub use model::{
     Claimed, ClaimsRecord, FORMAT, Parameters, Results, RunRecord, SchemeRecord, Study, StudyRecord, VERSION, Verdict,
     VerdictRecord, finite, utc_now,

@@ -3,6 +3,7 @@
 //! Every function takes whether to colour: whoever prints knows whether a person looks, and whether `NO_COLOR` is set. The words say the
 //! same without colour.
 
+mod contrast;
 mod plot;
 mod problem;
 mod study;
@@ -13,6 +14,7 @@ use unicode_width::UnicodeWidthStr;
 
 use crate::record::Verdict;
 
+pub use contrast::contrast_text;
 pub use problem::{catalogue_text, problem_text};
 pub use study::study_text;
 pub use verdicts::verdict_table;

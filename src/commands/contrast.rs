@@ -1,0 +1,40 @@
+//! `contrast`: two results files side by side.
+
+use std::path::PathBuf;
+
+use clap::Args;
+
+use super::outcome::Outcome;
+use crate::dossier::terminal;
+use crate::record::comparison::contrast;
+use crate::record::read_results;
+
+/// Holds two results files against each other: verdicts, amplification factors, orders, limits.
+#[derive(Debug, Args)]
+#[command(
+    after_help = "Example:\n  gridassay contrast baseline/results.json dossier/results.json\n\nExit status: 0 nothing got worse, 1 something got worse, 2 the request itself is wrong."
+)]
+pub struct Contrast {
+    /// The earlier results.
+    #[arg(value_name = "OLD")]
+    old: PathBuf,
+    /// The later results.
+    #[arg(value_name = "NEW")]
+    new: PathBuf,
+    /// Prints what changed as JSON to stdout, and nothing else there.
+    #[arg(long)]
+    json: bool,
+}
+
+impl Contrast {
+    /// Reads, compares, shows.
+    pub fn run(self) -> Result<Outcome, Box<dyn std::error::Error>> {
+        let contrast = contrast(&read_results(&self.old)?, &read_results(&self.new)?);
+        if self.json {
+            println!("{}", serde_json::to_string_pretty(&contrast)?);
+        } else {
+            print!("{}", terminal::contrast_text(&contrast));
+        }
+        Ok(if contrast.is_worse() { Outcome::Worse } else { Outcome::Measured })
+    }
+}
