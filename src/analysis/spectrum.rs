@@ -264,4 +264,20 @@ mod tests {
         assert!(spectrum(&real(&[&[f64::NAN]])).is_err());
         assert!(transient_growth(&real(&[&[1e200]]), 5).is_err());
     }
+
+    #[test]
+    fn the_abscissa_of_a_generic_operator_touches_its_line_and_no_more() {
+        // Slow reference: along the vertical line through the abscissa the smallest sigma_min is epsilon itself.
+        let a = Matrix::from_fn(5, |i, j| {
+            let k = (5 * i + j) as f64;
+            Complex64::new((1.1 * k).sin() + if j > i { 2.0 } else { 0.0 }, (2.3 * k).cos())
+        });
+        for epsilon in [0.01, 0.3] {
+            let x = pseudospectral_abscissa(&a, epsilon).unwrap();
+            let distance = |i: i32| resolvent_distance(&a, Complex64::new(x, 0.002 * f64::from(i))).unwrap();
+            let least = (-3000..=3000).map(distance).fold(f64::INFINITY, f64::min);
+            // sigma_min changes by no more than z does: a sample 0.001 beside the nearest point is at most 0.001^2 / (2 epsilon) higher.
+            agree(least, epsilon, 0.5e-6 / epsilon).unwrap();
+        }
+    }
 }
