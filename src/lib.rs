@@ -5,6 +5,7 @@ pub mod assay;
 pub mod claims;
 pub mod commands;
 pub mod dossier;
+pub mod guide;
 pub mod host;
 pub mod record;
 pub mod studies;

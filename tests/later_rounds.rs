@@ -74,7 +74,7 @@ fn a_change_is_told_for_what_it_is() {
             }
         }
     });
-    assert!(status == 1 && said.contains("1.000000000 -> 0.950000000"), "{said}");
+    assert!(status == 1 && said.contains("1 -> 0.95"), "{said}");
     let (status, said) = contrast("gone.json", &|results| drop(results.verdicts.remove(0)));
     assert!(status == 1 && said.contains("upheld -> absent"), "{said}");
 }

@@ -21,7 +21,13 @@ fn block(readme: &str, start: &str) -> String {
 fn run(folder: &Path, line: &str) -> String {
     let program = Path::new(env!("CARGO_BIN_EXE_gridassay")).parent().unwrap().to_owned();
     let path = format!("{}:{}", program.display(), std::env::var("PATH").unwrap());
-    let output = Command::new("sh").args(["-c", line]).current_dir(folder).env("PATH", path).output().unwrap();
+    let output = Command::new("sh")
+        .args(["-c", line])
+        .current_dir(folder)
+        .env("PATH", path)
+        .env_remove("GITHUB_ACTIONS")
+        .output()
+        .unwrap();
     assert!(output.stderr.is_empty(), "{line}: {}", String::from_utf8_lossy(&output.stderr));
     String::from_utf8(output.stdout).unwrap()
 }

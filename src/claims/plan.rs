@@ -66,6 +66,8 @@ pub struct Claim {
     pub id: String,
     /// The key of [`Plan::schemes`].
     pub scheme: String,
+    /// Where it stands in the claims file, from 1; `None` where there is no file.
+    pub line: Option<usize>,
     /// What is claimed.
     pub kind: ClaimKind,
 }

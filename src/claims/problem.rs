@@ -20,16 +20,21 @@ pub struct ClaimsError {
 impl ClaimsError {
     /// An error about the bytes `span` of `text`.
     pub fn at(path: &Path, text: &str, span: Range<usize>, message: impl Into<String>) -> Self {
-        let start = span.start.min(text.len());
-        let line = text.as_bytes()[..start].iter().filter(|byte| **byte == b'\n').count();
-        let excerpt = text.lines().nth(line).map(|line| line.trim_end().to_owned()).filter(|line| !line.is_empty());
-        Self { path: path.into(), line: Some(line + 1), excerpt, message: message.into() }
+        let line = line_of(text, &span);
+        let excerpt = text.lines().nth(line - 1).map(|line| line.trim_end().to_owned()).filter(|line| !line.is_empty());
+        Self { path: path.into(), line: Some(line), excerpt, message: message.into() }
     }
 
     /// An error about the file as a whole.
     pub fn whole(path: &Path, message: impl Into<String>) -> Self {
         Self { path: path.into(), line: None, excerpt: None, message: message.into() }
     }
+}
+
+/// The line of `text`, from 1, on which the bytes `span` begin.
+pub(super) fn line_of(text: &str, span: &Range<usize>) -> usize {
+    let start = span.start.min(text.len());
+    1 + text.as_bytes()[..start].iter().filter(|byte| **byte == b'\n').count()
 }
 
 impl fmt::Display for ClaimsError {

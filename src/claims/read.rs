@@ -10,7 +10,7 @@ use toml::Spanned;
 
 use super::file::{ClaimsFile, OneOrMany, SchemeEntry};
 use super::plan::{Claim, ClaimKind, Plan, RouteChoice, SchemeChoice};
-use super::problem::ClaimsError;
+use super::problem::{ClaimsError, line_of};
 use crate::record::ClaimsRecord;
 
 /// The name under which the scheme of `[scheme]` stands in a plan.
@@ -50,19 +50,19 @@ pub fn plan_of(path: &Path, text: &str, folder: &Path) -> Result<Plan, ClaimsErr
     let mut claims = Vec::new();
     for entry in &file.order {
         let kind = ClaimKind::Order(reader.order(entry.get_ref())?);
-        reader.state(&mut claims, "order", &known, entry.get_ref().scheme.as_ref(), kind)?;
+        reader.state(&mut claims, ("order", entry.span()), &known, entry.get_ref().scheme.as_ref(), kind)?;
     }
     for entry in &file.modes {
         let kind = ClaimKind::Modes(reader.modes(entry)?);
-        reader.state(&mut claims, "modes", &known, entry.get_ref().scheme.as_ref(), kind)?;
+        reader.state(&mut claims, ("modes", entry.span()), &known, entry.get_ref().scheme.as_ref(), kind)?;
     }
     for entry in &file.stability {
         let kind = ClaimKind::Stability(reader.stability(entry)?);
-        reader.state(&mut claims, "stability", &known, entry.get_ref().scheme.as_ref(), kind)?;
+        reader.state(&mut claims, ("stability", entry.span()), &known, entry.get_ref().scheme.as_ref(), kind)?;
     }
     for entry in &file.invariants {
         let kind = ClaimKind::Invariants(reader.invariants(entry)?);
-        reader.state(&mut claims, "invariants", &known, entry.get_ref().scheme.as_ref(), kind)?;
+        reader.state(&mut claims, ("invariants", entry.span()), &known, entry.get_ref().scheme.as_ref(), kind)?;
     }
     if claims.is_empty() {
         return Err(ClaimsError::whole(
@@ -180,7 +180,7 @@ impl Reader<'_> {
     fn state(
         &self,
         claims: &mut Vec<Claim>,
-        word: &str,
+        (word, span): (&str, Range<usize>),
         known: &[&String],
         about: Option<&Spanned<OneOrMany>>,
         kind: ClaimKind,
@@ -197,7 +197,8 @@ impl Reader<'_> {
         };
         for scheme in about {
             let number = claims.iter().filter(|claim: &&Claim| claim.id.starts_with(word)).count() + 1;
-            claims.push(Claim { id: format!("{word}-{number}"), scheme, kind: kind.clone() });
+            let line = Some(line_of(self.text, &span));
+            claims.push(Claim { id: format!("{word}-{number}"), scheme, line, kind: kind.clone() });
         }
         Ok(())
     }

@@ -5,9 +5,9 @@ use std::path::PathBuf;
 use clap::Args;
 
 use super::outcome::Outcome;
-use crate::dossier::terminal;
+use crate::dossier::{self, terminal};
 use crate::record::comparison::contrast;
-use crate::record::read_results;
+use crate::record::{read_results, write_text};
 
 /// Holds two results files against each other: verdicts, amplification factors, orders, limits.
 #[derive(Debug, Args)]
@@ -24,12 +24,19 @@ pub struct Contrast {
     /// Prints what changed as JSON to stdout, and nothing else there.
     #[arg(long)]
     json: bool,
+    /// Writes what changed as a page.
+    #[arg(long, value_name = "FILE.html")]
+    out: Option<PathBuf>,
 }
 
 impl Contrast {
     /// Reads, compares, shows.
     pub fn run(self) -> Result<Outcome, Box<dyn std::error::Error>> {
-        let contrast = contrast(&read_results(&self.old)?, &read_results(&self.new)?);
+        let (old, new) = (read_results(&self.old)?, read_results(&self.new)?);
+        let contrast = contrast(&old, &new);
+        if let Some(path) = &self.out {
+            write_text(path, &dossier::contrast_page(&contrast, &old, &new)?)?;
+        }
         if self.json {
             println!("{}", serde_json::to_string_pretty(&contrast)?);
         } else {

@@ -4,9 +4,11 @@
 //! itself is wrong.
 
 mod arguments;
+mod completions;
 mod contrast;
 mod invariants;
 mod judge;
+mod manual;
 mod modes;
 mod order;
 mod outcome;
@@ -48,6 +50,8 @@ enum Command {
     Contrast(contrast::Contrast),
     Redraw(redraw::Redraw),
     Splice(splice::Splice),
+    Completions(completions::Completions),
+    Manual(manual::Manual),
 }
 
 impl Program {
@@ -64,6 +68,8 @@ impl Program {
             Command::Contrast(command) => command.run(),
             Command::Redraw(command) => command.run(),
             Command::Splice(command) => command.run(),
+            Command::Completions(command) => command.run(),
+            Command::Manual(command) => command.run(),
         };
         match done {
             Ok(outcome) => outcome.exit_code(),

@@ -24,7 +24,7 @@ pub fn judge(
     output: &Output,
 ) -> Result<Outcome, Box<dyn std::error::Error>> {
     let mut plan = empty_plan(scheme, output)?;
-    plan.claims.push(Claim { id: id.to_owned(), scheme: SCHEME.to_owned(), kind });
+    plan.claims.push(Claim { id: id.to_owned(), scheme: SCHEME.to_owned(), line: None, kind });
     let results = assay::run(&plan, std::env::args().collect(), &*progress::fitting(true), |_| Ok(()))?;
     show(&results, output)
 }

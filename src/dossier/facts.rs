@@ -160,6 +160,14 @@ fn modes_findings(record: &ModesRecord) -> Vec<Fact> {
     if let Some(dependence) = record.amplitude_dependence {
         facts.push(fact("G moves with amplitude by", vec![Part::Number(dependence)]));
     }
+    let leaking = record.modes.iter().filter_map(|mode| Some((mode.leaked?, mode)));
+    if let Some((leaked, mode)) = leaking.max_by(|a, b| a.0.total_cmp(&b.0)) {
+        let mut parts = vec![text("at most the share "), Part::Number(leaked), text(" of its energy, at θ = ")];
+        for (index, theta) in mode.theta.iter().enumerate() {
+            parts.extend([text(if index > 0 { ", " } else { "" }), Part::Number(*theta)]);
+        }
+        facts.push(fact("A wave loses to others in a step", parts));
+    }
     if let Some(claimed) = &record.claimed_symbol {
         claimed_symbol(&mut facts, claimed);
     }
@@ -217,6 +225,10 @@ fn stability_findings(record: &StabilityRecord, stopped: bool) -> Vec<Fact> {
         None => vec![text(format!("no limit found up to {words} ")), Part::Number(record.scanned_up_to)],
     };
     let mut facts = vec![fact("Stable up to", limit)];
+    if record.by_runs_alone {
+        let why = "none: the scheme is not linear, not the same everywhere or depends on the time, so that only runs from noise tell anything";
+        facts.push(fact("Amplification factor", vec![text(why)]));
+    }
     if record.intervals.len() > 1 {
         let mut parts = Vec::new();
         for (index, [low, high]) in record.intervals.iter().enumerate() {

@@ -28,8 +28,12 @@ pub(crate) struct Figure {
 
 /// Draws the charts of all studies, study by study. `ids` are the file stems of the studies.
 pub(crate) fn draw_all(results: &Results, ids: &[String]) -> Result<Vec<Vec<Figure>>, DossierError> {
-    let of_study = |charts: Vec<Chart>| charts.into_iter().map(draw).collect();
-    chart::of_studies(results, ids).into_iter().map(of_study).collect()
+    chart::of_studies(results, ids).into_iter().map(draw_each).collect()
+}
+
+/// Draws `charts`.
+pub(crate) fn draw_each(charts: Vec<Chart>) -> Result<Vec<Figure>, DossierError> {
+    charts.into_iter().map(draw).collect()
 }
 
 fn draw(chart: Chart) -> Result<Figure, DossierError> {

@@ -9,7 +9,7 @@ pub(crate) struct FigureFiles;
 
 impl Exporter for FigureFiles {
     fn export(&self, dossier: &Dossier<'_>) -> Result<Vec<OutputFile>, DossierError> {
-        let figures: Vec<_> = dossier.figures.iter().flatten().collect();
+        let figures: Vec<_> = dossier.figures.iter().flatten().chain(&dossier.compared.figures).collect();
         // Each figure is made by itself, so that the order of work cannot change a file.
         let pairs: Result<Vec<_>, DossierError> = figures
             .par_iter()

@@ -3,8 +3,10 @@
 //! Data flows one way: every number that an output shows is an f64 of the results, only rounded for reading. Each output is one file in
 //! this folder behind [`Exporter`]; `chart` holds the charts as data, `table` the tables, `facts` the sentences that several outputs share.
 
+mod annotations;
 mod chart;
 mod clean;
+mod compared;
 mod error;
 mod facts;
 mod figure;
@@ -22,9 +24,12 @@ mod words;
 
 use std::path::{Path, PathBuf};
 
+pub use annotations::annotations;
 pub use error::DossierError;
+pub use page::contrast_page;
 
 use crate::record::{Results, write_bytes, write_results};
+use compared::Compared;
 use figure::Figure;
 
 /// The file of the results within a dossier.
@@ -37,6 +42,8 @@ pub(crate) struct Dossier<'a> {
     pub ids: Vec<String>,
     /// The figures of each study.
     pub figures: Vec<Vec<Figure>>,
+    /// Several schemes side by side.
+    pub compared: Compared,
 }
 
 /// A file of a dossier.
@@ -106,7 +113,7 @@ impl<'a> Dossier<'a> {
     fn of(results: &'a Results) -> Result<Self, DossierError> {
         let ids = study_ids(results);
         let figures = figure::draw_all(results, &ids)?;
-        Ok(Self { results, ids, figures })
+        Ok(Self { results, ids, figures, compared: Compared::of(results)? })
     }
 }
 

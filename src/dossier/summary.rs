@@ -34,7 +34,9 @@ fn summary(results: &Results) -> String {
     let mut out = String::new();
     let overall = results.overall.map_or("measured", Verdict::word);
     let _ = writeln!(out, "## Gridassay: {overall}\n");
-    let _ = writeln!(out, "**{}** {}\n", sentence(&results.scheme.name), sentence(&results.scheme.version));
+    // Several schemes have versions of their own, which the page lists.
+    let version = if results.schemes.is_empty() { sentence(&results.scheme.version) } else { String::new() };
+    let _ = writeln!(out, "{}\n", format!("**{}** {version}", sentence(&results.scheme.name)).trim_end());
     let _ = writeln!(out, "{}\n", words::overall_sentence(results));
     for (name, record) in words::schemes(results) {
         if let Some(fault) = &record.fault {

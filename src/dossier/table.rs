@@ -6,7 +6,7 @@ use super::chart::thin;
 use super::clean::visible;
 use super::invariants;
 use super::words;
-use crate::record::{ModesRecord, OrderRecord, StabilityRecord, Study, StudyRecord};
+use crate::record::{ModeRecord, ModesRecord, OrderRecord, StabilityRecord, Study, StudyRecord};
 
 /// A table.
 #[derive(Clone, Debug, Serialize)]
@@ -48,6 +48,17 @@ pub(super) fn column(head: &str, key: &str, latex: &str) -> Column {
     Column { head: head.into(), key: key.into(), latex: latex.into(), numeric: true, powers: false }
 }
 
+/// What a mode may also have: head, key and where it stands.
+type Beside = (&'static str, &'static str, fn(&ModeRecord) -> Option<f64>);
+
+/// Columns that stand in a table of modes where any mode has such a number.
+const BESIDE: [Beside; 4] = [
+    ("damping error / period", "damping_error_per_period", |mode| mode.damping_error_per_period),
+    ("phase error / period", "phase_error_per_period", |mode| mode.phase_error_per_period),
+    ("share", "share", |mode| mode.share),
+    ("lost to other waves", "leaked", |mode| mode.leaked),
+];
+
 /// The tables of a study, with at most `most` rows each.
 pub(crate) fn of_study(study: &StudyRecord, most: usize) -> Vec<Table> {
     match &study.study {
@@ -84,6 +95,10 @@ fn order_table(record: &OrderRecord, field: &str, several: bool) -> Table {
         columns.push(Column { powers: true, ..column(words::norm_symbol(norm), &format!("error_{norm}"), &latex) });
         columns.push(column("slope", &format!("slope_{norm}"), "slope"));
     }
+    let timed = record.levels.iter().any(|level| level.seconds.is_some());
+    if timed {
+        columns.push(column("wall time (s)", "seconds", "wall time (s)"));
+    }
     if notes {
         columns.push(Column { numeric: false, ..column("note", "note", "note") });
     }
@@ -102,6 +117,9 @@ fn order_table(record: &OrderRecord, field: &str, several: bool) -> Table {
             let slopes = record.observed.get(field).and_then(|norms| norms.get(*norm)).map(|observed| &observed.slopes);
             let slope = index.checked_sub(1).and_then(|before| slopes?.get(before).copied().flatten());
             row.push(Cell::Number(slope));
+        }
+        if timed {
+            row.push(Cell::Number(level.seconds));
         }
         if notes {
             row.push(Cell::Text(level.note.as_deref().map(visible).unwrap_or_default()));
@@ -146,6 +164,10 @@ fn modes_tables(record: &ModesRecord, most: usize) -> Vec<Table> {
         column("phase speed", "phase_speed_ratio", "phase speed"),
         column("group speed", "group_speed_ratio", "group speed"),
     ]);
+    let beside = BESIDE.map(|(head, key, of)| (column(head, key, head), of));
+    let beside: Vec<_> =
+        beside.into_iter().filter(|(_, of)| record.modes.iter().any(|mode| of(mode).is_some())).collect();
+    columns.extend(beside.iter().map(|(column, _)| column.clone()));
     let rows: Vec<_> = thin(&record.modes, most)
         .iter()
         .map(|mode| {
@@ -167,17 +189,50 @@ fn modes_tables(record: &ModesRecord, most: usize) -> Vec<Table> {
                 mode.group_speed_ratio,
             ];
             row.extend(numbers.map(Cell::Number));
+            row.extend(beside.iter().map(|(_, of)| Cell::Number(of(mode))));
             row
         })
         .collect();
     let of = (rows.len() < record.modes.len()).then_some(record.modes.len());
-    vec![Table {
+    let mut tables = vec![Table {
         id: "modes".into(),
         caption: "Modes, per step; speeds relative to the exact ones".into(),
         columns,
         rows,
         of,
-    }]
+    }];
+    tables.extend(stencil_table(record, most));
+    tables
+}
+
+/// The coefficients of the stencil as built: new value = sum of coefficient x old value at the offset.
+fn stencil_table(record: &ModesRecord, most: usize) -> Option<Table> {
+    let first = record.stencil.first()?;
+    // Which component reads which matters only where there are several.
+    let components = record.stencil.iter().any(|entry| entry.output > 0 || entry.input > 0);
+    let axes = ["x", "y", "z"].into_iter().take(first.offset.len());
+    let mut columns: Vec<Column> = match first.offset.len() {
+        1 => vec![column("offset", "offset", "offset")],
+        _ => axes.map(|x| column(&format!("offset {x}"), &format!("offset_{x}"), &format!("offset {x}"))).collect(),
+    };
+    if components {
+        columns.extend([column("computed", "output", "computed"), column("read", "input", "read")]);
+    }
+    columns.push(column("coefficient", "coefficient", "coefficient"));
+    let rows: Vec<_> = thin(&record.stencil, most)
+        .iter()
+        .map(|entry| {
+            let mut row: Vec<Cell> = entry.offset.iter().map(|&cells| Cell::Number(Some(cells as f64))).collect();
+            if components {
+                row.extend([Cell::Count(entry.output as u64), Cell::Count(entry.input as u64)]);
+            }
+            row.push(Cell::Number(Some(entry.coefficient)));
+            row
+        })
+        .collect();
+    let of = (rows.len() < record.stencil.len()).then_some(record.stencil.len());
+    let caption = "Stencil as built: what a step makes of the old values at these offsets".into();
+    Some(Table { id: "stencil".into(), caption, columns, rows, of })
 }
 
 fn stability_tables(record: &StabilityRecord, most: usize) -> Vec<Table> {

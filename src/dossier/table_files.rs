@@ -3,7 +3,7 @@
 use std::fmt::Write as _;
 
 use super::table::{Cell, Table, of_study};
-use super::{Dossier, DossierError, Exporter, OutputFile, clean, number};
+use super::{Dossier, DossierError, Exporter, OutputFile, clean, compared, number};
 
 /// Most rows of a LaTeX table: a page of a paper holds no more.
 pub(super) const ROWS: usize = 40;
@@ -14,16 +14,20 @@ pub(crate) struct TableFiles;
 impl Exporter for TableFiles {
     fn export(&self, dossier: &Dossier<'_>) -> Result<Vec<OutputFile>, DossierError> {
         let mut files = Vec::new();
+        let mut add = |id: &str, table: &Table, suffix: &str, text: String| {
+            let path = format!("tables/{id}-{}.{suffix}", table.id).into();
+            files.push(OutputFile { path, bytes: text.into_bytes() });
+        };
+        for table in &dossier.compared.tables {
+            add(compared::ID, table, "csv", csv(table));
+            add(compared::ID, table, "tex", latex(table));
+        }
         for (study, id) in dossier.results.studies.iter().zip(&dossier.ids) {
-            let mut add = |table: &Table, suffix: &str, text: String| {
-                let path = format!("tables/{id}-{}.{suffix}", table.id).into();
-                files.push(OutputFile { path, bytes: text.into_bytes() });
-            };
             for table in of_study(study, usize::MAX) {
-                add(&table, "csv", csv(&table));
+                add(id, &table, "csv", csv(&table));
             }
             for table in of_study(study, ROWS) {
-                add(&table, "tex", latex(&table));
+                add(id, &table, "tex", latex(&table));
             }
         }
         Ok(files)

@@ -31,8 +31,17 @@ impl Contrast {
     /// Whether anything got worse: a verdict, an observed order or a stable range.
     pub fn is_worse(&self) -> bool {
         self.verdicts.iter().any(VerdictChange::is_worse)
-            || self.orders.iter().any(|change| change.new[1] < change.old[0])
+            || self.orders.iter().any(OrderChange::is_worse)
             || self.limits.iter().any(LimitChange::is_worse)
+    }
+
+    /// What came of it, in a few words.
+    pub fn sentence(&self) -> &'static str {
+        match (self.is_empty(), self.is_worse()) {
+            (true, _) => "Nothing changed",
+            (false, true) => "Something got worse",
+            (false, false) => "Something changed, nothing got worse",
+        }
     }
 
     /// Whether nothing changed beyond rounding.
@@ -101,6 +110,13 @@ pub struct OrderChange {
     pub old: [f64; 2],
     /// The interval now.
     pub new: [f64; 2],
+}
+
+impl OrderChange {
+    /// A lower order than before.
+    pub fn is_worse(&self) -> bool {
+        self.new[1] < self.old[0]
+    }
 }
 
 /// A stable range that changed; `None`: no limit was found.

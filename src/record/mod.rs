@@ -18,7 +18,7 @@ pub use invariants::{Invariant, InvariantCheck, InvariantSetting, InvariantsReco
 pub use join::join;
 pub use model::{
     Claimed, ClaimsRecord, FORMAT, Parameters, Results, RunRecord, SchemeRecord, Study, StudyRecord, VERSION, Verdict,
-    VerdictRecord, finite, utc_now,
+    VerdictRecord, finite, nine_digits, utc_now,
 };
 pub use modes::{
     ClaimedSymbol, Linearity, ModeRecord, ModesRecord, ModifiedEquation, NeighbourDifference, StencilEntry,

@@ -219,6 +219,11 @@ pub fn finite(value: f64) -> Option<f64> {
     value.is_finite().then_some(value)
 }
 
+/// `value` with at most nine significant digits, for sentences: limits are found by bisection, and more would be noise.
+pub fn nine_digits(value: f64) -> String {
+    format!("{value:.8e}").parse::<f64>().unwrap_or(value).to_string()
+}
+
 #[cfg(test)]
 mod tests {
     use super::*;

@@ -94,6 +94,9 @@ pub struct Level {
     /// By field: how far the answer moves when the data change in the last bit, the floor below which no error can be read.
     #[serde(default, skip_serializing_if = "BTreeMap::is_empty")]
     pub floor: BTreeMap<String, Norms>,
+    /// Wall time of the scheme's run on this level in seconds, without the exact solution and the norms; it differs from run to run.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub seconds: Option<f64>,
     /// Why this level has no errors, where it has none.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub note: Option<String>,

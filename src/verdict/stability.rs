@@ -2,7 +2,7 @@
 
 use super::Judgement;
 use crate::claims::StabilityClaim;
-use crate::record::{StabilityRecord, StudyRecord};
+use crate::record::{StabilityRecord, StudyRecord, nine_digits as number};
 
 /// How far beyond a measured limit a claim may lie and still name that limit: claims are written in decimals, limits found by bisection.
 const SAME: f64 = 1e-6;
@@ -27,7 +27,11 @@ pub fn judge(claim: &StabilityClaim, study: &StudyRecord, record: &StabilityReco
     }
     if let Some(run) = record.confirmation.iter().find(|run| !run.agrees) {
         return Judgement::undecided(
-            format!("the spectrum and a run of {} steps from noise at {words} {} disagree", run.steps, run.number),
+            format!(
+                "the spectrum and a run of {} steps from noise at {words} {} disagree",
+                run.steps,
+                number(run.number)
+            ),
             "finding out why: a scheme that depends on what it was asked before, or is not linear",
         );
     }
@@ -35,14 +39,17 @@ pub fn judge(claim: &StabilityClaim, study: &StudyRecord, record: &StabilityReco
         None => without_limit(claim, record),
         Some(0.0) => Judgement::refuted(format!("no {words} is stable, however small")),
         Some(limit) if limit < claim.up_to * (1.0 - SAME) => Judgement::refuted(format!(
-            "stable only up to {words} {limit:.9}, claimed up to {}{}",
+            "stable only up to {words} {}, claimed up to {}{}",
+            number(limit),
             claim.up_to,
             worst(record)
         )),
-        Some(limit) if claim.exactly && limit > claim.up_to * (1.0 + SAME) => {
-            Judgement::refuted(format!("stable up to {words} {limit:.9}, beyond the claimed limit {}", claim.up_to))
-        }
-        Some(limit) => Judgement::upheld(format!("stable up to {words} {limit:.9}{}", worst(record))),
+        Some(limit) if claim.exactly && limit > claim.up_to * (1.0 + SAME) => Judgement::refuted(format!(
+            "stable up to {words} {}, beyond the claimed limit {}",
+            number(limit),
+            claim.up_to
+        )),
+        Some(limit) => Judgement::upheld(format!("stable up to {words} {}{}", number(limit), worst(record))),
     }
 }
 
@@ -53,7 +60,9 @@ fn by_runs(claim: &StabilityClaim, record: &StabilityRecord) -> Judgement {
     match blew_up {
         Some(run) if run.number <= claim.up_to => Judgement::refuted(format!(
             "a run of {} steps from noise at {words} {} blows up, claimed stable up to {}",
-            run.steps, run.number, claim.up_to
+            run.steps,
+            number(run.number),
+            claim.up_to
         )),
         _ => Judgement::undecided(
             "the scheme is not linear, so that it has no amplification factor; runs from noise stay bounded up to the claim, which shows no \
@@ -64,10 +73,11 @@ fn by_runs(claim: &StabilityClaim, record: &StabilityRecord) -> Judgement {
 }
 
 fn without_limit(claim: &StabilityClaim, record: &StabilityRecord) -> Judgement {
-    let (words, end) = (record.number.words(), record.scanned_up_to);
+    let (words, end) = (record.number.words(), number(record.scanned_up_to));
     match record.refused_from {
         Some(refused) if refused < claim.up_to => Judgement::refuted(format!(
-            "the scheme itself refuses {words} {refused:.9} and more, claimed up to {}; every smaller one is stable",
+            "the scheme itself refuses {words} {} and more, claimed up to {}; every smaller one is stable",
+            number(refused),
             claim.up_to
         )),
         _ if claim.exactly => Judgement::refuted(format!(

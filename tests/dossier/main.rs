@@ -5,6 +5,8 @@
 //! scheme puts into it, and nothing that people read changes unnoticed.
 
 mod browser;
+mod compared;
+mod contrasted;
 mod hostile;
 mod numbers;
 mod page;

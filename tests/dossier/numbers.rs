@@ -102,9 +102,14 @@ fn no_digit_on_the_page_comes_from_elsewhere() {
 
 #[test]
 fn every_point_of_every_chart_is_in_the_results() {
-    let folder = dossier("points", &sample::one_scheme());
-    let known = Known::of(&read(&folder, "results.json"));
-    let text = without_script(&folder);
+    for (name, results) in [("points", sample::one_scheme()), ("points-many", sample::many_schemes(5))] {
+        points_are_known(&dossier(name, &results));
+    }
+}
+
+fn points_are_known(folder: &std::path::Path) {
+    let known = Known::of(&read(folder, "results.json"));
+    let text = without_script(folder);
     let page = parse(&text);
     let mut points = 0;
     for node in page.descendants().filter(|node| node.attribute("type") == Some("application/json")) {

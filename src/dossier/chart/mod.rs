@@ -4,6 +4,7 @@
 
 mod axis;
 mod canvas;
+mod compared;
 mod convergence;
 mod draw;
 mod modes;
@@ -114,6 +115,11 @@ pub(crate) fn of_studies(results: &Results, ids: &[String]) -> Vec<Vec<Chart>> {
 /// The charts of one Fourier study, for outputs that draw them in their own way.
 pub(crate) fn modes_charts(record: &ModesRecord) -> Vec<Chart> {
     modes::charts("", record)
+}
+
+/// The charts in which several schemes are compared.
+pub(crate) fn of_schemes(results: &Results) -> Vec<Chart> {
+    compared::charts(results)
 }
 
 /// At most `most` of `items`, evenly chosen, with the first and the last: a chart needs no more points than pixels.

@@ -19,13 +19,13 @@ pub(super) fn charts(id: &str, record: &ModesRecord) -> Vec<Chart> {
 }
 
 /// The modes of one branch in one direction, ascending in theta.
-struct Curve<'a> {
-    name: String,
-    modes: Vec<(f64, &'a ModeRecord)>,
+pub(super) struct Curve<'a> {
+    pub name: String,
+    pub modes: Vec<(f64, &'a ModeRecord)>,
 }
 
 /// One curve a branch; in two and three dimensions one a branch and a direction (along each axis, and along the diagonal).
-fn curves(modes: &[ModeRecord]) -> Vec<Curve<'_>> {
+pub(super) fn curves(modes: &[ModeRecord]) -> Vec<Curve<'_>> {
     let mut branches: Vec<&str> = Vec::new();
     for mode in modes {
         if !branches.contains(&mode.branch.as_str()) {
@@ -81,7 +81,7 @@ fn half(mut modes: Vec<(f64, &ModeRecord)>) -> Vec<(f64, &ModeRecord)> {
     modes
 }
 
-fn amplification(id: &str, curves: &[Curve<'_>]) -> Chart {
+pub(super) fn amplification(id: &str, curves: &[Curve<'_>]) -> Chart {
     let mut series = Vec::new();
     for (slot, curve) in curves.iter().enumerate() {
         let exact = curve.modes.iter().filter_map(|(theta, mode)| Some([*theta, mode.exact_modulus?]));
@@ -111,7 +111,7 @@ fn amplification(id: &str, curves: &[Curve<'_>]) -> Chart {
     }
 }
 
-fn phase_speed(id: &str, curves: &[Curve<'_>]) -> Option<Chart> {
+pub(super) fn phase_speed(id: &str, curves: &[Curve<'_>]) -> Option<Chart> {
     let mut series = Vec::new();
     for (slot, curve) in curves.iter().enumerate() {
         let ratio = curve.modes.iter().filter_map(|(theta, mode)| Some([*theta, mode.phase_speed_ratio?]));

@@ -40,6 +40,7 @@ static LAYOUT: LazyLock<Environment<'static>> = LazyLock::new(|| {
     layout.add_filter("power", |value| num(value, |number| number::typeset_power(number, number::DIGITS)));
     let pieces = [
         ("index.html", include_str!("../../../reports/page/index.html")),
+        ("contrast.html", include_str!("../../../reports/page/contrast.html")),
         ("pieces.html", include_str!("../../../reports/page/pieces.html")),
         ("marks.svg", include_str!("../../../reports/page/marks.svg")),
     ];
@@ -49,11 +50,11 @@ static LAYOUT: LazyLock<Environment<'static>> = LazyLock::new(|| {
     layout
 });
 
-/// The page of `view`.
-pub(super) fn render(view: &impl Serialize) -> Result<String, Error> {
+/// The page `template` of `view`.
+pub(super) fn render(template: &str, view: &impl Serialize) -> Result<String, Error> {
     let style = format!("{}{}", fonts(), include_str!("../../../reports/page/page.css"));
     let script = concat!(include_str!("../../../reports/page/chart.js"), include_str!("../../../reports/page/page.js"));
-    LAYOUT.get_template("index.html")?.render(minijinja::context! {
+    LAYOUT.get_template(template)?.render(minijinja::context! {
         page => Value::from(Serde(view)),
         style => Value::from_safe_string(style),
         script => Value::from_safe_string(script.into()),

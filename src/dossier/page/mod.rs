@@ -2,8 +2,11 @@
 //!
 //! The layout is `reports/page/index.html`; this folder turns results into what the layout shows, and decides nothing else.
 
+mod contrast;
 mod layout;
 mod view;
+
+pub use contrast::contrast_page;
 
 use super::{Dossier, DossierError, Exporter, OutputFile};
 
@@ -13,7 +16,7 @@ pub(crate) struct Page;
 impl Exporter for Page {
     fn export(&self, dossier: &Dossier<'_>) -> Result<Vec<OutputFile>, DossierError> {
         let failed = |source| DossierError::Layout { page: "index.html", source };
-        let text = layout::render(&view::view(dossier)).map_err(failed)?;
+        let text = layout::render("index.html", &view::view(dossier)).map_err(failed)?;
         Ok(vec![OutputFile { path: "index.html".into(), bytes: text.into_bytes() }])
     }
 }

@@ -6,7 +6,7 @@ use serde::Serialize;
 use crate::dossier::facts::{self, Fact, Part};
 use crate::dossier::figure::Figure;
 use crate::dossier::table::{self, Table};
-use crate::dossier::{Dossier, chart, clean, words};
+use crate::dossier::{Dossier, chart, clean, compared, words};
 use crate::record::{Results, RunRecord, SchemeRecord, Study, StudyRecord, Verdict, VerdictRecord};
 
 /// Most rows of a table on the page; the files under `tables/` hold all of them.
@@ -30,6 +30,16 @@ pub(super) struct PageView<'a> {
     /// The kinds of study in the overview's columns.
     kinds: Vec<&'static str>,
     caution: &'static str,
+    /// Several schemes side by side, where there are several.
+    compared: Option<ComparedView<'a>>,
+}
+
+#[derive(Serialize)]
+struct ComparedView<'a> {
+    id: &'static str,
+    name: &'static str,
+    figures: Vec<FigureView<'a>>,
+    tables: &'a [Table],
 }
 
 /// A scheme with what was claimed of it and measured on it.
@@ -104,6 +114,12 @@ pub(super) fn view<'a>(dossier: &'a Dossier<'a>) -> PageView<'a> {
         kinds: kinds(&schemes),
         schemes,
         caution: words::CAUTION,
+        compared: (!dossier.compared.is_empty()).then(|| ComparedView {
+            id: compared::ID,
+            name: "all schemes",
+            figures: dossier.compared.figures.iter().map(figure_view).collect(),
+            tables: &dossier.compared.tables,
+        }),
     }
 }
 

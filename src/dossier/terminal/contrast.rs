@@ -2,8 +2,8 @@
 
 use super::wrapped;
 use crate::dossier::clean::visible;
-use crate::record::Verdict;
 use crate::record::comparison::Contrast;
+use crate::record::{Verdict, nine_digits};
 
 /// What changed, in at most 80 columns.
 pub fn contrast_text(contrast: &Contrast) -> String {
@@ -20,7 +20,7 @@ pub fn contrast_text(contrast: &Contrast) -> String {
         paragraph(format!("{mark}: {}: {}: {old} -> {new}: {}", change.scheme, change.text, change.reason));
     }
     for change in &contrast.orders {
-        let mark = if change.new[1] < change.old[0] { "worse" } else { "changed" };
+        let mark = if change.is_worse() { "worse" } else { "changed" };
         let interval = |[low, high]: [f64; 2]| format!("{low:.3} to {high:.3}");
         let (old, new) = (interval(change.old), interval(change.new));
         paragraph(format!(
@@ -30,7 +30,7 @@ pub fn contrast_text(contrast: &Contrast) -> String {
     }
     for change in &contrast.limits {
         let mark = if change.is_worse() { "worse" } else { "changed" };
-        let limit = |limit: Option<f64>| limit.map_or("no limit".to_owned(), |limit| format!("{limit:.9}"));
+        let limit = |limit: Option<f64>| limit.map_or("no limit".to_owned(), nine_digits);
         let (old, new) = (limit(change.old), limit(change.new));
         paragraph(format!("{mark}: {}: {}: stable up to {old} -> {new}", change.scheme, change.study));
     }
@@ -47,10 +47,9 @@ pub fn contrast_text(contrast: &Contrast) -> String {
             change.allowed
         ));
     }
-    let summary = match (contrast.is_empty(), contrast.is_worse()) {
-        (true, _) => "Nothing changed",
-        (false, true) => "Something got worse",
-        (false, false) => "Something changed, nothing got worse",
-    };
-    out + &format!("{summary}: {} claim(s) and stud(ies) were held against each other.\n", contrast.compared)
+    out + &format!(
+        "{}: {} claim(s) and stud(ies) were held against each other.\n",
+        contrast.sentence(),
+        contrast.compared
+    )
 }

@@ -26,6 +26,8 @@ pub struct Answer {
     pub state: Fields,
     /// The exact state at the end, as the scheme holds it.
     pub exact: Fields,
+    /// Wall time of the run that `state` came from, in seconds.
+    pub seconds: f64,
     /// The state at the end from data changed in the last bit.
     pub shaken: Fields,
 }
@@ -77,13 +79,16 @@ pub fn run(session: &mut Session, problem: &Problem, rung: &Rung, until: f64, se
         .collect::<Result<Vec<_>, _>>()?;
     let run = Run { operation, start, until, rung };
     let mut plain = harness;
-    let state = run.carry_out(session, initial.clone(), earlier.clone(), &mut plain)?;
+    let (plain_initial, plain_earlier) = (initial.clone(), earlier.clone());
+    let begun = std::time::Instant::now();
+    let state = run.carry_out(session, plain_initial, plain_earlier, &mut plain)?;
+    let seconds = begun.elapsed().as_secs_f64();
     let mut jitter = Jitter::new(seed);
     let (mut initial, mut earlier) = (initial, earlier);
     jitter.shake_fields(&mut initial);
     earlier.iter_mut().for_each(|fields| jitter.shake_fields(fields));
     let shaken = run.carry_out(session, initial, earlier, &mut Shaken { inner: &mut plain, jitter })?;
-    Ok(Answer { names, operation, layout, state, exact, shaken })
+    Ok(Answer { names, operation, layout, state, exact, seconds, shaken })
 }
 
 /// The exact state, each field at its own time where fields are staggered in time.

@@ -119,6 +119,7 @@ fn push_error(record: &mut OrderRecord, rung: &Rung, problem: &gridassay_referen
         steps: rung.steps,
         errors: by_field(&answer.names, errors),
         floor: by_field(&answer.names, floor),
+        seconds: Some(answer.seconds),
         note: level::not_finite(&answer.names, &answer.state),
     });
 }
@@ -141,6 +142,7 @@ fn push_difference(record: &mut OrderRecord, rung: &Rung, before: Option<&Answer
         steps: rung.steps,
         errors: BTreeMap::new(),
         floor: BTreeMap::new(),
+        seconds: Some(answer.seconds),
         note: Some("the finest step: what the others are held against".to_owned()),
     });
 }
