@@ -42,7 +42,13 @@ fn the_embedded_claims_are_upheld_and_leave_a_dossier() {
     let results = read_results(&folder.join("dossier/results.json")).unwrap();
     assert_eq!(results.overall, Some(Verdict::Upheld));
     assert!(results.schemes.len() >= 10, "at least ten schemes are judged");
-    for file in ["index.html", "summary.md", "junit.xml", "figures/modes-1-amplification.svg", "figures/order-1-convergence.png"] {
+    for file in [
+        "index.html",
+        "summary.md",
+        "junit.xml",
+        "figures/modes-1-amplification.svg",
+        "figures/order-1-convergence.png",
+    ] {
         assert!(folder.join("dossier").join(file).exists(), "{file} is missing");
     }
     // Progress stands on stderr, in plain lines, since this is no terminal.
@@ -89,7 +95,11 @@ fn observed_orders_on_smooth_problems_are_the_textbooks() {
         ("lax-wendroff", "--problem travelling-sine --cells 32,64,128,256 --courant 0.7", 2.0),
         ("crank-nicolson-advection", "--problem travelling-sine --cells 32,64,128,256,512 --courant 0.7", 2.0),
         ("central4-rk4", "--problem travelling-sine --cells 24,48,96,192 --courant 0.6", 4.0),
-        ("weno5-ssprk3", "--problem travelling-sine --cells 40,80,160,320 --courant 0.4 --refine space --step-power 1.6667", 5.0),
+        (
+            "weno5-ssprk3",
+            "--problem travelling-sine --cells 40,80,160,320 --courant 0.4 --refine space --step-power 1.6667",
+            5.0,
+        ),
         ("poisson-central2", "--problem manufactured-poisson --cells 20,40,80,160", 2.0),
     ];
     for (scheme, arguments, order) in table {
@@ -102,7 +112,10 @@ fn observed_orders_on_smooth_problems_are_the_textbooks() {
         let observed = &record.observed["u"]["l2"];
         let [low, high] = observed.interval.unwrap();
         assert!((observed.order.unwrap() - order).abs() < 0.05, "{scheme}: {observed:?}");
-        assert!(low <= observed.order.unwrap() && observed.order.unwrap() <= high && high - low < 0.2, "{scheme}: {observed:?}");
+        assert!(
+            low <= observed.order.unwrap() && observed.order.unwrap() <= high && high - low < 0.2,
+            "{scheme}: {observed:?}"
+        );
     }
 }
 
@@ -155,8 +168,10 @@ fn the_same_scheme_in_python_c_and_rust_has_the_same_factors_and_verdicts() {
     assert_eq!(status, 1, "{said}");
     let results = results.unwrap();
     let of = |scheme: &str| -> (Vec<Verdict>, Vec<[f64; 2]>) {
-        let verdicts = results.verdicts.iter().filter(|record| record.scheme == scheme).map(|record| record.verdict).collect();
-        let study = results.studies.iter().find(|study| study.scheme == scheme && study.id.starts_with("modes")).unwrap();
+        let verdicts =
+            results.verdicts.iter().filter(|record| record.scheme == scheme).map(|record| record.verdict).collect();
+        let study =
+            results.studies.iter().find(|study| study.scheme == scheme && study.id.starts_with("modes")).unwrap();
         let Study::Modes(record) = &study.study else { panic!("a modes study") };
         (verdicts, record.modes.iter().map(|mode| mode.amplification).collect())
     };
@@ -212,7 +227,8 @@ fn a_negative_diffusivity_is_refused_as_ill_posed() {
 #[test]
 fn a_scheme_that_fails_costs_its_own_claims_and_no_others() {
     let schemes = support::schemes();
-    let faulty = |fault: &str| format!("command = [{:?}, {:?}, {fault:?}]", support::python(), schemes.join("faulty.py"));
+    let faulty =
+        |fault: &str| format!("command = [{:?}, {:?}, {fault:?}]", support::python(), schemes.join("faulty.py"));
     let claims = format!(
         "[schemes.good]\nclassical = \"lax-wendroff\"\n[schemes.missing]\ncommand = [\"./no-such-program\"]\n[schemes.short]\n{}\n\
          [schemes.wrong_equation]\nclassical = \"explicit-euler-diffusion\"\n\
@@ -224,7 +240,9 @@ fn a_scheme_that_fails_costs_its_own_claims_and_no_others() {
     let results = results.unwrap();
     let verdict = |scheme: &str| results.verdicts.iter().find(|record| record.scheme == scheme).unwrap();
     assert_eq!(verdict("good").verdict, Verdict::Upheld, "{said}");
-    for (scheme, sentence) in [("missing", "no-such-program"), ("short", "value"), ("wrong_equation", "`diffusion`, not `advection`")] {
+    for (scheme, sentence) in
+        [("missing", "no-such-program"), ("short", "value"), ("wrong_equation", "`diffusion`, not `advection`")]
+    {
         assert_eq!(verdict(scheme).verdict, Verdict::Undecided, "{said}");
         assert!(verdict(scheme).reason.contains(sentence), "{scheme}: {}", verdict(scheme).reason);
     }

@@ -7,7 +7,10 @@ use gridassay_reference::problem::Problem;
 use toml::Spanned;
 
 use super::file::{CellsEntry, InvariantsEntry, ModesEntry, NumberOrList, OrderEntry, StabilityEntry};
-use super::plan::{InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim, StabilityRequest, StepSize};
+use super::plan::{
+    InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim,
+    StabilityRequest, StepSize,
+};
 use super::problem::ClaimsError;
 use super::read::Reader;
 use crate::record::{Invariant, Norms, Parameters, Refinement, StepNumber};

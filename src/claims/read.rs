@@ -65,7 +65,10 @@ pub fn plan_of(path: &Path, text: &str, folder: &Path) -> Result<Plan, ClaimsErr
         reader.state(&mut claims, "invariants", &known, entry.get_ref().scheme.as_ref(), kind)?;
     }
     if claims.is_empty() {
-        return Err(ClaimsError::whole(path, "states no claim; add a table [[order]], [[modes]], [[stability]] or [[invariants]]"));
+        return Err(ClaimsError::whole(
+            path,
+            "states no claim; add a table [[order]], [[modes]], [[stability]] or [[invariants]]",
+        ));
     }
     plan.claims = claims;
     Ok(plan)

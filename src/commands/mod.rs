@@ -13,6 +13,7 @@ mod problems;
 mod single;
 mod source;
 mod stability;
+mod uncertainty;
 
 use std::process::ExitCode;
 
@@ -42,6 +43,7 @@ enum Command {
     Invariants(invariants::Invariants),
     Problems(problems::Problems),
     Source(source::Source),
+    Uncertainty(uncertainty::Uncertainty),
 }
 
 impl Program {
@@ -55,6 +57,7 @@ impl Program {
             Command::Invariants(command) => command.run(),
             Command::Problems(command) => command.run(),
             Command::Source(command) => command.run(),
+            Command::Uncertainty(command) => command.run(),
         };
         match done {
             Ok(outcome) => outcome.exit_code(),

@@ -72,7 +72,8 @@ impl Source {
         for (name, value) in given {
             enter(&mut scope, &mut parameters, &equation, name, value)?;
         }
-        let known: Vec<String> = equation.fields(dimensions).into_iter().chain(equation.primitives(dimensions)).collect();
+        let known: Vec<String> =
+            equation.fields(dimensions).into_iter().chain(equation.primitives(dimensions)).collect();
         let mut solution = Solution::new();
         for (name, text) in lines {
             let value = parse(text, &scope)?;
@@ -138,10 +139,15 @@ fn enter(
 
 /// The source of a problem as it stands, its parameters as numbers.
 fn of_problem(problem: &Problem) -> Result<Listing, Box<dyn std::error::Error>> {
-    let expressions = |of: &dyn Fn(usize) -> Option<Expression>| (0..problem.fields().len()).map(of).collect::<Option<Vec<_>>>();
+    let expressions =
+        |of: &dyn Fn(usize) -> Option<Expression>| (0..problem.fields().len()).map(of).collect::<Option<Vec<_>>>();
     let source = |field: usize| problem.source_expression(field).cloned();
     let Some(sources) = expressions(&source) else {
-        return Err(format!("the problem `{}` has no source term: its solution satisfies the equation by itself", problem.name()).into());
+        return Err(format!(
+            "the problem `{}` has no source term: its solution satisfies the equation by itself",
+            problem.name()
+        )
+        .into());
     };
     Ok(Listing::of_problem(problem, sources))
 }
@@ -151,7 +157,8 @@ fn parse(text: &str, scope: &Scope) -> Result<Expression, String> {
 }
 
 fn assignment<'a>(option: &str, line: &'a str) -> Result<(&'a str, &'a str), String> {
-    let (name, text) = line.split_once('=').ok_or_else(|| format!("{option} \"{line}\" is not of the form \"u = expression\""))?;
+    let (name, text) =
+        line.split_once('=').ok_or_else(|| format!("{option} \"{line}\" is not of the form \"u = expression\""))?;
     Ok((name.trim(), text.trim()))
 }
 
@@ -164,8 +171,7 @@ fn split_parameter(text: &str) -> (&str, Option<&str>) {
 
 /// The least number of dimensions that holds every coordinate that a line names.
 fn dimensions_of(lines: &[(&str, &str)]) -> usize {
-    let names = |text: &str, name: &str| {
-        text.split(|c: char| !(c.is_alphanumeric() || c == '_')).any(|word| word == name)
-    };
+    let names =
+        |text: &str, name: &str| text.split(|c: char| !(c.is_alphanumeric() || c == '_')).any(|word| word == name);
     (2..=3).rev().find(|d| lines.iter().any(|(_, text)| names(text, COORDINATES[d - 1]))).unwrap_or(1)
 }

@@ -48,7 +48,8 @@ fn blocks(dossier: &Dossier<'_>) -> Vec<Block> {
     blocks.push(Block::Section("Stable steps"));
     claims(&mut blocks, results, "stability", "No claim was made about the stable steps.");
     described(&mut blocks, results, "stability");
-    let rest = results.verdicts.iter().filter(|verdict| !["order", "modes", "stability"].contains(&kind(results, verdict)));
+    let rest =
+        results.verdicts.iter().filter(|verdict| !["order", "modes", "stability"].contains(&kind(results, verdict)));
     let rest: Vec<_> = rest.map(|verdict| claim(results, verdict)).collect();
     if !rest.is_empty() {
         blocks.extend([Block::Section("Other claims"), Block::Items(rest)]);
@@ -83,7 +84,9 @@ fn kind(results: &Results, verdict: &VerdictRecord) -> &'static str {
     let evidence = results.studies.iter().find(|study| verdict.evidence.contains(&study.id));
     match evidence {
         Some(study) => study.study.kind(),
-        None => ["order", "modes", "stability"].into_iter().find(|kind| verdict.claim.starts_with(kind)).unwrap_or("other"),
+        None => {
+            ["order", "modes", "stability"].into_iter().find(|kind| verdict.claim.starts_with(kind)).unwrap_or("other")
+        }
     }
 }
 

@@ -28,7 +28,10 @@ fn the_schema_is_what_the_types_say() {
         write_text(Path::new(SCHEMA), &today).unwrap();
     }
     let kept = std::fs::read_to_string(SCHEMA).unwrap_or_default();
-    assert!(kept == today, "reports/results.schema.json is not current: UPDATE_SCHEMA=1 cargo test --test dossier schema");
+    assert!(
+        kept == today,
+        "reports/results.schema.json is not current: UPDATE_SCHEMA=1 cargo test --test dossier schema"
+    );
 }
 
 /// What the validator says of `files`; `None` where there is no Python with jsonschema, as `tests/run` installs it.
@@ -46,10 +49,11 @@ fn faults(files: &[&Path]) -> Option<String> {
 
 #[test]
 fn results_keep_to_the_schema_and_a_spoilt_file_does_not() {
-    let files: Vec<_> = [("one", sample::one_scheme()), ("many", sample::many_schemes(4)), ("hostile", sample::hostile())]
-        .into_iter()
-        .map(|(name, results)| dossier(&format!("schema-{name}"), &results).join("results.json"))
-        .collect();
+    let files: Vec<_> =
+        [("one", sample::one_scheme()), ("many", sample::many_schemes(4)), ("hostile", sample::hostile())]
+            .into_iter()
+            .map(|(name, results)| dossier(&format!("schema-{name}"), &results).join("results.json"))
+            .collect();
     let paths: Vec<_> = files.iter().map(|path| path.as_path()).collect();
     let Some(found) = faults(&paths) else { return };
     assert_eq!(found, "");

@@ -142,9 +142,10 @@ fn claim<'a>(dossier: &'a Dossier<'a>, verdict: &'a VerdictRecord) -> ClaimView<
     let kind = match first.map(|index| &studies[index].study) {
         Some(study) => study.kind(),
         // Without evidence the claim's id still tells its kind: it begins with it.
-        None => {
-            ["order", "modes", "stability", "invariants"].into_iter().find(|kind| verdict.claim.starts_with(kind)).unwrap_or("other")
-        }
+        None => ["order", "modes", "stability", "invariants"]
+            .into_iter()
+            .find(|kind| verdict.claim.starts_with(kind))
+            .unwrap_or("other"),
     };
     let evidence =
         verdict.evidence.iter().map(|id| Link { anchor: place(id).map(|index| dossier.ids[index].clone()), text: id });
@@ -169,6 +170,7 @@ fn study_view<'a>(results: &'a Results, study: &'a StudyRecord, id: &'a str, fig
             Study::Modes(_) => "modes",
             Study::Stability(_) => "stability",
             Study::Invariants(_) => "invariants",
+            Study::Uncertainty(_) => "uncertainty",
         },
         heading: facts::heading(study),
         findings: facts::findings(study),

@@ -160,8 +160,7 @@ mod tests {
     #[test]
     fn a_drift_is_relative_to_the_moduli_and_tells_its_step() {
         let states = vec![vec![vec![1.0, -1.0]], vec![vec![1.0, -1.0]], vec![vec![1.5, -1.0]]];
-        let history =
-            History { label: String::new(), family: Family::Mixed, states, blew_up: None, stopped: None };
+        let history = History { label: String::new(), family: Family::Mixed, states, blew_up: None, stopped: None };
         let drift = Drift::of(&history, 0, &[2.0, 2.0]);
         assert_eq!((drift.relative, drift.step), (0.2, 2));
     }

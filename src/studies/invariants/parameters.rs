@@ -122,12 +122,14 @@ pub fn step(request: &InvariantsRequest, parameters: &Parameters, grid: &Grid) -
         (rate > 0.0).then_some(rate)
     });
     let spreading_of = |nu: f64| (0..d).map(|axis| nu / grid.spacing(axis).powi(2)).fold(0.0, f64::max);
-    let missing = |number: &str, what: &str| Stop::Request(format!("`{number}` is given, but nothing {what} in `{equation}`"));
+    let missing =
+        |number: &str, what: &str| Stop::Request(format!("`{number}` is given, but nothing {what} in `{equation}`"));
     if let Some(courant) = request.courant {
         let step = courant / crossings.ok_or_else(|| missing("courant", "moves"))?;
         if let Some(number) = request.diffusion_number {
             if !parameters.contains_key("diffusivity") || request.parameters.contains_key("diffusivity") {
-                let message = "give one of `courant` and `diffusion_number`: with the parameters given, the other follows";
+                let message =
+                    "give one of `courant` and `diffusion_number`: with the parameters given, the other follows";
                 return Err(Stop::Request(message.to_owned()));
             }
             parameters.insert("diffusivity".to_owned(), vec![number / (step * spreading_of(1.0))]);

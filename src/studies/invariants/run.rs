@@ -137,8 +137,7 @@ pub fn histories(
     families: &[Family],
     seed: u64,
 ) -> Result<Vec<History>, Stop> {
-    let patterns: &[Pattern] =
-        if trial.case.equation == "incompressible" { &[Pattern::Smooth] } else { &Pattern::ALL };
+    let patterns: &[Pattern] = if trial.case.equation == "incompressible" { &[Pattern::Smooth] } else { &Pattern::ALL };
     let mut histories = Vec::new();
     for family in families {
         // Stronger states have faster signals: the Courant number is what stays.

@@ -130,7 +130,8 @@ impl Place<'_> {
             rest /= length;
         }
         let mean = |of: &dyn Fn(usize, usize) -> f64| along.iter().map(|(i, n)| of(*i, *n)).sum::<f64>() / d;
-        let all = |holds: &dyn Fn(usize, usize) -> bool| if along.iter().all(|(i, n)| holds(*i, *n)) { 1.0 } else { 0.0 };
+        let all =
+            |holds: &dyn Fn(usize, usize) -> bool| if along.iter().all(|(i, n)| holds(*i, *n)) { 1.0 } else { 0.0 };
         match pattern {
             Pattern::Spike => all(&|i, _| i == 0),
             Pattern::Step => all(&|i, n| 3 * i < n.max(3)),
@@ -158,12 +159,7 @@ fn stair(cell: usize) -> f64 {
 }
 
 /// The fields from quantities between 0 and 1.
-fn compose(
-    trial: &Trial,
-    family: Family,
-    phi: &dyn Fn(usize, usize) -> f64,
-    length: usize,
-) -> Result<Fields, Stop> {
+fn compose(trial: &Trial, family: Family, phi: &dyn Fn(usize, usize) -> f64, length: usize) -> Result<Fields, Stop> {
     let (equation, d) = (trial.case.equation.as_str(), trial.case.dimensions);
     let known = equation_fields(equation, d).unwrap_or_default();
     let place = |name: &String| {

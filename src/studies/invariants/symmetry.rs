@@ -18,7 +18,13 @@ const STEPS: usize = 12;
 ///
 /// # Errors
 /// The mirrored problem is not offered, or the scheme refused or failed.
-pub fn mirror(session: &mut Session, trial: &Trial, prepared: &Prepared, seed: u64, tally: &mut Tally) -> Result<(), Stop> {
+pub fn mirror(
+    session: &mut Session,
+    trial: &Trial,
+    prepared: &Prepared,
+    seed: u64,
+    tally: &mut Tally,
+) -> Result<(), Stop> {
     let all: Vec<usize> = (0..trial.case.dimensions).collect();
     let sets = if trial.case.equation == "burgers" { vec![all] } else { all.iter().map(|axis| vec![*axis]).collect() };
     for axes in sets {
@@ -29,7 +35,16 @@ pub fn mirror(session: &mut Session, trial: &Trial, prepared: &Prepared, seed: u
             return Err(Stop::NotOffered("the mirrored problem is offered with other positions only".to_owned()));
         }
         let words: Vec<&str> = axes.iter().map(|axis| ["x", "y", "z"][*axis]).collect();
-        compare(session, trial, &twin, prepared, seed, &format!("mirrored in {}", words.join(" and ")), &mirror, tally)?;
+        compare(
+            session,
+            trial,
+            &twin,
+            prepared,
+            seed,
+            &format!("mirrored in {}", words.join(" and ")),
+            &mirror,
+            tally,
+        )?;
     }
     Ok(())
 }
@@ -38,7 +53,13 @@ pub fn mirror(session: &mut Session, trial: &Trial, prepared: &Prepared, seed: u
 ///
 /// # Errors
 /// The exchanged problem is not offered, or the scheme refused or failed.
-pub fn exchange(session: &mut Session, trial: &Trial, prepared: &Prepared, seed: u64, tally: &mut Tally) -> Result<(), Stop> {
+pub fn exchange(
+    session: &mut Session,
+    trial: &Trial,
+    prepared: &Prepared,
+    seed: u64,
+    tally: &mut Tally,
+) -> Result<(), Stop> {
     if trial.case.dimensions < 2 {
         return Err(Stop::NotOffered("there is no y to exchange with x in one dimension".to_owned()));
     }
@@ -59,7 +80,16 @@ pub fn exchange(session: &mut Session, trial: &Trial, prepared: &Prepared, seed:
     if twin.names != trial.names {
         return Err(Stop::NotOffered("the exchanged problem is offered with other fields only".to_owned()));
     }
-    compare(session, trial, &twin, prepared, seed, "with x and y exchanged", &|fields| exchanged(trial, prepared, fields), tally)
+    compare(
+        session,
+        trial,
+        &twin,
+        prepared,
+        seed,
+        "with x and y exchanged",
+        &|fields| exchanged(trial, prepared, fields),
+        tally,
+    )
 }
 
 /// Runs the problem and its twin from states that correspond, and compares what corresponds.

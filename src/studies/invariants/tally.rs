@@ -133,7 +133,9 @@ impl Tally {
                 "none: the same question has the same answer to the last bit".to_owned()
             }
             Some(worst) if worst.allowed == self.tolerance => "the claimed tolerance".to_owned(),
-            Some(_) => "rounding: eps times the steps times (16 + cells), relative to the size of the values".to_owned(),
+            Some(_) => {
+                "rounding: eps times the steps times (16 + cells), relative to the size of the values".to_owned()
+            }
         }
     }
 

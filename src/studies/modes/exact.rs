@@ -31,7 +31,8 @@ impl<'a> Exact<'a> {
     pub fn branches(&self, theta: &[f64]) -> Result<Vec<Branch>, Stop> {
         let grid = &self.setting.case.grid;
         let wavevector: Vec<f64> = theta.iter().enumerate().map(|(axis, theta)| theta / grid.spacing(axis)).collect();
-        exact_branches(&self.equation, &self.setting.parameters, &wavevector).map_err(|error| Stop::Request(error.to_string()))
+        exact_branches(&self.equation, &self.setting.parameters, &wavevector)
+            .map_err(|error| Stop::Request(error.to_string()))
     }
 
     /// Re d(omega dt) / dtheta of branch `index` in 1-D. The dispersion relations are polynomials of degree three at most on either side of
@@ -42,7 +43,8 @@ impl<'a> Exact<'a> {
     pub fn group(&self, theta: f64, index: usize) -> Result<f64, Stop> {
         // Towards larger |k|, so that the kink of |k| at zero is not crossed.
         let d = if theta < 0.0 { -PI / 8.0 } else { PI / 8.0 };
-        let phase = |theta: f64| -> Result<f64, Stop> { Ok(self.branches(&[theta])?[index].omega.re * self.setting.step) };
+        let phase =
+            |theta: f64| -> Result<f64, Stop> { Ok(self.branches(&[theta])?[index].omega.re * self.setting.step) };
         let values = [phase(theta)?, phase(theta + d)?, phase(theta + 2.0 * d)?, phase(theta + 3.0 * d)?];
         Ok((-11.0 * values[0] + 18.0 * values[1] - 9.0 * values[2] + 2.0 * values[3]) / (6.0 * d))
     }

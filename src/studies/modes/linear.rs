@@ -248,4 +248,3 @@ pub fn scalar_records(branch: &str, modes: &[Mode], leaked: &[f64]) -> Vec<ModeR
     };
     modes.iter().zip(errors(modes)).zip(leaked).map(record).collect()
 }
-

@@ -18,7 +18,12 @@ const TOLD: usize = 3;
 const SAMPLES: usize = 6;
 
 /// The leading terms; `None` for systems, for several dimensions, and where no term stands out of rounding.
-pub fn equation(setting: &Setting, exact: &Exact<'_>, stencil: Option<&Stencil>, modes: &[ModeRecord]) -> Option<ModifiedEquation> {
+pub fn equation(
+    setting: &Setting,
+    exact: &Exact<'_>,
+    stencil: Option<&Stencil>,
+    modes: &[ModeRecord],
+) -> Option<ModifiedEquation> {
     if setting.case.dimensions != 1 || setting.names.len() != 1 {
         return None;
     }
