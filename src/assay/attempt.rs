@@ -4,6 +4,9 @@
 //! offers both signs, every study is made twice, the second time with the velocity turned round, and a claim stands only if both
 //! uphold it.
 
+use std::time::Instant;
+
+use super::control::add_control;
 use crate::claims::{
     InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim,
     StabilityRequest,
@@ -39,12 +42,16 @@ pub fn attempt_order(session: &mut Session, claim: &OrderClaim, place: Place<'_>
     let enough = |record: &OrderRecord| verdict::order::decides(claim, record);
     let make = |session: &mut Session, request: &OrderRequest| order::run(session, request, Some(&enough), place.seed);
     let mirrored = mirrored_order(&claim.request);
+    let begun = Instant::now();
     let studies = both(session, place, &claim.request, mirrored.as_ref(), make);
+    let took = begun.elapsed() / studies.len().max(1) as u32;
     let judge = |study: &StudyRecord| match &study.study {
         Study::Order(record) => verdict::order::judge(claim, study, record),
         _ => unreachable!("an order study was made"),
     };
-    judged(studies, judge)
+    let mut attempt = judged(studies, judge);
+    add_control(session, claim, &mut attempt, took);
+    attempt
 }
 
 /// Tries a claim about modes.

@@ -1,6 +1,7 @@
 //! One run from a plan to its results: opens the schemes, asks for the studies, has them judged, keeps the record.
 
 mod attempt;
+mod control;
 mod expect;
 pub mod progress;
 mod run;
@@ -8,4 +9,4 @@ pub mod schemes;
 
 pub use attempt::{Attempt, Place, attempt_invariants, attempt_modes, attempt_order, attempt_stability};
 pub use expect::{Expectation, expect};
-pub use run::{run, single};
+pub use run::{of_table, run, single};

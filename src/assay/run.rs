@@ -8,7 +8,7 @@ use super::schemes::{Schemes, session_record};
 use crate::claims::{Claim, ClaimKind, Plan};
 use crate::host::Session;
 use crate::record::{
-    FORMAT, RecordError, Results, RunRecord, SchemeRecord, StudyRecord, VERSION, Verdict, VerdictRecord, utc_now,
+    FORMAT, RecordError, Results, RunRecord, SchemeRecord, Study, StudyRecord, VERSION, Verdict, VerdictRecord, utc_now,
 };
 use crate::studies::Made;
 use crate::verdict::{Judgement, words};
@@ -104,6 +104,20 @@ fn name_schemes(results: &mut Results, plan: &Plan, schemes: &mut Schemes<'_>) {
         digest: None,
         fault: None,
     };
+}
+
+/// A study of a table, which no scheme answered, as results. The table stands where the scheme would.
+pub fn of_table(command_line: Vec<String>, study: StudyRecord) -> Results {
+    let digest = match &study.study {
+        Study::Uncertainty(record) => Some(record.digest.clone()),
+        _ => None,
+    };
+    let plan = Plan { claims_file: None, folder: ".".into(), schemes: Default::default(), seed: 1, claims: Vec::new() };
+    let mut results = empty(&plan, command_line);
+    let scheme = study.scheme.clone();
+    results.scheme = SchemeRecord { name: scheme, route: "table".to_owned(), digest, ..SchemeRecord::default() };
+    results.studies.push(study);
+    results
 }
 
 /// One study without a claim, as results.

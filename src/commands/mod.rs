@@ -16,6 +16,7 @@ mod single;
 mod source;
 mod splice;
 mod stability;
+mod uncertainty;
 
 use std::process::ExitCode;
 
@@ -48,6 +49,7 @@ enum Command {
     Contrast(contrast::Contrast),
     Redraw(redraw::Redraw),
     Splice(splice::Splice),
+    Uncertainty(uncertainty::Uncertainty),
 }
 
 impl Program {
@@ -64,6 +66,7 @@ impl Program {
             Command::Contrast(command) => command.run(),
             Command::Redraw(command) => command.run(),
             Command::Splice(command) => command.run(),
+            Command::Uncertainty(command) => command.run(),
         };
         match done {
             Ok(outcome) => outcome.exit_code(),

@@ -52,7 +52,8 @@ fn empty_plan(scheme: &Scheme, output: &Output) -> Result<Plan, String> {
     })
 }
 
-fn show(results: &Results, output: &Output) -> Result<Outcome, Box<dyn std::error::Error>> {
+/// Shows results as was asked, and leaves a dossier where one is wanted.
+pub fn show(results: &Results, output: &Output) -> Result<Outcome, Box<dyn std::error::Error>> {
     if let Some(folder) = &output.out {
         write_results(&dossier::prepare_folder(folder)?, results)?;
         dossier::write_dossier(folder, results)?;

@@ -18,6 +18,7 @@ mod summary;
 mod table;
 mod table_files;
 pub mod terminal;
+mod uncertainty;
 mod words;
 
 use std::path::{Path, PathBuf};

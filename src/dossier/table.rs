@@ -4,8 +4,8 @@ use serde::Serialize;
 
 use super::chart::thin;
 use super::clean::visible;
-use super::invariants;
 use super::words;
+use super::{invariants, uncertainty};
 use crate::record::{ModesRecord, OrderRecord, StabilityRecord, Study, StudyRecord};
 
 /// A table.
@@ -54,6 +54,7 @@ pub(crate) fn of_study(study: &StudyRecord, most: usize) -> Vec<Table> {
         Study::Order(record) => order_tables(record),
         Study::Modes(record) => modes_tables(record, most),
         Study::Invariants(record) => invariants::tables(record),
+        Study::Uncertainty(record) => uncertainty::tables(record),
         Study::Stability(record) => stability_tables(record, most),
     }
 }

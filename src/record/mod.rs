@@ -12,6 +12,7 @@ mod model;
 mod modes;
 mod order;
 mod stability;
+mod uncertainty;
 
 pub use file::{RecordError, read_results, write_bytes, write_results, write_text};
 pub use invariants::{Invariant, InvariantCheck, InvariantSetting, InvariantsRecord, WorstPlace};
@@ -23,5 +24,6 @@ pub use model::{
 pub use modes::{
     ClaimedSymbol, Linearity, ModeRecord, ModesRecord, ModifiedEquation, NeighbourDifference, StencilEntry,
 };
-pub use order::{Level, Norms, Observed, OrderRecord, Refinement};
+pub use order::{Control, FunctionalValue, INTERIOR, Level, Norms, Observed, OrderRecord, Refinement, STRIP, Trial};
 pub use stability::{Confirmation, StabilityRecord, StepNumber, WeakGrowth};
+pub use uncertainty::{ConvergenceKind, GridTriple, QuantityUncertainty, UncertaintyRecord};

@@ -15,6 +15,7 @@ pub mod selection;
 pub mod setting;
 pub mod speed;
 pub mod stability;
+pub mod uncertainty;
 
 mod made;
 mod stop;

@@ -4,7 +4,7 @@ use super::Judgement;
 use super::words::norm as norm_words;
 use crate::analysis::order::{self, Ladder, Outcome, Settings, observe};
 use crate::claims::OrderClaim;
-use crate::record::{OrderRecord, StudyRecord};
+use crate::record::{Control, INTERIOR, OrderRecord, STRIP, StudyRecord, Verdict};
 
 /// Weighs a claimed order: every field that it is about must uphold it.
 pub fn judge(claim: &OrderClaim, study: &StudyRecord, record: &OrderRecord) -> Judgement {
@@ -13,12 +13,9 @@ pub fn judge(claim: &OrderClaim, study: &StudyRecord, record: &OrderRecord) -> J
         let reason = format!("the ladder ended after {measured} level(s): {stopped}");
         return Judgement::undecided(reason, "a scheme that can be run on every level");
     }
-    let fields: Vec<&String> = match &claim.field {
-        Some(field) => vec![field],
-        None => record.levels.first().map(|level| level.errors.keys().collect()).unwrap_or_default(),
-    };
+    let fields = judged_fields(claim, record);
     let several = fields.len() > 1;
-    let one = |field: &&String| {
+    let one = |field: &String| {
         let mut judgement = judge_field(claim, record, field);
         if several {
             judgement.reason = format!("`{field}`: {}", judgement.reason);
@@ -28,12 +25,92 @@ pub fn judge(claim: &OrderClaim, study: &StudyRecord, record: &OrderRecord) -> J
     Judgement::all(fields.iter().map(one).collect())
 }
 
+/// The fields that a claim is about.
+pub fn judged_fields(claim: &OrderClaim, record: &OrderRecord) -> Vec<String> {
+    match &claim.field {
+        Some(field) => vec![field.clone()],
+        None => record.levels.first().map(|level| level.errors.keys().cloned().collect()).unwrap_or_default(),
+    }
+}
+
 /// Whether a record decides the claim: what ends the lengthening of a ladder.
 pub fn decides(claim: &OrderClaim, record: &OrderRecord) -> bool {
-    let fields =
-        record.levels.first().map(|level| level.errors.keys().cloned().collect::<Vec<_>>()).unwrap_or_default();
-    let about = fields.iter().filter(|field| claim.field.as_ref().is_none_or(|about| about == *field));
-    about.map(|field| judge_field(claim, record, field)).all(|judgement| judgement.decided_by.is_none())
+    let fields = judged_fields(claim, record);
+    fields.iter().map(|field| judge_field(claim, record, field)).all(|judgement| judgement.decided_by.is_none())
+}
+
+/// The mildest verdict on any field: refuted only where every field is. A control with an error in every field must be seen in each.
+pub fn mildest(claim: &OrderClaim, record: &OrderRecord) -> Verdict {
+    let fields = judged_fields(claim, record);
+    fields.iter().map(|field| judge_field(claim, record, field).verdict).min().unwrap_or(Verdict::Undecided)
+}
+
+/// An upheld judgement in the light of its control: the detection limit is told, and a study that does not refute even a large error is blind.
+pub fn with_control(mut upheld: Judgement, control: &Control) -> Judgement {
+    let order = short(control.order);
+    match (control.smallest_refuted, control.on_finest, &control.skipped) {
+        (Some(size), Some(on_finest), _) => {
+            let told = format!(
+                "; control: an added error of order {order} is refuted from size {} on ({} of the solution on the finest level)",
+                short(size),
+                short(on_finest)
+            );
+            upheld.reason.push_str(&told);
+            upheld
+        }
+        (_, _, Some(skipped)) => {
+            upheld.reason.push_str(&format!("; no detection limit: {skipped}"));
+            upheld
+        }
+        _ => {
+            let largest = control.tried.iter().map(|trial| trial.size).fold(0.0, f64::max);
+            let tried = if largest > 0.0 { format!("up to size {}", short(largest)) } else { "of any size".to_owned() };
+            let reason = format!(
+                "{}; but an added error of order {order}, {tried}, is not refuted either: the study is blind to it",
+                upheld.reason
+            );
+            let decided_by = "a finer ladder or a smaller tolerance, with which the control is refuted";
+            Judgement::undecided(reason, decided_by)
+        }
+    }
+}
+
+/// Where a field misses the claim: the orders in the interior and along the sides, where the domain has sides and any of them can be told.
+fn whereabouts(claim: &OrderClaim, record: &OrderRecord, field: &str) -> Option<String> {
+    let order = |place: &str| record.places.get(place)?.get(field)?.get(&claim.norm)?.order;
+    let inside = order(INTERIOR);
+    let sides: Vec<(&String, f64)> =
+        record.places.keys().filter(|place| *place != INTERIOR).filter_map(|side| Some((side, order(side)?))).collect();
+    let least = claim.expect - claim.tolerance;
+    let short_of: Vec<String> = sides
+        .iter()
+        .filter(|(_, order)| *order < least)
+        .map(|(side, order)| format!("{order:.2} within {STRIP} cells of {side}"))
+        .collect();
+    match inside {
+        Some(inside) if inside < least && short_of.is_empty() => {
+            Some(format!("the order is {inside:.2} in the interior too, {STRIP} cells and more from every side"))
+        }
+        Some(inside) => Some(format!("the order is {inside:.2} in the interior, {}", listed(&short_of, &sides))),
+        None if short_of.is_empty() => None,
+        None => Some(format!("the order is {}", listed(&short_of, &sides))),
+    }
+}
+
+/// The sides that fall short, or all of them where none does.
+fn listed(short_of: &[String], sides: &[(&String, f64)]) -> String {
+    if short_of.is_empty() {
+        let all: Vec<String> =
+            sides.iter().map(|(side, order)| format!("{order:.2} within {STRIP} cells of {side}")).collect();
+        return all.join(", ");
+    }
+    short_of.join(", ")
+}
+
+/// Two significant digits.
+fn short(value: f64) -> String {
+    let rounded: f64 = format!("{value:.1e}").parse().unwrap_or(value);
+    if rounded == 0.0 || (1e-3..1e4).contains(&rounded) { format!("{rounded}") } else { format!("{rounded:e}") }
 }
 
 fn judge_field(claim: &OrderClaim, record: &OrderRecord, field: &str) -> Judgement {
@@ -46,6 +123,9 @@ fn judge_field(claim: &OrderClaim, record: &OrderRecord, field: &str) -> Judgeme
     let mut reason = format!("in {}, {}", norm_words(&claim.norm), judged.reason);
     if judged.beyond_claim {
         reason.push_str("; that is more than half an order above the claim, which is no mistake but may mean that the problem is blind to a term");
+    }
+    if judged.outcome != Outcome::Upheld {
+        reason.extend(whereabouts(claim, record, field).map(|place| format!("; {place}")));
     }
     match judged.outcome {
         Outcome::Upheld => Judgement::upheld(reason),

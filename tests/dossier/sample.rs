@@ -105,7 +105,7 @@ pub fn order(scheme: &Scheme, cells: &[usize], c: f64) -> OrderRecord {
             steps: Some(steps as usize),
             errors: BTreeMap::from([("u".into(), norms)]),
             floor: BTreeMap::from([("u".into(), Norms { l1: Some(1e-15), l2: Some(1e-15), linf: Some(3e-15) })]),
-            note: None,
+            ..Level::default()
         }
     };
     let levels: Vec<_> = cells.iter().map(level).collect();
@@ -141,6 +141,7 @@ pub fn order(scheme: &Scheme, cells: &[usize], c: f64) -> OrderRecord {
         )]),
         observed: BTreeMap::from([("u".into(), BTreeMap::from(observed))]),
         levels,
+        ..OrderRecord::default()
     }
 }
 

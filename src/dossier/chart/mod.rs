@@ -105,7 +105,7 @@ pub(crate) fn of_studies(results: &Results, ids: &[String]) -> Vec<Vec<Chart>> {
     each.map(|(study, id)| match &study.study {
         Study::Modes(record) => modes::charts(id, record),
         Study::Order(record) => convergence::charts(id, record, results, &study.id),
-        Study::Invariants(_) => Vec::new(),
+        Study::Invariants(_) | Study::Uncertainty(_) => Vec::new(),
         Study::Stability(record) => stable_range::charts(id, record, results, &study.id),
     })
     .collect()

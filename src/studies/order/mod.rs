@@ -1,8 +1,11 @@
 //! The refinement study: errors on a ladder of grids and steps.
 
+pub mod control;
+mod functionals;
 mod ladder;
 mod level;
 mod observe;
+mod places;
 
 use std::collections::BTreeMap;
 use std::time::{Duration, Instant};
@@ -17,6 +20,7 @@ use crate::host::Session;
 use crate::record::{Level, Norms, OrderRecord, Refinement, Study};
 
 pub use observe::observed;
+use observe::{observed_at_places, observed_functionals};
 
 /// How long a ladder that the harness chose itself may go on growing.
 const BUDGET: Duration = Duration::from_secs(8);
@@ -36,6 +40,8 @@ pub fn run(
     let mut notes = Vec::new();
     let ended = measure(session, request, enough, seed, &mut record, &mut notes);
     record.observed = observed(&record);
+    record.places = observed_at_places(&record);
+    record.functionals = observed_functionals(&record);
     Made::new(Study::Order(record), ended, notes)
 }
 
@@ -54,6 +60,9 @@ fn empty(request: &OrderRequest) -> OrderRecord {
         levels: Vec::new(),
         solution_size: BTreeMap::new(),
         observed: BTreeMap::new(),
+        places: BTreeMap::new(),
+        functionals: BTreeMap::new(),
+        control: None,
     }
 }
 
@@ -80,11 +89,11 @@ fn measure(
     let mut next = 0;
     while let Some(rung) = rungs.get(next).cloned() {
         let took = Instant::now();
-        let answer = level::run(session, problem, &rung, request.final_time, seed.wrapping_add(next as u64))?;
+        let answer = level::run(session, request, &rung, level::Variation::Shaken(seed.wrapping_add(next as u64)))?;
         record.operation = answer.operation.name().to_owned();
         match request.refine {
-            Refinement::Time => push_difference(record, &rung, before.as_ref(), &answer),
-            _ => push_error(record, &rung, problem, &answer),
+            Refinement::Time => push_difference(record, &rung, request, before.as_ref(), &answer),
+            _ => push_error(record, &rung, request, &answer),
         }
         before = Some(answer);
         next += 1;
@@ -106,7 +115,9 @@ fn may_grow(request: &OrderRequest, finest: &Rung, would_take: Duration) -> bool
     request.cells.is_none() && request.refine != Refinement::Time && cells <= MOST_CELLS && would_take < BUDGET
 }
 
-fn push_error(record: &mut OrderRecord, rung: &Rung, problem: &gridassay_reference::problem::Problem, answer: &Answer) {
+fn push_error(record: &mut OrderRecord, rung: &Rung, request: &OrderRequest, answer: &Answer) {
+    let problem = &request.problem;
+    let time = if problem.is_steady() { 0.0 } else { request.final_time };
     let h = (problem.upper()[0] - problem.lower()[0]) / rung.cells[0] as f64;
     let errors = level::differences(&answer.layout, &answer.state, &answer.exact);
     let floor = level::differences(&answer.layout, &answer.shaken, &answer.state);
@@ -119,12 +130,20 @@ fn push_error(record: &mut OrderRecord, rung: &Rung, problem: &gridassay_referen
         steps: rung.steps,
         errors: by_field(&answer.names, errors),
         floor: by_field(&answer.names, floor),
+        places: places::norms(problem, &rung.cells, answer, &answer.state, &answer.exact),
+        functionals: functionals::values(problem, time, answer),
         note: level::not_finite(&answer.names, &answer.state),
     });
 }
 
 /// Where the step alone is refined: the difference of this rung from the one before stands with the one before, whose error is the larger.
-fn push_difference(record: &mut OrderRecord, rung: &Rung, before: Option<&Answer>, answer: &Answer) {
+fn push_difference(
+    record: &mut OrderRecord,
+    rung: &Rung,
+    request: &OrderRequest,
+    before: Option<&Answer>,
+    answer: &Answer,
+) {
     if let (Some(before), Some(level)) = (before, record.levels.last_mut()) {
         level.errors = by_field(&answer.names, level::differences(&answer.layout, &before.state, &answer.state));
         let own = level::differences(&before.layout, &before.shaken, &before.state);
@@ -132,6 +151,7 @@ fn push_difference(record: &mut OrderRecord, rung: &Rung, before: Option<&Answer
         let sum =
             |(a, b): (Norms, Norms)| Norms { l1: add(a.l1, b.l1), l2: add(a.l2, b.l2), linf: add(a.linf, b.linf) };
         level.floor = by_field(&answer.names, own.into_iter().zip(next).map(sum).collect());
+        level.places = places::norms(&request.problem, &rung.cells, answer, &before.state, &answer.state);
         level.note = level::not_finite(&answer.names, &before.state);
     }
     record.levels.push(Level {
@@ -139,9 +159,8 @@ fn push_difference(record: &mut OrderRecord, rung: &Rung, before: Option<&Answer
         h: rung.step.unwrap_or(f64::NAN),
         step: rung.step,
         steps: rung.steps,
-        errors: BTreeMap::new(),
-        floor: BTreeMap::new(),
         note: Some("the finest step: what the others are held against".to_owned()),
+        ..Level::default()
     });
 }
 
