@@ -235,6 +235,12 @@ pub struct ModesEntry {
     /// Claim: G as a formula in `theta`, the Courant number `c` and the diffusion number `r`, with `i` the imaginary unit.
     #[schemars(with = "Option<String>")]
     pub symbol: Option<Spanned<String>>,
+    /// Claim: the formal order of accuracy, from the leading term of the modified equation at a constant Courant (or diffusion) number.
+    #[schemars(with = "Option<usize>")]
+    pub formal_order: Option<Spanned<usize>>,
+    /// Whether each wavenumber is tried by itself even where the scheme is linear. Default false.
+    #[serde(default)]
+    pub mode_by_mode: bool,
 }
 
 /// `[[stability]]`: the scheme is stable up to a step.

@@ -11,6 +11,7 @@ mod join;
 mod model;
 mod modes;
 mod order;
+mod semi_discrete;
 mod stability;
 
 pub use file::{RecordError, read_results, write_bytes, write_results, write_text};
@@ -24,4 +25,5 @@ pub use modes::{
     ClaimedSymbol, Linearity, ModeRecord, ModesRecord, ModifiedEquation, NeighbourDifference, StencilEntry,
 };
 pub use order::{Level, Norms, Observed, OrderRecord, Refinement};
+pub use semi_discrete::{PredictedRange, RateMode, Resolution, ResolvedQuantity, SemiDiscrete};
 pub use stability::{Confirmation, StabilityRecord, StepNumber, WeakGrowth};

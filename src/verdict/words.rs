@@ -31,7 +31,8 @@ pub fn claimed(kind: &ClaimKind) -> Option<Claimed> {
         }),
         ClaimKind::Modes(claim) => {
             let phase = claim.phase_speed_error_within.map(|within| bare("phase_speed_error", within));
-            phase.or(claim.damping_error_within.map(|within| bare("damping_error", within)))
+            let damping = claim.damping_error_within.map(|within| bare("damping_error", within));
+            phase.or(damping).or(claim.formal_order.map(|order| bare("formal_order", order as f64)))
         }
         ClaimKind::Stability(claim) => Some(bare("stable_up_to", claim.up_to)),
         ClaimKind::Invariants(_) => None,
@@ -64,6 +65,9 @@ fn modes(claim: &ModesClaim) -> String {
     }
     if let Some(within) = claim.damping_error_within {
         parts.push(format!("damping within {within} a step from {from} points per wavelength"));
+    }
+    if let Some(order) = claim.formal_order {
+        parts.push(format!("formal order {order}"));
     }
     if let Some(symbol) = &claim.symbol {
         parts.push(format!("G = {symbol}"));

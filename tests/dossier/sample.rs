@@ -86,6 +86,8 @@ pub fn modes(scheme: &Scheme, cells: usize, c: f64) -> ModesRecord {
             formal_order: Some(scheme.order as usize),
             terms: vec![(scheme.order as usize + 1, -0.083_21)],
         }),
+        resolution: Vec::new(),
+        semi_discrete: None,
     }
 }
 

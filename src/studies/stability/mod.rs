@@ -9,10 +9,7 @@ use super::{Made, Stop};
 use crate::analysis::stability::{Scan, StableRange, StableSet, search};
 use crate::claims::StabilityRequest;
 use crate::host::Session;
-use crate::record::{StabilityRecord, StepNumber, Study, WeakGrowth, finite};
-
-/// The number at which the steps to tenfold growth are told, where there is no stable step.
-const TOLD_AT: f64 = 0.1;
+use crate::record::{StabilityRecord, StepNumber, Study, WeakGrowth};
 
 /// Measures the stable set.
 pub fn run(session: &mut Session, request: &StabilityRequest, seed: u64) -> Made {
@@ -32,6 +29,7 @@ pub fn run(session: &mut Session, request: &StabilityRequest, seed: u64) -> Made
         by_runs_alone: false,
         scan: Vec::new(),
         confirmation: Vec::new(),
+        predicted: Vec::new(),
     };
     let mut notes = Vec::new();
     let ended = measure(session, request, seed, &mut record, &mut notes);
@@ -93,13 +91,7 @@ fn tell(set: &StableSet, growth: &mut Growth<'_>, record: &mut StabilityRecord) 
         }
         StableRange::NoStableStep { growth } => {
             record.stable_up_to = Some(0.0);
-            record.weak_growth = growth.and_then(|weak| {
-                Some(WeakGrowth {
-                    power: finite(weak.power)?,
-                    coefficient: finite(weak.coefficient)?,
-                    steps_to_tenfold: finite(weak.steps_until(10.0, TOLD_AT))?,
-                })
-            });
+            record.weak_growth = growth.and_then(WeakGrowth::of);
         }
     }
     Ok(())
