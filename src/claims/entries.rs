@@ -13,6 +13,7 @@ use super::plan::{
 };
 use super::problem::ClaimsError;
 use super::read::Reader;
+use crate::analysis::integrators;
 use crate::record::{Invariant, Norms, Parameters, Refinement, StepNumber};
 
 /// How far below a claimed order the observed one may lie, unless told otherwise.
@@ -193,6 +194,7 @@ impl Reader<'_> {
             number: Some(number),
             held: held.as_ref().map(|held| self.positive(held, "the number that is held")).transpose()?,
             scan_to,
+            integrator: entry.integrator.as_ref().map(|name| self.integrator(name)).transpose()?,
         };
         Ok(StabilityClaim { request, up_to, exactly: entry.exactly })
     }
@@ -222,6 +224,14 @@ impl Reader<'_> {
             tolerance: positive(&entry.tolerance, "tolerance")?.unwrap_or(0.0),
         };
         Ok(InvariantsClaim { request })
+    }
+
+    fn integrator(&self, name: &Spanned<String>) -> Result<String, ClaimsError> {
+        if integrators::NAMES.contains(&name.get_ref().as_str()) {
+            return Ok(name.get_ref().clone());
+        }
+        let known = integrators::NAMES.join("`, `");
+        Err(self.at(name.span(), format!("there is no integrator `{}`; there are `{known}`", name.get_ref())))
     }
 
     /// Checks that a claimed symbol can be read; it is evaluated where G is measured.

@@ -175,6 +175,9 @@ pub struct StabilityRequest {
     pub held: Option<f64>,
     /// How far the scan goes.
     pub scan_to: f64,
+    /// A time integrator that takes the steps with the scheme's rate, by its name in [`crate::analysis::integrators::NAMES`]; `None`: the
+    /// scheme's own steps.
+    pub integrator: Option<String>,
 }
 
 /// A claimed stable range.

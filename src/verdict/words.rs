@@ -81,7 +81,8 @@ fn modes(claim: &ModesClaim) -> String {
 fn stability(claim: &StabilityClaim) -> String {
     let number = claim.request.number.map_or("step", StepNumber::words);
     let exactly = if claim.exactly { " and no further" } else { "" };
-    format!("stable up to {number} {}{exactly} for {}", claim.up_to, claim.request.equation)
+    let with = claim.request.integrator.as_ref().map_or_else(String::new, |name| format!(" with {name}"));
+    format!("stable up to {number} {}{exactly}{with} for {}", claim.up_to, claim.request.equation)
 }
 
 fn invariants(claim: &InvariantsClaim) -> String {

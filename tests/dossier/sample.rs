@@ -168,6 +168,7 @@ pub fn stability(scheme: &Scheme) -> StabilityRecord {
             Confirmation { number: limit * 0.99, steps: 2000, growth: Some(0.713), agrees: true },
             Confirmation { number: limit * 1.01, steps: 2000, growth: None, agrees: true },
         ],
+        predicted: Vec::new(),
     }
 }
 

@@ -8,3 +8,4 @@ mod common;
 mod galerkin;
 mod limits;
 mod published;
+mod rates;

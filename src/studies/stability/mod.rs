@@ -2,6 +2,7 @@
 
 mod confirm;
 mod growth;
+mod predicted;
 
 use self::growth::Growth;
 use super::setting::Numbers;
@@ -59,6 +60,9 @@ fn measure(
     record: &mut StabilityRecord,
     notes: &mut Vec<String>,
 ) -> Result<(), Stop> {
+    if let Some(integrator) = &request.integrator {
+        return predicted::by_integrator(session, request, integrator, seed, record);
+    }
     let mut growth = Growth::new(session, request, record.number, seed)?;
     record.parameters = growth.parameters();
     if let Some(failing) = growth.not_linear() {
@@ -72,7 +76,8 @@ fn measure(
     record.scan = growth.scanned();
     record.refused_from = growth.refused_from();
     tell(&set, &mut growth, record)?;
-    confirm::from_noise(session, request, seed, record)
+    confirm::from_noise(session, request, seed, record)?;
+    predicted::beside_the_measured(session, request, seed, record, notes)
 }
 
 /// Enters a stable set into the record.
