@@ -198,6 +198,7 @@ fn stability_claim(equation: &str, number: StepNumber, up_to: f64) -> StabilityC
         number: Some(number),
         held: None,
         scan_to: (2.0 * up_to).max(4.0),
+        integrator: None,
     };
     StabilityClaim { request, up_to, exactly: false }
 }

@@ -13,6 +13,7 @@ use super::plan::{
 };
 use super::problem::ClaimsError;
 use super::read::Reader;
+use crate::analysis::integrators;
 use crate::record::{Invariant, Norms, Parameters, Refinement, StepNumber};
 
 /// How far below a claimed order the observed one may lie, unless told otherwise.
@@ -143,12 +144,14 @@ impl Reader<'_> {
                 cells: vec![entry.cells.as_ref().map_or(64, |cells| *cells.get_ref())],
                 courant: positive(&entry.courant, "courant")?,
                 diffusion_number: positive(&entry.diffusion_number, "diffusion_number")?,
+                mode_by_mode: entry.mode_by_mode,
             },
             phase_speed_error_within: positive(&entry.phase_speed_error_within, "phase_speed_error_within")?,
             damping_error_within: positive(&entry.damping_error_within, "damping_error_within")?,
             from_points_per_wavelength: positive(&entry.from_points_per_wavelength, "from_points_per_wavelength")?
                 .unwrap_or(20.0),
             symbol: entry.symbol.as_ref().map(|formula| self.symbol(formula)).transpose()?,
+            formal_order: entry.formal_order.as_ref().map(|order| *order.get_ref()),
         };
         if claim.request.courant.is_none() && claim.request.diffusion_number.is_none() {
             return Err(
@@ -156,9 +159,8 @@ impl Reader<'_> {
             );
         }
         let claims = [claim.phase_speed_error_within, claim.damping_error_within];
-        if claims.iter().all(Option::is_none) && claim.symbol.is_none() {
-            let message =
-                "[[modes]] claims nothing; give `phase_speed_error_within`, `damping_error_within` or `symbol`";
+        if claims.iter().all(Option::is_none) && claim.symbol.is_none() && claim.formal_order.is_none() {
+            let message = "[[modes]] claims nothing; give `phase_speed_error_within`, `damping_error_within`, `formal_order` or `symbol`";
             return Err(self.at(spanned.span(), message));
         }
         Ok(claim)
@@ -192,6 +194,7 @@ impl Reader<'_> {
             number: Some(number),
             held: held.as_ref().map(|held| self.positive(held, "the number that is held")).transpose()?,
             scan_to,
+            integrator: entry.integrator.as_ref().map(|name| self.integrator(name)).transpose()?,
         };
         Ok(StabilityClaim { request, up_to, exactly: entry.exactly })
     }
@@ -221,6 +224,14 @@ impl Reader<'_> {
             tolerance: positive(&entry.tolerance, "tolerance")?.unwrap_or(0.0),
         };
         Ok(InvariantsClaim { request })
+    }
+
+    fn integrator(&self, name: &Spanned<String>) -> Result<String, ClaimsError> {
+        if integrators::NAMES.contains(&name.get_ref().as_str()) {
+            return Ok(name.get_ref().clone());
+        }
+        let known = integrators::NAMES.join("`, `");
+        Err(self.at(name.span(), format!("there is no integrator `{}`; there are `{known}`", name.get_ref())))
     }
 
     /// Checks that a claimed symbol can be read; it is evaluated where G is measured.

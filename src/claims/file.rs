@@ -235,6 +235,12 @@ pub struct ModesEntry {
     /// Claim: G as a formula in `theta`, the Courant number `c` and the diffusion number `r`, with `i` the imaginary unit.
     #[schemars(with = "Option<String>")]
     pub symbol: Option<Spanned<String>>,
+    /// Claim: the formal order of accuracy, from the leading term of the modified equation at a constant Courant (or diffusion) number.
+    #[schemars(with = "Option<usize>")]
+    pub formal_order: Option<Spanned<usize>>,
+    /// Whether each wavenumber is tried by itself even where the scheme is linear. Default false.
+    #[serde(default)]
+    pub mode_by_mode: bool,
 }
 
 /// `[[stability]]`: the scheme is stable up to a step.
@@ -265,6 +271,10 @@ pub struct StabilityEntry {
     /// Whether the claim is that this is the limit itself: a scheme that is stable beyond it is refuted too. Default false.
     #[serde(default)]
     pub exactly: bool,
+    /// A time integrator that takes the steps with the scheme's `rate`: `rk1` to `rk7`, `ssp-rk2`, `ssp-rk3`, `ssp-rk3-four-stages`,
+    /// `low-storage-rk3`, `low-storage-rk4`, `ab2`, `ab3` or `ab4`. Default: the scheme's own steps.
+    #[schemars(with = "Option<String>")]
+    pub integrator: Option<Spanned<String>>,
     /// How far the scan goes. Default: twice the claim, at least 4.
     #[schemars(with = "Option<f64>")]
     pub scan_to: Option<Spanned<f64>>,

@@ -141,6 +141,8 @@ pub struct ModesRequest {
     pub courant: Option<f64>,
     /// nu dt / h^2.
     pub diffusion_number: Option<f64>,
+    /// Whether each wavenumber is tried by itself even where the scheme is linear: the approximate dispersion relation of Pirozzoli (2006).
+    pub mode_by_mode: bool,
 }
 
 /// Claims about amplification factors.
@@ -156,6 +158,8 @@ pub struct ModesClaim {
     pub from_points_per_wavelength: f64,
     /// The claimed G as a formula.
     pub symbol: Option<String>,
+    /// The claimed order of the departure from the equation at small wavenumbers.
+    pub formal_order: Option<usize>,
 }
 
 /// What to measure for stable steps.
@@ -171,6 +175,9 @@ pub struct StabilityRequest {
     pub held: Option<f64>,
     /// How far the scan goes.
     pub scan_to: f64,
+    /// A time integrator that takes the steps with the scheme's rate, by its name in [`crate::analysis::integrators::NAMES`]; `None`: the
+    /// scheme's own steps.
+    pub integrator: Option<String>,
 }
 
 /// A claimed stable range.

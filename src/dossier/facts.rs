@@ -239,7 +239,25 @@ fn modes_findings(record: &ModesRecord) -> Vec<Fact> {
             facts.push(fact("The scheme adds", parts));
         }
     }
+    resolution(&mut facts, record);
+    if let Some(found) = &record.semi_discrete {
+        super::semi_discrete::findings(&mut facts, found);
+    }
     facts
+}
+
+/// Cells per wavelength for given errors.
+fn resolution(facts: &mut Vec<Fact>, record: &ModesRecord) {
+    let several = record.resolution.iter().any(|entry| entry.branch != record.resolution[0].branch);
+    for entry in &record.resolution {
+        let of = if several { format!(", {}", visible(&entry.branch)) } else { String::new() };
+        let mut parts = vec![text(format!("{} within ", entry.quantity.words())), Part::Number(entry.within)];
+        match entry.points_per_wavelength {
+            Some(points) => parts.extend([text(" from "), Part::Number(points)]),
+            None => parts.push(text(": not even the longest wave")),
+        }
+        facts.push(fact(format!("Cells per wavelength{of}"), parts));
+    }
 }
 
 /// G against a claimed formula.
@@ -309,6 +327,7 @@ fn stability_findings(record: &StabilityRecord, stopped: bool) -> Vec<Fact> {
     if let Some(bound) = record.refused_from {
         facts.push(fact("Refused by the scheme from", vec![Part::Number(bound)]));
     }
+    super::semi_discrete::ranges(&mut facts, &record.predicted, words, record.scanned_up_to);
     facts
 }
 

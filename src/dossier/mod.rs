@@ -13,6 +13,7 @@ mod invariants;
 mod junit;
 mod number;
 mod page;
+mod semi_discrete;
 mod statement;
 mod summary;
 mod table;

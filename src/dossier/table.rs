@@ -120,9 +120,12 @@ fn order_table(record: &OrderRecord, field: &str, several: bool) -> Table {
 }
 
 fn modes_tables(record: &ModesRecord, most: usize) -> Vec<Table> {
-    if record.modes.is_empty() {
-        return Vec::new();
-    }
+    let of_rate = record.semi_discrete.as_ref().map(|found| super::semi_discrete::tables(found, most));
+    let of_steps = (!record.modes.is_empty()).then(|| step_table(record, most));
+    of_steps.into_iter().chain(of_rate.into_iter().flatten()).collect()
+}
+
+fn step_table(record: &ModesRecord, most: usize) -> Table {
     let dimensions = record.modes[0].theta.len();
     let branches = record.modes.iter().any(|mode| mode.branch != record.modes[0].branch);
     let mut columns = Vec::new();
@@ -172,13 +175,13 @@ fn modes_tables(record: &ModesRecord, most: usize) -> Vec<Table> {
         })
         .collect();
     let of = (rows.len() < record.modes.len()).then_some(record.modes.len());
-    vec![Table {
+    Table {
         id: "modes".into(),
         caption: "Modes, per step; speeds relative to the exact ones".into(),
         columns,
         rows,
         of,
-    }]
+    }
 }
 
 fn stability_tables(record: &StabilityRecord, most: usize) -> Vec<Table> {

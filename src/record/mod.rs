@@ -11,6 +11,7 @@ mod join;
 mod model;
 mod modes;
 mod order;
+mod semi_discrete;
 mod stability;
 mod uncertainty;
 
@@ -25,5 +26,6 @@ pub use modes::{
     ClaimedSymbol, Linearity, ModeRecord, ModesRecord, ModifiedEquation, NeighbourDifference, StencilEntry,
 };
 pub use order::{Control, FunctionalValue, INTERIOR, Level, Norms, Observed, OrderRecord, Refinement, STRIP, Trial};
+pub use semi_discrete::{PredictedRange, RateMode, Resolution, ResolvedQuantity, SemiDiscrete};
 pub use stability::{Confirmation, StabilityRecord, StepNumber, WeakGrowth};
 pub use uncertainty::{ConvergenceKind, GridTriple, QuantityUncertainty, UncertaintyRecord};

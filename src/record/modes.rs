@@ -3,7 +3,7 @@
 use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
-use super::Parameters;
+use super::{Parameters, Resolution, SemiDiscrete};
 
 /// A Fourier study.
 #[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
@@ -41,6 +41,12 @@ pub struct ModesRecord {
     /// The leading error terms of the modified equation, where they could be read.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub modified_equation: Option<ModifiedEquation>,
+    /// Cells per wavelength for given errors, where the equation moves waves in one dimension.
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    pub resolution: Vec<Resolution>,
+    /// The scheme's semi-discrete rate, where it offers one in one dimension.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub semi_discrete: Option<SemiDiscrete>,
 }
 
 /// The linearity and shift trial: deviations relative to the largest value.

@@ -3,7 +3,7 @@
 use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
-use super::Parameters;
+use super::{Parameters, PredictedRange};
 
 /// Which number measures the step.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize, JsonSchema)]
@@ -60,6 +60,9 @@ pub struct StabilityRecord {
     /// Long runs from noise on either side of the limit.
     #[serde(default, skip_serializing_if = "Vec::is_empty")]
     pub confirmation: Vec<Confirmation>,
+    /// Ranges that time integrators would have with the scheme's rate, where it offers one.
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    pub predicted: Vec<PredictedRange>,
 }
 
 /// Growth without any stable step: max |G| - 1 = coefficient x number^power.

@@ -12,6 +12,7 @@ pub mod modes;
 pub mod noise;
 pub mod order;
 pub mod selection;
+pub mod semi_discrete;
 pub mod setting;
 pub mod speed;
 pub mod stability;

@@ -36,14 +36,32 @@ pub struct Setting {
     pub step: f64,
     /// The numbers as realised; both where the equation has both.
     pub numbers: Numbers,
+    /// What the scheme is asked for: `advance`, or the `rate` of a semi-discrete scheme.
+    pub operation: Operation,
 }
 
 impl Setting {
-    /// The setting of `equation` on `cells` at `numbers`, with the person's `fixed` parameters; the others are generic.
+    /// The setting of `equation` on `cells` at `numbers`, with the person's `fixed` parameters; the others are generic. The scheme is asked
+    /// for steps.
     ///
     /// # Errors
     /// Numbers that do not go with the equation, or a scheme without a fitting offer.
     pub fn new(
+        session: &Session,
+        equation: &str,
+        fixed: &Parameters,
+        cells: &[usize],
+        numbers: Numbers,
+    ) -> Result<Self, Stop> {
+        Self::asking_for(Operation::Advance, session, equation, fixed, cells, numbers)
+    }
+
+    /// The same, with the scheme asked for `operation`: `advance` or `rate`. A rate has one time level, whatever the steps have.
+    ///
+    /// # Errors
+    /// As [`Setting::new`].
+    pub fn asking_for(
+        operation: Operation,
         session: &Session,
         equation: &str,
         fixed: &Parameters,
@@ -63,7 +81,7 @@ impl Setting {
         let need = Need {
             equation,
             dimensions,
-            operations: &[Operation::Advance],
+            operations: &[operation],
             boundaries: &[BoundaryKind::Periodic],
             source: false,
             coefficients: &[],
@@ -73,7 +91,9 @@ impl Setting {
         };
         let (offer, _) = choose(session.description(), &need).map_err(Stop::NotOffered)?;
         let names = case::fields(offer, dimensions, None);
-        Ok(Self { offer: offer.clone(), names, case, parameters, step, numbers })
+        let levels = if operation == Operation::Rate { 1 } else { offer.levels };
+        let offer = Offer { levels, ..offer.clone() };
+        Ok(Self { offer, names, case, parameters, step, numbers, operation })
     }
 
     /// Asks the scheme to prepare the case; answers the nodes of a cell where it has several.

@@ -31,7 +31,8 @@ pub fn claimed(kind: &ClaimKind) -> Option<Claimed> {
         }),
         ClaimKind::Modes(claim) => {
             let phase = claim.phase_speed_error_within.map(|within| bare("phase_speed_error", within));
-            phase.or(claim.damping_error_within.map(|within| bare("damping_error", within)))
+            let damping = claim.damping_error_within.map(|within| bare("damping_error", within));
+            phase.or(damping).or(claim.formal_order.map(|order| bare("formal_order", order as f64)))
         }
         ClaimKind::Stability(claim) => Some(bare("stable_up_to", claim.up_to)),
         ClaimKind::Invariants(_) => None,
@@ -65,6 +66,9 @@ fn modes(claim: &ModesClaim) -> String {
     if let Some(within) = claim.damping_error_within {
         parts.push(format!("damping within {within} a step from {from} points per wavelength"));
     }
+    if let Some(order) = claim.formal_order {
+        parts.push(format!("formal order {order}"));
+    }
     if let Some(symbol) = &claim.symbol {
         parts.push(format!("G = {symbol}"));
     }
@@ -77,7 +81,8 @@ fn modes(claim: &ModesClaim) -> String {
 fn stability(claim: &StabilityClaim) -> String {
     let number = claim.request.number.map_or("step", StepNumber::words);
     let exactly = if claim.exactly { " and no further" } else { "" };
-    format!("stable up to {number} {}{exactly} for {}", claim.up_to, claim.request.equation)
+    let with = claim.request.integrator.as_ref().map_or_else(String::new, |name| format!(" with {name}"));
+    format!("stable up to {number} {}{exactly}{with} for {}", claim.up_to, claim.request.equation)
 }
 
 fn invariants(claim: &InvariantsClaim) -> String {

@@ -86,6 +86,8 @@ pub fn modes(scheme: &Scheme, cells: usize, c: f64) -> ModesRecord {
             formal_order: Some(scheme.order as usize),
             terms: vec![(scheme.order as usize + 1, -0.083_21)],
         }),
+        resolution: Vec::new(),
+        semi_discrete: None,
     }
 }
 
@@ -167,6 +169,7 @@ pub fn stability(scheme: &Scheme) -> StabilityRecord {
             Confirmation { number: limit * 0.99, steps: 2000, growth: Some(0.713), agrees: true },
             Confirmation { number: limit * 1.01, steps: 2000, growth: None, agrees: true },
         ],
+        predicted: Vec::new(),
     }
 }
 

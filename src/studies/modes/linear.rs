@@ -40,6 +40,7 @@ pub fn measure(
         _ => line.everywhere()?,
     };
     record.modified_equation = super::modified::equation(setting, &line.exact, stencil.as_ref(), &record.modes);
+    record.resolution = super::resolution::needed(setting, &line.exact, stencil.as_ref(), &record.modes)?;
     Ok(())
 }
 
