@@ -54,6 +54,7 @@ pub(crate) fn of_study(study: &StudyRecord, most: usize) -> Vec<Table> {
         Study::Order(record) => order_tables(record),
         Study::Modes(record) => modes_tables(record, most),
         Study::Invariants(record) => invariants::tables(record),
+        Study::Operator(record) => super::operator::tables(record, most),
         Study::Stability(record) => stability_tables(record, most),
     }
 }

@@ -188,6 +188,7 @@ fn subject(study: &StudyRecord) -> String {
             format!("{} {:?} {:?} {:?}", record.equation, record.number, record.held, record.parameters)
         }
         Study::Invariants(record) => format!("{} {:?}", record.equation, record.parameters),
+        Study::Operator(record) => format!("{} {:?} {:?}", record.equation, record.parameters, record.integrator),
     };
     format!("{} {} {about}", study.scheme, study.study.kind())
 }

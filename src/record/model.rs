@@ -5,7 +5,7 @@ use std::collections::BTreeMap;
 use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
-use super::{InvariantsRecord, ModesRecord, OrderRecord, StabilityRecord};
+use super::{InvariantsRecord, ModesRecord, OperatorRecord, OrderRecord, StabilityRecord};
 
 /// What `format` says in every results file.
 pub const FORMAT: &str = "gridassay-results";
@@ -114,6 +114,8 @@ pub enum Study {
     Stability(StabilityRecord),
     /// A study of invariants.
     Invariants(InvariantsRecord),
+    /// A study of the operator of a bounded problem.
+    Operator(OperatorRecord),
 }
 
 impl Study {
@@ -124,6 +126,7 @@ impl Study {
             Self::Modes(_) => "modes",
             Self::Stability(_) => "stability",
             Self::Invariants(_) => "invariants",
+            Self::Operator(_) => "operator",
         }
     }
 
@@ -134,6 +137,7 @@ impl Study {
             Self::Modes(record) => &record.equation,
             Self::Stability(record) => &record.equation,
             Self::Invariants(record) => &record.equation,
+            Self::Operator(record) => &record.equation,
         }
     }
 }

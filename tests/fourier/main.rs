@@ -5,7 +5,9 @@
 
 mod blocks;
 mod common;
+mod directions;
 mod galerkin;
 mod limits;
+mod operators;
 mod published;
 mod rates;

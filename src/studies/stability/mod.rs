@@ -77,7 +77,10 @@ fn measure(
     record.refused_from = growth.refused_from();
     tell(&set, &mut growth, record)?;
     confirm::from_noise(session, request, seed, record)?;
-    predicted::beside_the_measured(session, request, seed, record, notes)
+    if let Err(stop) = predicted::beside_the_measured(session, request, seed, record, notes) {
+        notes.push(format!("the rate was not measured: {stop}"));
+    }
+    Ok(())
 }
 
 /// Enters a stable set into the record.
