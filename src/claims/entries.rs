@@ -195,6 +195,7 @@ impl Reader<'_> {
             held: held.as_ref().map(|held| self.positive(held, "the number that is held")).transpose()?,
             scan_to,
             integrator: entry.integrator.as_ref().map(|name| self.integrator(name)).transpose()?,
+            map_to: entry.map_to.as_ref().map(|end| self.positive(end, "map_to")).transpose()?,
         };
         Ok(StabilityClaim { request, up_to, exactly: entry.exactly })
     }

@@ -312,6 +312,9 @@ pub struct StabilityEntry {
     /// `low-storage-rk3`, `low-storage-rk4`, `ab2`, `ab3` or `ab4`. Default: the scheme's own steps.
     #[schemars(with = "Option<String>")]
     pub integrator: Option<Spanned<String>>,
+    /// A map of the plane of both numbers as well, up to this diffusion number and up to `scan_to` in the Courant number (equations with both).
+    #[schemars(with = "Option<f64>")]
+    pub map_to: Option<Spanned<f64>>,
     /// How far the scan goes. Default: twice the claim, at least 4.
     #[schemars(with = "Option<f64>")]
     pub scan_to: Option<Spanned<f64>>,

@@ -211,6 +211,8 @@ pub struct StabilityRequest {
     /// A time integrator that takes the steps with the scheme's rate, by its name in [`crate::analysis::integrators::NAMES`]; `None`: the
     /// scheme's own steps.
     pub integrator: Option<String>,
+    /// Where the equation has both numbers: a map of their plane up to this diffusion number, and up to `scan_to` in the Courant number.
+    pub map_to: Option<f64>,
 }
 
 /// A claimed stable range.

@@ -12,7 +12,7 @@ use crate::studies::operator;
 /// Measures the operator of a bounded problem: spectrum, pseudospectra, largest growth.
 #[derive(Debug, Args)]
 #[command(
-    after_help = "Example:\n  gridassay operator --equation advection --cells 40 --courant 0.8 --integrator rk4 --classical central4-rk4"
+    after_help = "Example:\n  gridassay operator --equation advection_diffusion --cells 40 --courant 0.8 --integrator rk4 --classical central4-rk4"
 )]
 pub struct Operator {
     /// The equation's name.

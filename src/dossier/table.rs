@@ -211,6 +211,24 @@ fn stability_tables(record: &StabilityRecord, most: usize) -> Vec<Table> {
             of: None,
         });
     }
+    if !record.map.is_empty() {
+        let row = |row: &crate::record::MapRow| {
+            let interval = |[from, to]: &[f64; 2]| format!("{from:.6} to {to:.6}");
+            let stable: Vec<String> = row.stable.iter().map(interval).collect();
+            let words = if stable.is_empty() { "none".to_owned() } else { stable.join("; ") };
+            vec![Cell::Number(Some(row.diffusion_number)), Cell::Text(words)]
+        };
+        tables.push(Table {
+            id: "map".into(),
+            caption: "Stable Courant numbers by diffusion number".into(),
+            columns: vec![
+                column("diffusion number", "diffusion_number", "diffusion number"),
+                Column { numeric: false, ..column("stable Courant numbers", "stable", "stable Courant numbers") },
+            ],
+            rows: record.map.iter().map(row).collect(),
+            of: None,
+        });
+    }
     if !record.scan.is_empty() {
         let rows = thin(&record.scan, most);
         let of = (rows.len() < record.scan.len()).then_some(record.scan.len());

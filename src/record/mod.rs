@@ -30,4 +30,4 @@ pub use modes::{
 pub use operator::{OperatorRecord, TransientRecord};
 pub use order::{Level, Norms, Observed, OrderRecord, Refinement};
 pub use semi_discrete::{PredictedRange, RateMode, Resolution, ResolvedQuantity, SemiDiscrete};
-pub use stability::{Confirmation, StabilityRecord, StepNumber, WeakGrowth};
+pub use stability::{Confirmation, MapRow, StabilityRecord, StepNumber, WeakGrowth};

@@ -171,6 +171,7 @@ pub fn stability(scheme: &Scheme) -> StabilityRecord {
             Confirmation { number: limit * 1.01, steps: 2000, growth: None, agrees: true },
         ],
         predicted: Vec::new(),
+        map: Vec::new(),
     }
 }
 

@@ -72,7 +72,7 @@ fn the_heat_equation_between_walls_has_its_closed_form() {
 
 #[test]
 fn advection_between_boundaries_is_measured_and_its_closures_are_told() {
-    let record = operator_of("central4-rk4", "advection", Some(0.8), None, "rk4");
+    let record = operator_of("central4-rk4", "advection_diffusion", Some(0.8), None, "rk4");
     assert_eq!(record.eigenvalues.len(), record.unknowns);
     assert!(record.deviation.unwrap() < 1e-12);
     // What every operator obeys (Trefethen & Embree 2005): the spectral abscissa is below the numerical one, pseudospectra contain the spectrum

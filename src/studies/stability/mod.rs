@@ -2,6 +2,7 @@
 
 mod confirm;
 mod growth;
+mod map;
 mod predicted;
 
 use self::growth::Growth;
@@ -31,6 +32,7 @@ pub fn run(session: &mut Session, request: &StabilityRequest, seed: u64) -> Made
         scan: Vec::new(),
         confirmation: Vec::new(),
         predicted: Vec::new(),
+        map: Vec::new(),
     };
     let mut notes = Vec::new();
     let ended = measure(session, request, seed, &mut record, &mut notes);
@@ -62,6 +64,9 @@ fn measure(
 ) -> Result<(), Stop> {
     if let Some(integrator) = &request.integrator {
         return predicted::by_integrator(session, request, integrator, seed, record);
+    }
+    if let Some(end) = request.map_to {
+        record.map = map::rows(session, request, end, seed)?;
     }
     let mut growth = Growth::new(session, request, record.number, seed)?;
     record.parameters = growth.parameters();
