@@ -8,13 +8,13 @@ use std::time::Instant;
 
 use super::control::add_control;
 use crate::claims::{
-    InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim,
-    StabilityRequest,
+    InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OperatorClaim, OperatorRequest, OrderClaim,
+    OrderRequest, StabilityClaim, StabilityRequest,
 };
 use crate::host::Session;
 use crate::record::{OrderRecord, Parameters, Study, StudyRecord};
 use crate::studies::setting::generic_parameters;
-use crate::studies::{Made, invariants, modes, order, stability};
+use crate::studies::{Made, invariants, modes, operator, order, stability};
 use crate::verdict::{self, Judgement};
 
 /// The studies made for a claim, and what came of them.
@@ -91,6 +91,17 @@ pub fn attempt_invariants(session: &mut Session, claim: &InvariantsClaim, place:
     let judge = |study: &StudyRecord| match &study.study {
         Study::Invariants(record) => verdict::invariants::judge(claim, study, record),
         _ => unreachable!("a study of invariants was made"),
+    };
+    judged(studies, judge)
+}
+
+/// Tries a claim about the operator of a bounded problem.
+pub fn attempt_operator(session: &mut Session, claim: &OperatorClaim, place: Place<'_>) -> Attempt {
+    let make = |session: &mut Session, request: &OperatorRequest| operator::run(session, request, place.seed);
+    let studies = both(session, place, &claim.request, None, make);
+    let judge = |study: &StudyRecord| match &study.study {
+        Study::Operator(record) => verdict::operator::judge(claim, study, record),
+        _ => unreachable!("a study of an operator was made"),
     };
     judged(studies, judge)
 }

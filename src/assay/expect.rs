@@ -199,6 +199,7 @@ fn stability_claim(equation: &str, number: StepNumber, up_to: f64) -> StabilityC
         held: None,
         scan_to: (2.0 * up_to).max(4.0),
         integrator: None,
+        map_to: None,
     };
     StabilityClaim { request, up_to, exactly: false }
 }

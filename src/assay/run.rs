@@ -2,7 +2,9 @@
 
 use std::time::Instant;
 
-use super::attempt::{Attempt, Place, attempt_invariants, attempt_modes, attempt_order, attempt_stability};
+use super::attempt::{
+    Attempt, Place, attempt_invariants, attempt_modes, attempt_operator, attempt_order, attempt_stability,
+};
 use super::progress::Progress;
 use super::schemes::{Schemes, session_record};
 use crate::claims::{Claim, ClaimKind, Plan};
@@ -80,6 +82,7 @@ fn attempt(schemes: &mut Schemes<'_>, claim: &Claim, seed: u64) -> Attempt {
         ClaimKind::Modes(claim) => attempt_modes(session, claim, place),
         ClaimKind::Stability(claim) => attempt_stability(session, claim, place),
         ClaimKind::Invariants(claim) => attempt_invariants(session, claim, place),
+        ClaimKind::Operator(claim) => attempt_operator(session, claim, place),
     }
 }
 

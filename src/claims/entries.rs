@@ -6,10 +6,10 @@ use gridassay_reference::expression::{Expression, Scope};
 use gridassay_reference::problem::Problem;
 use toml::Spanned;
 
-use super::file::{CellsEntry, InvariantsEntry, ModesEntry, NumberOrList, OrderEntry, StabilityEntry};
+use super::file::{CellsEntry, InvariantsEntry, ModesEntry, NumberOrList, OperatorEntry, OrderEntry, StabilityEntry};
 use super::plan::{
-    InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim,
-    StabilityRequest, StepSize,
+    InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OperatorClaim, OperatorRequest, OrderClaim,
+    OrderRequest, StabilityClaim, StabilityRequest, StepSize,
 };
 use super::problem::ClaimsError;
 use super::read::Reader;
@@ -195,6 +195,7 @@ impl Reader<'_> {
             held: held.as_ref().map(|held| self.positive(held, "the number that is held")).transpose()?,
             scan_to,
             integrator: entry.integrator.as_ref().map(|name| self.integrator(name)).transpose()?,
+            map_to: entry.map_to.as_ref().map(|end| self.positive(end, "map_to")).transpose()?,
         };
         Ok(StabilityClaim { request, up_to, exactly: entry.exactly })
     }
@@ -224,6 +225,32 @@ impl Reader<'_> {
             tolerance: positive(&entry.tolerance, "tolerance")?.unwrap_or(0.0),
         };
         Ok(InvariantsClaim { request })
+    }
+
+    pub(super) fn operator(&self, spanned: &Spanned<OperatorEntry>) -> Result<OperatorClaim, ClaimsError> {
+        let entry = spanned.get_ref();
+        let positive =
+            |value: &Option<Spanned<f64>>, key| value.as_ref().map(|value| self.positive(value, key)).transpose();
+        let request = OperatorRequest {
+            equation: self.equation(&entry.equation)?,
+            parameters: parameters(&entry.parameters),
+            cells: entry.cells.as_ref().map_or(40, |cells| *cells.get_ref()),
+            courant: positive(&entry.courant, "courant")?,
+            diffusion_number: positive(&entry.diffusion_number, "diffusion_number")?,
+            boundaries: None,
+            integrator: entry.integrator.as_ref().map(|name| self.integrator(name)).transpose()?,
+        };
+        if request.courant.is_none() && request.diffusion_number.is_none() {
+            let message = "a study of an operator needs a step: give `courant` or `diffusion_number`, or both";
+            return Err(self.at(spanned.span(), message));
+        }
+        let spectral_radius_at_most = positive(&entry.spectral_radius_at_most, "spectral_radius_at_most")?;
+        let transient_growth_at_most = positive(&entry.transient_growth_at_most, "transient_growth_at_most")?;
+        if spectral_radius_at_most.is_none() && transient_growth_at_most.is_none() {
+            let message = "[[operator]] claims nothing; give `spectral_radius_at_most` or `transient_growth_at_most`";
+            return Err(self.at(spanned.span(), message));
+        }
+        Ok(OperatorClaim { request, spectral_radius_at_most, transient_growth_at_most })
     }
 
     fn integrator(&self, name: &Spanned<String>) -> Result<String, ClaimsError> {

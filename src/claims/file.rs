@@ -66,6 +66,43 @@ pub struct ClaimsFile {
     #[serde(default)]
     #[schemars(with = "Vec<InvariantsEntry>")]
     pub invariants: Vec<Spanned<InvariantsEntry>>,
+    /// Claims about the operator of a bounded problem.
+    #[serde(default)]
+    #[schemars(with = "Vec<OperatorEntry>")]
+    pub operator: Vec<Spanned<OperatorEntry>>,
+}
+
+/// `[[operator]]`: the rate or the step between boundaries, as a matrix, in one dimension.
+#[derive(Clone, Debug, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct OperatorEntry {
+    /// Which of `[schemes]`, one name or a list. Default: all.
+    #[schemars(with = "Option<OneOrMany>")]
+    pub scheme: Option<Spanned<OneOrMany>>,
+    /// The equation's name.
+    #[schemars(with = "String")]
+    pub equation: Spanned<String>,
+    /// The equation's parameters. Default: generic values inside the offer.
+    #[serde(default)]
+    pub parameters: BTreeMap<String, NumberOrList>,
+    /// Cells. Default 40.
+    #[schemars(with = "Option<usize>")]
+    pub cells: Option<Spanned<usize>>,
+    /// Courant number of the step.
+    #[schemars(with = "Option<f64>")]
+    pub courant: Option<Spanned<f64>>,
+    /// Diffusion number of the step.
+    #[schemars(with = "Option<f64>")]
+    pub diffusion_number: Option<Spanned<f64>>,
+    /// A time integrator that takes the steps with the scheme's `rate`. Default: the scheme's own steps are probed.
+    #[schemars(with = "Option<String>")]
+    pub integrator: Option<Spanned<String>>,
+    /// Claim: the spectral radius of a step is at most this: 1 for a stable one.
+    #[schemars(with = "Option<f64>")]
+    pub spectral_radius_at_most: Option<Spanned<f64>>,
+    /// Claim: no state grows by more than this factor on the way, in the Euclidean norm.
+    #[schemars(with = "Option<f64>")]
+    pub transient_growth_at_most: Option<Spanned<f64>>,
 }
 
 /// A scheme: exactly one of `command`, `plugin` and `classical`.
@@ -275,6 +312,9 @@ pub struct StabilityEntry {
     /// `low-storage-rk3`, `low-storage-rk4`, `ab2`, `ab3` or `ab4`. Default: the scheme's own steps.
     #[schemars(with = "Option<String>")]
     pub integrator: Option<Spanned<String>>,
+    /// A map of the plane of both numbers as well, up to this diffusion number and up to `scan_to` in the Courant number (equations with both).
+    #[schemars(with = "Option<f64>")]
+    pub map_to: Option<Spanned<f64>>,
     /// How far the scan goes. Default: twice the claim, at least 4.
     #[schemars(with = "Option<f64>")]
     pub scan_to: Option<Spanned<f64>>,

@@ -5,6 +5,7 @@ use std::path::PathBuf;
 use std::time::Duration;
 
 use gridassay_reference::problem::Problem;
+use gridassay_scheme::BoundaryKind;
 
 use crate::record::{ClaimsRecord, Invariant, Parameters, Refinement, StepNumber};
 
@@ -81,6 +82,38 @@ pub enum ClaimKind {
     Stability(StabilityClaim),
     /// What the scheme keeps.
     Invariants(InvariantsClaim),
+    /// The operator of a bounded problem.
+    Operator(OperatorClaim),
+}
+
+/// What to measure for the operator of a bounded problem in one dimension.
+#[derive(Clone, Debug)]
+pub struct OperatorRequest {
+    /// The equation's name.
+    pub equation: String,
+    /// Parameters that the person fixed.
+    pub parameters: Parameters,
+    /// Cells.
+    pub cells: usize,
+    /// a dt / h.
+    pub courant: Option<f64>,
+    /// nu dt / h^2.
+    pub diffusion_number: Option<f64>,
+    /// Kinds of boundary at the lower and the upper end; `None`: the harness's choice.
+    pub boundaries: Option<[BoundaryKind; 2]>,
+    /// A time integrator that takes the steps with the scheme's rate; `None`: the scheme's own steps are probed.
+    pub integrator: Option<String>,
+}
+
+/// Claims about the operator of a bounded problem.
+#[derive(Clone, Debug)]
+pub struct OperatorClaim {
+    /// What to measure.
+    pub request: OperatorRequest,
+    /// Bound on the spectral radius of a step.
+    pub spectral_radius_at_most: Option<f64>,
+    /// Bound on the largest growth of the Euclidean norm on the way.
+    pub transient_growth_at_most: Option<f64>,
 }
 
 /// What to measure for an order of accuracy.
@@ -178,6 +211,8 @@ pub struct StabilityRequest {
     /// A time integrator that takes the steps with the scheme's rate, by its name in [`crate::analysis::integrators::NAMES`]; `None`: the
     /// scheme's own steps.
     pub integrator: Option<String>,
+    /// Where the equation has both numbers: a map of their plane up to this diffusion number, and up to `scan_to` in the Courant number.
+    pub map_to: Option<f64>,
 }
 
 /// A claimed stable range.

@@ -56,6 +56,10 @@ pub fn plan_of(path: &Path, text: &str, folder: &Path) -> Result<Plan, ClaimsErr
         let kind = ClaimKind::Modes(reader.modes(entry)?);
         reader.state(&mut claims, "modes", &known, entry.get_ref().scheme.as_ref(), kind)?;
     }
+    for entry in &file.operator {
+        let kind = ClaimKind::Operator(reader.operator(entry)?);
+        reader.state(&mut claims, "operator", &known, entry.get_ref().scheme.as_ref(), kind)?;
+    }
     for entry in &file.stability {
         let kind = ClaimKind::Stability(reader.stability(entry)?);
         reader.state(&mut claims, "stability", &known, entry.get_ref().scheme.as_ref(), kind)?;
@@ -67,7 +71,7 @@ pub fn plan_of(path: &Path, text: &str, folder: &Path) -> Result<Plan, ClaimsErr
     if claims.is_empty() {
         return Err(ClaimsError::whole(
             path,
-            "states no claim; add a table [[order]], [[modes]], [[stability]] or [[invariants]]",
+            "states no claim; add a table [[order]], [[modes]], [[stability]], [[operator]] or [[invariants]]",
         ));
     }
     plan.claims = claims;

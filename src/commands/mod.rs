@@ -8,6 +8,7 @@ mod contrast;
 mod invariants;
 mod judge;
 mod modes;
+mod operator;
 mod order;
 mod outcome;
 mod problems;
@@ -44,6 +45,7 @@ enum Command {
     Order(order::Order),
     Stability(stability::Stability),
     Invariants(invariants::Invariants),
+    Operator(operator::Operator),
     Problems(problems::Problems),
     Source(source::Source),
     Contrast(contrast::Contrast),
@@ -61,6 +63,7 @@ impl Program {
             Command::Order(command) => command.run(),
             Command::Stability(command) => command.run(),
             Command::Invariants(command) => command.run(),
+            Command::Operator(command) => command.run(),
             Command::Problems(command) => command.run(),
             Command::Source(command) => command.run(),
             Command::Contrast(command) => command.run(),

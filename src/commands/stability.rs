@@ -29,6 +29,9 @@ pub struct Stability {
     /// A time integrator that takes the steps with the scheme's rate, such as rk4 or ab3.
     #[arg(long, value_parser = clap::builder::PossibleValuesParser::new(integrators::NAMES))]
     integrator: Option<String>,
+    /// Maps the plane of both numbers as well, up to this diffusion number and up to --scan-to in the Courant number.
+    #[arg(long, value_name = "NUMBER")]
+    map_to: Option<f64>,
     #[command(flatten)]
     parameters: ParameterArguments,
     #[command(flatten)]
@@ -47,6 +50,7 @@ impl Stability {
             held: self.held,
             scan_to: self.scan_to,
             integrator: self.integrator,
+            map_to: self.map_to,
         };
         let seed = self.output.seed;
         single::measure(&self.scheme, "stability-1", &self.output, |session| stability::run(session, &request, seed))

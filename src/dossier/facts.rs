@@ -51,6 +51,7 @@ pub(crate) fn heading(study: &StudyRecord) -> Vec<Part> {
             parts
         }
         Study::Uncertainty(record) => vec![text(format!("Grid convergence of {}", visible(&record.table)))],
+        Study::Operator(record) => vec![text(format!("Operator between boundaries, {}", visible(&record.equation)))],
         Study::Invariants(record) => vec![text(format!("Invariants of {}", visible(&record.equation)))],
         Study::Stability(record) => {
             vec![text(format!("Stable range of the {}, {}", record.number.words(), visible(&record.equation)))]
@@ -64,6 +65,7 @@ pub(crate) fn findings(study: &StudyRecord) -> Vec<Fact> {
         Study::Order(record) => order_findings(record),
         Study::Invariants(record) => invariants::findings(record),
         Study::Uncertainty(record) => uncertainty::findings(record),
+        Study::Operator(record) => super::operator::findings(record),
         Study::Modes(record) => modes_findings(record),
         Study::Stability(record) => stability_findings(record, study.stopped.is_some()),
     }
@@ -75,6 +77,7 @@ pub(crate) fn settings(study: &StudyRecord) -> Vec<Fact> {
         Study::Order(record) => order_settings(record),
         Study::Invariants(record) => invariants::settings(record),
         Study::Uncertainty(record) => uncertainty::settings(record),
+        Study::Operator(record) => super::operator::settings(record),
         Study::Modes(record) => modes_settings(record),
         Study::Stability(record) => stability_settings(record),
     }
@@ -240,6 +243,7 @@ fn modes_findings(record: &ModesRecord) -> Vec<Fact> {
         }
     }
     resolution(&mut facts, record);
+    worst_directions(&mut facts, record);
     if let Some(found) = &record.semi_discrete {
         super::semi_discrete::findings(&mut facts, found);
     }
@@ -259,6 +263,22 @@ fn resolution(facts: &mut Vec<Fact>, record: &ModesRecord) {
         facts.push(fact(format!("Cells per wavelength{of}"), parts));
     }
 }
+
+/// The direction in which waves of eight cells err most.
+fn worst_directions(facts: &mut Vec<Fact>, record: &ModesRecord) {
+    for worst in record.worst_directions.iter().filter(|worst| worst.points_per_wavelength == TOLD_POINTS) {
+        let mut parts = vec![text(format!("{}, ", visible(&worst.branch))), Part::Number(worst.error), text(" along ")];
+        for (index, component) in worst.direction.iter().enumerate() {
+            parts.push(text(if index > 0 { ", " } else { "(" }));
+            parts.push(Part::Number(*component));
+        }
+        parts.extend([text(") at "), Part::Number(worst.points_per_wavelength), text(" cells per wavelength")]);
+        facts.push(fact(format!("Worst {}", worst.quantity.words()), parts));
+    }
+}
+
+/// The wavelength for which the worst directions are told; all stand in the results.
+const TOLD_POINTS: f64 = 8.0;
 
 /// G against a claimed formula.
 fn claimed_symbol(facts: &mut Vec<Fact>, claimed: &ClaimedSymbol) {

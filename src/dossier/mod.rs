@@ -12,6 +12,7 @@ mod figure_files;
 mod invariants;
 mod junit;
 mod number;
+mod operator;
 mod page;
 mod semi_discrete;
 mod statement;

@@ -55,6 +55,7 @@ pub(crate) fn of_study(study: &StudyRecord, most: usize) -> Vec<Table> {
         Study::Modes(record) => modes_tables(record, most),
         Study::Invariants(record) => invariants::tables(record),
         Study::Uncertainty(record) => uncertainty::tables(record),
+        Study::Operator(record) => super::operator::tables(record, most),
         Study::Stability(record) => stability_tables(record, most),
     }
 }
@@ -208,6 +209,24 @@ fn stability_tables(record: &StabilityRecord, most: usize) -> Vec<Table> {
                 Column { numeric: false, ..column("with the limit", "agrees", "with the limit") },
             ],
             rows: rows.collect(),
+            of: None,
+        });
+    }
+    if !record.map.is_empty() {
+        let row = |row: &crate::record::MapRow| {
+            let interval = |[from, to]: &[f64; 2]| format!("{from:.6} to {to:.6}");
+            let stable: Vec<String> = row.stable.iter().map(interval).collect();
+            let words = if stable.is_empty() { "none".to_owned() } else { stable.join("; ") };
+            vec![Cell::Number(Some(row.diffusion_number)), Cell::Text(words)]
+        };
+        tables.push(Table {
+            id: "map".into(),
+            caption: "Stable Courant numbers by diffusion number".into(),
+            columns: vec![
+                column("diffusion number", "diffusion_number", "diffusion number"),
+                Column { numeric: false, ..column("stable Courant numbers", "stable", "stable Courant numbers") },
+            ],
+            rows: record.map.iter().map(row).collect(),
             of: None,
         });
     }

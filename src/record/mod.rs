@@ -5,16 +5,19 @@
 //! finite); the `note` or `stopped` sentence beside it says why. Numbers are f64 and read back to the same bits.
 
 pub mod comparison;
+mod directions;
 mod file;
 mod invariants;
 mod join;
 mod model;
 mod modes;
+mod operator;
 mod order;
 mod semi_discrete;
 mod stability;
 mod uncertainty;
 
+pub use directions::{DirectedQuantity, DirectionRecord, WorstDirection};
 pub use file::{RecordError, read_results, write_bytes, write_results, write_text};
 pub use invariants::{Invariant, InvariantCheck, InvariantSetting, InvariantsRecord, WorstPlace};
 pub use join::join;
@@ -25,7 +28,8 @@ pub use model::{
 pub use modes::{
     ClaimedSymbol, Linearity, ModeRecord, ModesRecord, ModifiedEquation, NeighbourDifference, StencilEntry,
 };
+pub use operator::{OperatorRecord, TransientRecord};
 pub use order::{Control, FunctionalValue, INTERIOR, Level, Norms, Observed, OrderRecord, Refinement, STRIP, Trial};
 pub use semi_discrete::{PredictedRange, RateMode, Resolution, ResolvedQuantity, SemiDiscrete};
-pub use stability::{Confirmation, StabilityRecord, StepNumber, WeakGrowth};
+pub use stability::{Confirmation, MapRow, StabilityRecord, StepNumber, WeakGrowth};
 pub use uncertainty::{ConvergenceKind, GridTriple, QuantityUncertainty, UncertaintyRecord};

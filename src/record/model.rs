@@ -5,7 +5,7 @@ use std::collections::BTreeMap;
 use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
-use super::{InvariantsRecord, ModesRecord, OrderRecord, StabilityRecord, UncertaintyRecord};
+use super::{InvariantsRecord, ModesRecord, OperatorRecord, OrderRecord, StabilityRecord, UncertaintyRecord};
 
 /// What `format` says in every results file.
 pub const FORMAT: &str = "gridassay-results";
@@ -116,6 +116,8 @@ pub enum Study {
     Invariants(InvariantsRecord),
     /// The uncertainty of a table of values.
     Uncertainty(UncertaintyRecord),
+    /// A study of the operator of a bounded problem.
+    Operator(OperatorRecord),
 }
 
 impl Study {
@@ -127,6 +129,7 @@ impl Study {
             Self::Stability(_) => "stability",
             Self::Invariants(_) => "invariants",
             Self::Uncertainty(_) => "uncertainty",
+            Self::Operator(_) => "operator",
         }
     }
 
@@ -138,6 +141,7 @@ impl Study {
             Self::Stability(record) => &record.equation,
             Self::Invariants(record) => &record.equation,
             Self::Uncertainty(_) => "",
+            Self::Operator(record) => &record.equation,
         }
     }
 }

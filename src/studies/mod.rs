@@ -10,6 +10,7 @@ pub mod layout;
 pub mod linearity;
 pub mod modes;
 pub mod noise;
+pub mod operator;
 pub mod order;
 pub mod selection;
 pub mod semi_discrete;

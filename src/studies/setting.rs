@@ -1,6 +1,6 @@
 //! The periodic setting of a Fourier study: grid, parameters and step from Courant and diffusion numbers.
 
-use gridassay_scheme::{BoundaryKind, Case, Grid, GridKind, NoCallbacks, Nodes, Offer, Operation};
+use gridassay_scheme::{BoundaryKind, Case, Grid, GridKind, NoCallbacks, Nodes, Offer, Operation, SideKinds};
 
 use super::selection::{Need, choose};
 use super::{Stop, case};
@@ -68,6 +68,22 @@ impl Setting {
         cells: &[usize],
         numbers: Numbers,
     ) -> Result<Self, Stop> {
+        Self::between([BoundaryKind::Periodic; 2], operation, session, equation, fixed, cells, numbers)
+    }
+
+    /// The same between boundaries of these kinds at the lower and the upper end of every direction.
+    ///
+    /// # Errors
+    /// As [`Setting::new`].
+    pub fn between(
+        kinds: [BoundaryKind; 2],
+        operation: Operation,
+        session: &Session,
+        equation: &str,
+        fixed: &Parameters,
+        cells: &[usize],
+        numbers: Numbers,
+    ) -> Result<Self, Stop> {
         if let Some(offer) = session.description().offers.first()
             && session.description().offers.iter().all(|offer| offer.equation != equation)
         {
@@ -77,12 +93,13 @@ impl Setting {
         let upper: Vec<f64> = (0..dimensions).map(|axis| LOWER[axis] + LENGTH[axis]).collect();
         let grid = Grid::uniform(cells, &LOWER[..dimensions], &upper);
         let (parameters, step, numbers) = resolve(equation, fixed, &grid, numbers)?;
-        let case = case::periodic(equation, &parameters, grid);
+        let mut case = case::periodic(equation, &parameters, grid);
+        case.boundaries.fill(kinds.map(SideKinds::Same));
         let need = Need {
             equation,
             dimensions,
             operations: &[operation],
-            boundaries: &[BoundaryKind::Periodic],
+            boundaries: &kinds,
             source: false,
             coefficients: &[],
             parameters: &parameters,

@@ -1,6 +1,6 @@
 //! Claims in the words of the trade.
 
-use crate::claims::{ClaimKind, InvariantsClaim, ModesClaim, OrderClaim, StabilityClaim};
+use crate::claims::{ClaimKind, InvariantsClaim, ModesClaim, OperatorClaim, OrderClaim, StabilityClaim};
 use crate::record::{Claimed, StepNumber};
 
 /// A claim as a sentence without its scheme.
@@ -10,6 +10,7 @@ pub fn claim(kind: &ClaimKind) -> String {
         ClaimKind::Modes(claim) => modes(claim),
         ClaimKind::Stability(claim) => stability(claim),
         ClaimKind::Invariants(claim) => invariants(claim),
+        ClaimKind::Operator(claim) => operator(claim),
     }
 }
 
@@ -36,6 +37,10 @@ pub fn claimed(kind: &ClaimKind) -> Option<Claimed> {
         }
         ClaimKind::Stability(claim) => Some(bare("stable_up_to", claim.up_to)),
         ClaimKind::Invariants(_) => None,
+        ClaimKind::Operator(claim) => {
+            let radius = claim.spectral_radius_at_most.map(|bound| bare("spectral_radius", bound));
+            radius.or(claim.transient_growth_at_most.map(|bound| bare("transient_growth", bound)))
+        }
     }
 }
 
@@ -83,6 +88,14 @@ fn stability(claim: &StabilityClaim) -> String {
     let exactly = if claim.exactly { " and no further" } else { "" };
     let with = claim.request.integrator.as_ref().map_or_else(String::new, |name| format!(" with {name}"));
     format!("stable up to {number} {}{exactly}{with} for {}", claim.up_to, claim.request.equation)
+}
+
+fn operator(claim: &OperatorClaim) -> String {
+    let radius = claim.spectral_radius_at_most.map(|bound| format!("spectral radius of a step at most {bound}"));
+    let transient = claim.transient_growth_at_most.map(|bound| format!("growth on the way at most {bound}"));
+    let parts: Vec<String> = radius.into_iter().chain(transient).collect();
+    let with = claim.request.integrator.as_ref().map_or_else(String::new, |name| format!(" with {name}"));
+    format!("{} for {} between boundaries{with}", parts.join(" and "), claim.request.equation)
 }
 
 fn invariants(claim: &InvariantsClaim) -> String {

@@ -87,6 +87,8 @@ pub fn modes(scheme: &Scheme, cells: usize, c: f64) -> ModesRecord {
             terms: vec![(scheme.order as usize + 1, -0.083_21)],
         }),
         resolution: Vec::new(),
+        directions: Vec::new(),
+        worst_directions: Vec::new(),
         semi_discrete: None,
     }
 }
@@ -170,6 +172,7 @@ pub fn stability(scheme: &Scheme) -> StabilityRecord {
             Confirmation { number: limit * 1.01, steps: 2000, growth: None, agrees: true },
         ],
         predicted: Vec::new(),
+        map: Vec::new(),
     }
 }
 

@@ -58,6 +58,7 @@ pub fn stability_of(scheme: Box<dyn Scheme>, equation: &str, scan_to: f64) -> St
         held: None,
         scan_to,
         integrator: None,
+        map_to: None,
     };
     let made = stability::run(&mut Session::in_process(scheme), &request, 7);
     assert_eq!(made.stopped, None);

@@ -4,8 +4,12 @@
 //! beside its check. Everything else is measured through the studies, as a user would.
 
 mod blocks;
+mod claims;
 mod common;
+mod directions;
 mod galerkin;
 mod limits;
+mod maps;
+mod operators;
 mod published;
 mod rates;

@@ -1,6 +1,7 @@
 //! The Fourier study: what one step does to every mode that a periodic grid holds.
 
 mod claimed;
+mod directions;
 mod exact;
 mod linear;
 mod modified;
@@ -44,7 +45,11 @@ pub fn run(session: &mut Session, request: &ModesRequest, symbol: Option<&str>, 
                 ended
             }
         }
-        Err(stop) => ended.and(Err(stop)),
+        Err(stop) if rate_alone => Err(stop),
+        Err(stop) => {
+            notes.push(format!("the rate was not measured: {stop}"));
+            ended
+        }
     };
     Made::new(Study::Modes(record), ended, notes)
 }

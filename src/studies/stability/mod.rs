@@ -2,6 +2,7 @@
 
 mod confirm;
 mod growth;
+mod map;
 mod predicted;
 
 use self::growth::Growth;
@@ -31,6 +32,7 @@ pub fn run(session: &mut Session, request: &StabilityRequest, seed: u64) -> Made
         scan: Vec::new(),
         confirmation: Vec::new(),
         predicted: Vec::new(),
+        map: Vec::new(),
     };
     let mut notes = Vec::new();
     let ended = measure(session, request, seed, &mut record, &mut notes);
@@ -63,6 +65,9 @@ fn measure(
     if let Some(integrator) = &request.integrator {
         return predicted::by_integrator(session, request, integrator, seed, record);
     }
+    if let Some(end) = request.map_to {
+        record.map = map::rows(session, request, end, seed)?;
+    }
     let mut growth = Growth::new(session, request, record.number, seed)?;
     record.parameters = growth.parameters();
     if let Some(failing) = growth.not_linear() {
@@ -77,7 +82,10 @@ fn measure(
     record.refused_from = growth.refused_from();
     tell(&set, &mut growth, record)?;
     confirm::from_noise(session, request, seed, record)?;
-    predicted::beside_the_measured(session, request, seed, record, notes)
+    if let Err(stop) = predicted::beside_the_measured(session, request, seed, record, notes) {
+        notes.push(format!("the rate was not measured: {stop}"));
+    }
+    Ok(())
 }
 
 /// Enters a stable set into the record.
