@@ -158,6 +158,7 @@ impl Expectation {
                 refine: self.refine,
                 step_power: default_step_power(self.refine, self.step, expect, self.time_order),
                 final_time: problem.final_time(),
+                operation: None,
                 problem,
             },
             norm: self.norm,

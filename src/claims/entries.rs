@@ -4,6 +4,7 @@ use std::collections::BTreeMap;
 
 use gridassay_reference::expression::{Expression, Scope};
 use gridassay_reference::problem::Problem;
+use gridassay_scheme::Operation;
 use toml::Spanned;
 
 use super::file::{CellsEntry, InvariantsEntry, ModesEntry, NumberOrList, OperatorEntry, OrderEntry, StabilityEntry};
@@ -60,7 +61,25 @@ impl Reader<'_> {
         let least = if entry.refine == Refinement::Time { 1 } else { 2 };
         let cells = entry.cells.as_ref().map(|cells| self.cells(cells, problem.dimensions(), least)).transpose()?;
         let velocity_is_open = !entry.parameters.contains_key("velocity");
-        Ok(OrderRequest { problem, velocity_is_open, cells, step, refine: entry.refine, step_power, final_time })
+        let operation = entry.operation.as_ref().map(|name| self.operation(name, entry.refine)).transpose()?;
+        let refine = entry.refine;
+        Ok(OrderRequest { problem, velocity_is_open, cells, step, refine, step_power, final_time, operation })
+    }
+
+    /// The operation that a claim is about.
+    fn operation(&self, name: &Spanned<String>, refine: Refinement) -> Result<Operation, ClaimsError> {
+        let known = [Operation::Advance, Operation::March, Operation::Rate];
+        let Some(operation) = known.into_iter().find(|operation| operation.name() == name.get_ref()) else {
+            let message =
+                format!("there is no operation `{}` in time; there are `advance`, `march` and `rate`", name.get_ref());
+            return Err(self.at(name.span(), message));
+        };
+        if refine == Refinement::Time && operation != Operation::Advance {
+            let message =
+                format!("`{}` has no step to refine; claim an order in time through `advance`", operation.name());
+            return Err(self.at(name.span(), message));
+        }
+        Ok(operation)
     }
 
     fn step(&self, entry: &OrderEntry) -> Result<Option<StepSize>, ClaimsError> {

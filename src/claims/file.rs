@@ -224,6 +224,10 @@ pub struct OrderEntry {
     /// Where the run ends. Default: the problem's.
     #[schemars(with = "Option<f64>")]
     pub final_time: Option<Spanned<f64>>,
+    /// How the problem is taken to its end: `advance`, `march`, or `rate`, which the harness integrates so that the error in time is far below
+    /// the one in space. Default: the first of these that the scheme offers.
+    #[schemars(with = "Option<String>")]
+    pub operation: Option<Spanned<String>>,
     /// `l1`, `l2` (default) or `linf`.
     #[schemars(with = "Option<String>")]
     pub norm: Option<Spanned<String>>,

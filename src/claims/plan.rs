@@ -5,7 +5,7 @@ use std::path::PathBuf;
 use std::time::Duration;
 
 use gridassay_reference::problem::Problem;
-use gridassay_scheme::BoundaryKind;
+use gridassay_scheme::{BoundaryKind, Operation};
 
 use crate::record::{ClaimsRecord, Invariant, Parameters, Refinement, StepNumber};
 
@@ -133,6 +133,8 @@ pub struct OrderRequest {
     pub step_power: f64,
     /// Where the run ends.
     pub final_time: f64,
+    /// The operation that takes the problem to its end; `None`: the first of `advance`, `march` and `rate` that is offered.
+    pub operation: Option<Operation>,
 }
 
 /// A step on the coarsest level.

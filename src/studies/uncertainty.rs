@@ -156,13 +156,13 @@ struct Row {
 impl Table {
     fn read(path: &Path, text: &[u8]) -> Result<Self, TableError> {
         let mut reader = ReaderBuilder::new().trim(Trim::All).comment(Some(b'#')).from_reader(text);
-        let headings = reader.headers().map_err(|error| broken(path, &error))?.clone();
-        let (headings, fineness) = check_headings(path, &headings)?;
+        let headings = reader.headers().map_err(|error| broken(path, text, &error))?.clone();
+        let (headings, fineness) = check_headings(path, text, &headings)?;
         let counts = headings[fineness].eq_ignore_ascii_case("cells");
         let mut rows: Vec<Row> = Vec::new();
         for record in reader.records() {
-            let record = record.map_err(|error| broken(path, &error))?;
-            let row = row(path, &headings, fineness, &record)?;
+            let record = record.map_err(|error| broken(path, text, &error))?;
+            let row = row(path, text, &headings, fineness, &record)?;
             let value = row.values[fineness];
             if let Some(first) = rows.iter().find(|first| first.values[fineness] == value) {
                 let (line, first, value) = (row.line, first.line, record[fineness].to_owned());
@@ -181,8 +181,8 @@ impl Table {
     }
 }
 
-fn check_headings(path: &Path, record: &StringRecord) -> Result<(Vec<String>, usize), TableError> {
-    let line = record.position().map_or(1, csv::Position::line);
+fn check_headings(path: &Path, text: &[u8], record: &StringRecord) -> Result<(Vec<String>, usize), TableError> {
+    let line = line(text, record.position());
     let headings: Vec<String> = record.iter().map(str::to_owned).collect();
     let quoted: Vec<String> = headings.iter().map(|heading| format!("`{heading}`")).collect();
     let wrong = |remedy| TableError::Headings { path: path.into(), line, found: quoted.join(", "), remedy };
@@ -196,8 +196,22 @@ fn check_headings(path: &Path, record: &StringRecord) -> Result<(Vec<String>, us
     }
 }
 
-fn row(path: &Path, headings: &[String], fineness: usize, record: &StringRecord) -> Result<Row, TableError> {
-    let line = record.position().map_or(0, csv::Position::line);
+/// The line of a record, from 1. The reader's own position is where the record before ended: lines that it skips come on top.
+fn line(text: &[u8], position: Option<&csv::Position>) -> u64 {
+    let Some(position) = position else { return 1 };
+    let rest = text.get(position.byte() as usize..).unwrap_or_default();
+    let skipped = |line: &&[u8]| line.trim_ascii().is_empty() || line.starts_with(b"#");
+    position.line() + rest.split(|byte| *byte == b'\n').take_while(skipped).count() as u64
+}
+
+fn row(
+    path: &Path,
+    text: &[u8],
+    headings: &[String],
+    fineness: usize,
+    record: &StringRecord,
+) -> Result<Row, TableError> {
+    let line = line(text, record.position());
     let number = |(column, value): (usize, &str)| {
         let parsed = value.parse::<f64>().ok().filter(|number| number.is_finite());
         let good = parsed.filter(|number| column != fineness || *number > 0.0);
@@ -209,11 +223,11 @@ fn row(path: &Path, headings: &[String], fineness: usize, record: &StringRecord)
     Ok(Row { line, values: record.iter().enumerate().map(number).collect::<Result<_, _>>()? })
 }
 
-fn broken(path: &Path, error: &csv::Error) -> TableError {
+fn broken(path: &Path, text: &[u8], error: &csv::Error) -> TableError {
     match error.kind() {
         csv::ErrorKind::UnequalLengths { pos, expected_len, len } => TableError::Ragged {
             path: path.into(),
-            line: pos.as_ref().map_or(0, csv::Position::line),
+            line: line(text, pos.as_ref()),
             found: *len as usize,
             expected: *expected_len as usize,
         },

@@ -133,3 +133,101 @@ fn judge_field(claim: &OrderClaim, record: &OrderRecord, field: &str) -> Judgeme
         Outcome::Undecided => Judgement::undecided(reason, judged.reason.remedy().unwrap_or("a finer ladder")),
     }
 }
+
+#[cfg(test)]
+mod tests {
+    //! Trusted: ladders whose orders are known by construction.
+    use std::collections::BTreeMap;
+
+    use gridassay_reference::problem::Problem;
+
+    use super::*;
+    use crate::claims::OrderRequest;
+    use crate::record::{Level, Norms, Observed, Refinement, Trial};
+
+    fn claim(expect: f64) -> OrderClaim {
+        let problem = Problem::named("moving-boundary-values").unwrap();
+        OrderClaim {
+            request: OrderRequest {
+                velocity_is_open: false,
+                cells: None,
+                step: None,
+                refine: Refinement::SpaceTime,
+                step_power: 1.0,
+                final_time: problem.final_time(),
+                operation: None,
+                problem,
+            },
+            norm: "linf".to_owned(),
+            field: None,
+            expect,
+            tolerance: 0.1,
+        }
+    }
+
+    /// A record whose error falls with one order as a whole, and with these at the places.
+    fn record(order: f64, places: &[(&str, f64)]) -> OrderRecord {
+        let level = |cells: usize| {
+            let h = 1.0 / cells as f64;
+            let norms = Norms { linf: Some(h.powf(order)), ..Norms::default() };
+            Level { cells: vec![cells], h, errors: BTreeMap::from([("u".to_owned(), norms)]), ..Level::default() }
+        };
+        let place = |(name, order): &(&str, f64)| {
+            let observed = Observed { order: Some(*order), ..Observed::default() };
+            let norms = BTreeMap::from([("linf".to_owned(), observed)]);
+            ((*name).to_owned(), BTreeMap::from([("u".to_owned(), norms)]))
+        };
+        OrderRecord {
+            levels: [20, 40, 80, 160].map(level).into(),
+            places: places.iter().map(place).collect(),
+            ..OrderRecord::default()
+        }
+    }
+
+    fn judged(expect: f64, record: &OrderRecord) -> Judgement {
+        judge_field(&claim(expect), record, "u")
+    }
+
+    #[test]
+    fn a_side_that_falls_short_is_named_and_the_others_are_not() {
+        let found = judged(2.0, &record(1.0, &[("interior", 1.98), ("x_lower", 1.01), ("x_upper", 2.02)]));
+        assert_eq!(found.verdict, Verdict::Refuted);
+        let told = "the order is 1.98 in the interior, 1.01 within 2 cells of x_lower";
+        assert!(found.reason.ends_with(told), "{}", found.reason);
+    }
+
+    #[test]
+    fn an_interior_that_falls_short_is_told_too() {
+        let found = judged(2.0, &record(1.0, &[("interior", 1.0), ("x_lower", 2.0), ("x_upper", 2.0)]));
+        assert!(found.reason.contains("1.00 in the interior too"), "{}", found.reason);
+        // Neither a place is named where the claim is upheld, nor where the domain has no sides.
+        let upheld = judged(1.0, &record(1.0, &[("interior", 1.0), ("x_lower", 0.5)]));
+        assert_eq!(upheld.verdict, Verdict::Upheld);
+        assert!(!upheld.reason.contains("x_lower"), "{}", upheld.reason);
+        assert!(!judged(2.0, &record(1.0, &[])).reason.contains("interior"));
+    }
+
+    #[test]
+    fn a_control_is_told_and_a_blind_study_is_undecided() {
+        let upheld = || Judgement::upheld("in L2, fine");
+        let trial = |size, verdict| Trial { size, verdict };
+        let seen = Control {
+            order: 1.0,
+            smallest_refuted: Some(10.0_f64.powf(-2.5)),
+            on_finest: Some(1.2345e-5),
+            tried: vec![trial(10.0_f64.powf(-2.5), Verdict::Refuted)],
+            skipped: None,
+        };
+        let told = with_control(upheld(), &seen);
+        let sentence = "in L2, fine; control: an added error of order 1 is refuted from size 0.0032 on (1.2e-5 of the solution on the finest level)";
+        assert_eq!((told.verdict, told.reason.as_str()), (Verdict::Upheld, sentence));
+        let blind = Control { order: 1.0, tried: vec![trial(3.0, Verdict::Upheld)], ..Control::default() };
+        let told = with_control(upheld(), &blind);
+        assert!(
+            told.verdict == Verdict::Undecided && told.decided_by.is_some() && told.reason.contains("up to size 3")
+        );
+        let skipped = Control { skipped: Some("too long".to_owned()), ..blind };
+        let told = with_control(upheld(), &skipped);
+        assert!(told.verdict == Verdict::Upheld && told.reason.ends_with("no detection limit: too long"));
+    }
+}

@@ -1,6 +1,7 @@
 //! The ladder: which grids, which steps, coarse to fine.
 
 use gridassay_reference::problem::Problem;
+use gridassay_scheme::Operation;
 
 use crate::claims::{OrderRequest, StepSize, in_proportion};
 use crate::record::Refinement;
@@ -36,7 +37,8 @@ const MOST_STEPS: usize = 50_000_000;
 /// A step that the problem does not define (a Courant number without a speed), or a number of steps beyond any budget.
 pub fn rungs(request: &OrderRequest, steady: bool) -> Result<Vec<Rung>, Stop> {
     let cells = cells(request);
-    if steady {
+    // Where the scheme or the harness chooses the steps there are none to plan.
+    if steady || matches!(request.operation, Some(Operation::March | Operation::Rate)) {
         return Ok(cells.into_iter().map(|cells| Rung { cells, step: None, steps: None }).collect());
     }
     let duration = request.final_time - request.problem.start_time();

@@ -1,13 +1,15 @@
 //! One rung of a ladder, run.
 
+use gridassay_reference::problem::Problem;
 use gridassay_scheme::{Advance, Fields, Harness, March, Operation};
 
 use super::control::{self, Addition, Fault, GROUPS};
 use super::ladder::Rung;
+use super::semi_discrete::SemiDiscrete;
 use crate::analysis::norms::{Measure, Norms as Measured};
 use crate::claims::OrderRequest;
 use crate::host::Session;
-use crate::record::{Norms, Parameters};
+use crate::record::{Norms, Parameters, Refinement};
 use crate::studies::callbacks::ProblemHarness;
 use crate::studies::jitter::{Jitter, Shaken};
 use crate::studies::layout::Layout;
@@ -31,8 +33,15 @@ pub struct Answer {
     pub shaken: Fields,
 }
 
-/// Operations that take a problem to its end, the best first.
-const IN_TIME: [Operation; 2] = [Operation::Advance, Operation::March];
+/// Operations that take the problem of a request to its end, the best first. Only `advance` has a step that can be refined by itself.
+fn operations(request: &OrderRequest) -> Vec<Operation> {
+    match request.operation {
+        _ if request.problem.is_steady() => vec![Operation::Solve],
+        Some(operation) => vec![operation],
+        None if request.refine == Refinement::Time => vec![Operation::Advance],
+        None => vec![Operation::Advance, Operation::March, Operation::Rate],
+    }
+}
 
 /// What a run differs in from the plain one.
 #[derive(Clone, Copy, Debug)]
@@ -54,7 +63,7 @@ pub fn run(session: &mut Session, request: &OrderRequest, rung: &Rung, variation
     let need = Need {
         equation: &case.equation,
         dimensions: case.dimensions,
-        operations: if problem.is_steady() { &[Operation::Solve] } else { &IN_TIME },
+        operations: &operations(request),
         boundaries: &case::kinds(&case),
         source: case.source,
         coefficients: &case.coefficients,
@@ -87,7 +96,7 @@ pub fn run(session: &mut Session, request: &OrderRequest, rung: &Rung, variation
     let mut earlier = (1..offer.levels)
         .map(|level| at(&harness, start - level as f64 * rung.step.unwrap_or(0.0)))
         .collect::<Result<Vec<_>, _>>()?;
-    let run = Run { operation, start, until, rung };
+    let run = Run { operation, start, until, rung, problem, layout: &layout };
     let (state, shaken) = match variation {
         Variation::Fault(fault) => {
             let fineness = control::fineness(request.refine, &rung.cells, rung.steps);
@@ -125,6 +134,8 @@ fn staggered(
 }
 
 struct Run<'a> {
+    problem: &'a Problem,
+    layout: &'a Layout,
     operation: Operation,
     start: f64,
     until: f64,
@@ -141,6 +152,7 @@ impl Run<'_> {
     ) -> Result<Fields, Stop> {
         match self.operation {
             Operation::Solve => return Ok(session.solve(&state, harness)?.state),
+            Operation::Rate => return self.integrated(session, state, None, harness),
             Operation::March => {
                 let request = March { time: self.start, until: self.until, state: &mut state, tolerance: None };
                 session.march(request, harness)?;
@@ -181,6 +193,19 @@ impl Run<'_> {
         Ok(state)
     }
 
+    /// The scheme's rate, integrated in time by the harness.
+    fn integrated(
+        &self,
+        session: &mut Session,
+        state: Fields,
+        addition: Option<&Addition>,
+        harness: &mut dyn Harness,
+    ) -> Result<Fields, Stop> {
+        let addition = addition.map(|addition| (addition, self.until - self.start));
+        let (problem, layout) = (self.problem, self.layout);
+        SemiDiscrete { session, harness, problem, layout, addition }.run(self.start, self.until, state)
+    }
+
     /// A march in as many parts as an advance; a steady answer all at once.
     fn march_with_addition(
         &self,
@@ -190,6 +215,9 @@ impl Run<'_> {
         addition: &Addition,
         harness: &mut dyn Harness,
     ) -> Result<Fields, Stop> {
+        if self.operation == Operation::Rate {
+            return self.integrated(session, state, Some(addition), harness);
+        }
         if self.operation != Operation::March {
             let mut state = self.carry_out(session, state, earlier, harness)?;
             addition.add(1.0, &mut state);

@@ -6,6 +6,8 @@ mod ladder;
 mod level;
 mod observe;
 mod places;
+mod semi_discrete;
+mod traps;
 
 use std::collections::BTreeMap;
 use std::time::{Duration, Instant};
@@ -80,6 +82,7 @@ fn measure(
         return Err(Stop::Request(format!("`{}` is steady, so that there is no step to refine", problem.name())));
     }
     let mut rungs = ladder::rungs(request, steady)?;
+    notes.extend(traps::notes(request, &rungs));
     if let Some(step) = rungs[0].step {
         record.courant = speed::crossings(problem, &rungs[0].cells)?.map(|rate| rate * step);
         record.diffusion_number = speed::spreading(problem, &rungs[0].cells).map(|rate| rate * step);
@@ -91,6 +94,7 @@ fn measure(
         let took = Instant::now();
         let answer = level::run(session, request, &rung, level::Variation::Shaken(seed.wrapping_add(next as u64)))?;
         record.operation = answer.operation.name().to_owned();
+        let rung = as_run(rung, &answer, record);
         match request.refine {
             Refinement::Time => push_difference(record, &rung, request, before.as_ref(), &answer),
             _ => push_error(record, &rung, request, &answer),
@@ -109,6 +113,15 @@ fn measure(
     Ok(())
 }
 
+/// The rung as it was run: where the scheme or the harness chose the steps, the planned ones were not used and are not told.
+fn as_run(rung: Rung, answer: &Answer, record: &mut OrderRecord) -> Rung {
+    if !matches!(answer.operation, Operation::March | Operation::Rate) {
+        return rung;
+    }
+    (record.courant, record.diffusion_number, record.step_power) = (None, None, None);
+    Rung { step: None, steps: None, ..rung }
+}
+
 /// Whether the harness may add a finer level of its own: the next one takes about eight times as long in 2-D and time.
 fn may_grow(request: &OrderRequest, finest: &Rung, would_take: Duration) -> bool {
     let cells: usize = finest.cells.iter().map(|n| 2 * n).product();
@@ -120,7 +133,14 @@ fn push_error(record: &mut OrderRecord, rung: &Rung, request: &OrderRequest, ans
     let time = if problem.is_steady() { 0.0 } else { request.final_time };
     let h = (problem.upper()[0] - problem.lower()[0]) / rung.cells[0] as f64;
     let errors = level::differences(&answer.layout, &answer.state, &answer.exact);
-    let floor = level::differences(&answer.layout, &answer.shaken, &answer.state);
+    let mut floor = level::differences(&answer.layout, &answer.shaken, &answer.state);
+    if answer.operation == Operation::Rate {
+        let largest = answer.exact.iter().flatten().fold(0.0_f64, |largest, value| largest.max(value.abs()));
+        let in_time = Some(semi_discrete::TOLERANCE * largest);
+        for norms in &mut floor {
+            *norms = sum((*norms, Norms { l1: in_time, l2: in_time, linf: in_time }));
+        }
+    }
     let zeros: Vec<Vec<f64>> = answer.exact.iter().map(|field| vec![0.0; field.len()]).collect();
     record.solution_size = by_field(&answer.names, level::differences(&answer.layout, &answer.exact, &zeros));
     record.levels.push(Level {
@@ -148,8 +168,6 @@ fn push_difference(
         level.errors = by_field(&answer.names, level::differences(&answer.layout, &before.state, &answer.state));
         let own = level::differences(&before.layout, &before.shaken, &before.state);
         let next = level::differences(&answer.layout, &answer.shaken, &answer.state);
-        let sum =
-            |(a, b): (Norms, Norms)| Norms { l1: add(a.l1, b.l1), l2: add(a.l2, b.l2), linf: add(a.linf, b.linf) };
         level.floor = by_field(&answer.names, own.into_iter().zip(next).map(sum).collect());
         level.places = places::norms(&request.problem, &rung.cells, answer, &before.state, &answer.state);
         level.note = level::not_finite(&answer.names, &before.state);
@@ -162,6 +180,10 @@ fn push_difference(
         note: Some("the finest step: what the others are held against".to_owned()),
         ..Level::default()
     });
+}
+
+fn sum((a, b): (Norms, Norms)) -> Norms {
+    Norms { l1: add(a.l1, b.l1), l2: add(a.l2, b.l2), linf: add(a.linf, b.linf) }
 }
 
 fn add(a: Option<f64>, b: Option<f64>) -> Option<f64> {
