@@ -294,12 +294,13 @@ impl Reader<'_> {
 pub const SYMBOL_NAMES: [&str; 3] = ["theta", "c", "r"];
 
 /// The power of the cell width with which the step falls, unless told otherwise: in proportion, or as h^2 where the diffusion number is held;
-/// where space alone is studied, as fast as keeps the error in time (order `time_order`, 1 unless told) from falling more slowly than h^expect.
+/// where space alone is studied, as fast as keeps the error in time (order `time_order`, 1 unless told) from falling more slowly than h^expect,
+/// and never so slowly that a diffusion number given on the coarsest level grows: a right explicit scheme would blow up on the finer ones.
 pub fn default_step_power(refine: Refinement, step: Option<StepSize>, expect: f64, time_order: Option<f64>) -> f64 {
+    let slowest = if matches!(step, Some(StepSize::DiffusionNumber(_))) { 2.0 } else { 1.0 };
     match (refine, step) {
-        (Refinement::Space, _) => (expect / time_order.unwrap_or(1.0)).max(1.0),
-        (_, Some(StepSize::DiffusionNumber(_))) => 2.0,
-        _ => 1.0,
+        (Refinement::Space, _) => (expect / time_order.unwrap_or(1.0)).max(slowest),
+        _ => slowest,
     }
 }
 
@@ -310,4 +311,21 @@ pub fn in_proportion(x: usize, dimensions: usize) -> Vec<usize> {
 
 fn parameters(entries: &BTreeMap<String, NumberOrList>) -> Parameters {
     entries.iter().map(|(name, value)| (name.clone(), value.components())).collect()
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn a_diffusion_number_given_on_the_coarsest_level_grows_on_no_other() {
+        let held = Some(StepSize::DiffusionNumber(0.2));
+        for refine in [Refinement::Space, Refinement::SpaceTime] {
+            for (expect, time_order) in [(2.0, 4.0), (2.0, 3.0), (4.0, 4.0), (6.0, 4.0), (4.0, 1.0)] {
+                assert!(default_step_power(refine, held, expect, Some(time_order)) >= 2.0, "{refine:?} {expect} {time_order}");
+            }
+        }
+        assert_eq!(default_step_power(Refinement::Space, Some(StepSize::Courant(0.4)), 5.0, Some(3.0)), 5.0 / 3.0);
+        assert_eq!(default_step_power(Refinement::SpaceTime, Some(StepSize::Courant(0.4)), 5.0, None), 1.0);
+    }
 }

@@ -58,8 +58,17 @@ pub fn rungs(request: &OrderRequest, steady: bool) -> Result<Vec<Rung>, Stop> {
     if request.refine == Refinement::Time {
         return (0..STEP_RUNGS).map(|k| rung(coarsest.clone(), f64::from(1 << k))).collect();
     }
-    let ratio = |level: &Vec<usize>| (level[0] as f64 / coarsest[0] as f64).powf(request.step_power);
-    cells.iter().map(|level| rung(level.clone(), ratio(level))).collect()
+    let ratio = |level: &Vec<usize>| -> Result<f64, Stop> {
+        let asked = (level[0] as f64 / coarsest[0] as f64).powf(request.step_power);
+        // A step that the harness chose stays within the problem's own numbers on every level: in proportion to the width the diffusion
+        // number would grow, and a right explicit scheme would blow up on the finer ones.
+        let most = match request.step {
+            None => duration / default_step(&request.problem, level)? / first as f64,
+            Some(_) => 0.0,
+        };
+        Ok(if most > asked * (1.0 + 1e-9) { most } else { asked })
+    };
+    cells.iter().map(|level| rung(level.clone(), ratio(level)?)).collect()
 }
 
 /// The next rung of a ladder that the harness chose itself.
