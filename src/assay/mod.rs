@@ -2,10 +2,12 @@
 
 mod attempt;
 mod expect;
+pub mod greet;
 pub mod progress;
 mod run;
 pub mod schemes;
+mod workers;
 
 pub use attempt::{Attempt, Place, attempt_invariants, attempt_modes, attempt_order, attempt_stability};
 pub use expect::{Expectation, expect};
-pub use run::{run, single};
+pub use run::{Manner, RunError, run, single};

@@ -4,15 +4,18 @@
 //! itself is wrong.
 
 mod arguments;
+mod greet;
 mod invariants;
 mod judge;
 mod modes;
 mod order;
 mod outcome;
 mod problems;
+mod repeat;
 mod single;
 mod source;
 mod stability;
+mod starter;
 
 use std::process::ExitCode;
 
@@ -42,6 +45,8 @@ enum Command {
     Invariants(invariants::Invariants),
     Problems(problems::Problems),
     Source(source::Source),
+    Greet(greet::Greet),
+    Starter(starter::Starter),
 }
 
 impl Program {
@@ -55,6 +60,8 @@ impl Program {
             Command::Invariants(command) => command.run(),
             Command::Problems(command) => command.run(),
             Command::Source(command) => command.run(),
+            Command::Greet(command) => command.run(),
+            Command::Starter(command) => command.run(),
         };
         match done {
             Ok(outcome) => outcome.exit_code(),
