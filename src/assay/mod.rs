@@ -3,10 +3,12 @@
 mod attempt;
 mod control;
 mod expect;
+pub mod greet;
 pub mod progress;
 mod run;
 pub mod schemes;
+mod workers;
 
 pub use attempt::{Attempt, Place, attempt_invariants, attempt_modes, attempt_order, attempt_stability};
 pub use expect::{Expectation, expect};
-pub use run::{of_table, run, single};
+pub use run::{Manner, RunError, of_table, run, single};

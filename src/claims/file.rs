@@ -120,12 +120,18 @@ pub struct SchemeEntry {
     /// The longest time for one request, such as `"60s"` or `"5min"`. Default 60 s.
     #[schemars(with = "Option<String>")]
     pub time_limit: Option<Spanned<String>>,
-    /// The longest time for start-up and for the first `prepare`. Default 60 s.
+    /// The longest time for start-up, until `describe` is answered. Default 60 s.
     #[schemars(with = "Option<String>")]
     pub start_limit: Option<Spanned<String>>,
     /// The most memory for the scheme's process, such as `"4GiB"`. Default: no limit.
     #[schemars(with = "Option<String>")]
     pub memory_limit: Option<Spanned<String>>,
+    /// The longest message that the scheme may send, such as `"64MiB"`. Default 1 GiB.
+    #[schemars(with = "Option<String>")]
+    pub message_limit: Option<Spanned<String>>,
+    /// The most processes that the scheme may have at once, itself included. Default: no limit.
+    #[schemars(with = "Option<u32>")]
+    pub process_limit: Option<Spanned<u32>>,
 }
 
 /// How the run is done.

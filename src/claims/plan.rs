@@ -35,6 +35,10 @@ pub struct SchemeChoice {
     pub start_limit: Option<Duration>,
     /// The most memory in bytes; `None`: no limit.
     pub memory_limit: Option<u64>,
+    /// The longest message in bytes; `None`: the host's default.
+    pub message_limit: Option<u64>,
+    /// The most processes at once; `None`: no limit.
+    pub process_limit: Option<u32>,
 }
 
 /// The three ways to hand a scheme in.
@@ -56,7 +60,8 @@ pub enum RouteChoice {
 impl SchemeChoice {
     /// A scheme reached by `route` within the default limits.
     pub fn new(route: RouteChoice) -> Self {
-        Self { route, time_limit: None, start_limit: None, memory_limit: None }
+        let (time_limit, start_limit, memory_limit, message_limit, process_limit) = (None, None, None, None, None);
+        Self { route, time_limit, start_limit, memory_limit, message_limit, process_limit }
     }
 }
 

@@ -140,12 +140,20 @@ impl Reader<'_> {
                 return Err(self.at(entry.span(), message));
             }
         };
+        if let Some(limit) = scheme.process_limit.as_ref().filter(|limit| *limit.get_ref() == 0) {
+            return Err(
+                self.at(limit.span(), "`process_limit` is 0; the scheme itself is a process, so give at least 1")
+            );
+        }
+        let bytes = |text: &Option<Spanned<String>>| text.as_ref().map(|text| self.bytes(text)).transpose();
         let duration = |text: &Option<Spanned<String>>| text.as_ref().map(|text| self.duration(text)).transpose();
         Ok(SchemeChoice {
             route,
             time_limit: duration(&scheme.time_limit)?,
             start_limit: duration(&scheme.start_limit)?,
-            memory_limit: scheme.memory_limit.as_ref().map(|text| self.bytes(text)).transpose()?,
+            memory_limit: bytes(&scheme.memory_limit)?,
+            message_limit: bytes(&scheme.message_limit)?,
+            process_limit: scheme.process_limit.as_ref().map(|limit| *limit.get_ref()),
         })
     }
 

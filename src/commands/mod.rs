@@ -5,6 +5,7 @@
 
 mod arguments;
 mod contrast;
+mod greet;
 mod invariants;
 mod judge;
 mod modes;
@@ -13,10 +14,12 @@ mod order;
 mod outcome;
 mod problems;
 mod redraw;
+mod repeat;
 mod single;
 mod source;
 mod splice;
 mod stability;
+mod starter;
 mod uncertainty;
 
 use std::process::ExitCode;
@@ -52,6 +55,8 @@ enum Command {
     Redraw(redraw::Redraw),
     Splice(splice::Splice),
     Uncertainty(uncertainty::Uncertainty),
+    Greet(greet::Greet),
+    Starter(starter::Starter),
 }
 
 impl Program {
@@ -70,6 +75,8 @@ impl Program {
             Command::Redraw(command) => command.run(),
             Command::Splice(command) => command.run(),
             Command::Uncertainty(command) => command.run(),
+            Command::Greet(command) => command.run(),
+            Command::Starter(command) => command.run(),
         };
         match done {
             Ok(outcome) => outcome.exit_code(),

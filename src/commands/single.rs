@@ -25,7 +25,14 @@ pub fn judge(
 ) -> Result<Outcome, Box<dyn std::error::Error>> {
     let mut plan = empty_plan(scheme, output)?;
     plan.claims.push(Claim { id: id.to_owned(), scheme: SCHEME.to_owned(), kind });
-    let results = assay::run(&plan, std::env::args().collect(), &*progress::fitting(true), |_| Ok(()))?;
+    let manner = assay::Manner {
+        command_line: std::env::args().collect(),
+        workers: 1,
+        progress: &progress::Quiet,
+        journal: None,
+        done: Vec::new(),
+    };
+    let results = assay::run(&plan, manner)?;
     show(&results, output)
 }
 

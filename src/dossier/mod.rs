@@ -33,6 +33,9 @@ use figure::Figure;
 /// The file of the results within a dossier.
 pub const RESULTS_FILE: &str = "results.json";
 
+/// The file of a run's journal within a dossier.
+pub const JOURNAL_FILE: &str = "journal.jsonl";
+
 /// What all outputs are made from.
 pub(crate) struct Dossier<'a> {
     pub results: &'a Results,

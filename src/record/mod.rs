@@ -4,11 +4,13 @@
 //! Null rule: `null` (or an absent field) means that the number does not exist (it was not asked for, or could not be measured, or is not
 //! finite); the `note` or `stopped` sentence beside it says why. Numbers are f64 and read back to the same bits.
 
+mod change;
 pub mod comparison;
 mod directions;
 mod file;
 mod invariants;
 mod join;
+mod journal;
 mod model;
 mod modes;
 mod operator;
@@ -17,10 +19,12 @@ mod semi_discrete;
 mod stability;
 mod uncertainty;
 
+pub use change::{Change, changes};
 pub use directions::{DirectedQuantity, DirectionRecord, WorstDirection};
 pub use file::{RecordError, read_results, write_bytes, write_results, write_text};
 pub use invariants::{Invariant, InvariantCheck, InvariantSetting, InvariantsRecord, WorstPlace};
 pub use join::join;
+pub use journal::{Journal, JournalEntry, JournalError, JournalHead};
 pub use model::{
     Claimed, ClaimsRecord, FORMAT, Parameters, Results, RunRecord, SchemeRecord, Study, StudyRecord, VERSION, Verdict,
     VerdictRecord, finite, utc_now,
