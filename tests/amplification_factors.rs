@@ -34,6 +34,7 @@ fn measure(
         cells: vec![cells],
         courant,
         diffusion_number,
+        mode_by_mode: false,
     };
     let made = modes::run(&mut Session::in_process(scheme), &request, None, 7);
     assert_eq!(made.stopped, None);

@@ -94,7 +94,7 @@ fn a_source_is_derived_for_an_equation_and_for_an_own_residual() {
         "--solution",
         "u = x^2*t",
     ];
-    assert_eq!(formula(&own), "S_u = -t + 6*t*x + x^2");
+    assert_eq!(formula(&own), "S_u = 6*t*x + x^2 - t");
     let contract =
         ["--equation", "advection", "--parameter", "velocity=3", "--solution", "k = 2*x", "--solution", "u = k*t"];
     assert_eq!(formula(&contract), "S_u = 6*t + 2*x");

@@ -75,7 +75,11 @@ impl ModifiedEquation {
         };
         let mut coefficients = fit(samples);
         let fewer = fit(&samples[..samples.len() - 1]);
-        let errors = coefficients.iter().zip(&fewer).take(samples.len()).map(|(a, b)| (a - b).abs()).collect();
+        // Rounding of ln G at the longest wave is all that is known of its n-th term to within rounding / theta^n.
+        let longest = samples.iter().map(|s| s.0.abs()).fold(f64::INFINITY, f64::min);
+        let rounding = |n: usize| ROUNDING / longest.powi(n as i32);
+        let pairs = coefficients.iter().zip(&fewer).enumerate().take(samples.len());
+        let errors = pairs.map(|(n, (a, b))| (a - b).abs().max(rounding(n))).collect();
         coefficients.truncate(samples.len());
         Some(ModifiedEquation { coefficients, errors })
     }

@@ -4,14 +4,17 @@
 //! offers both signs, every study is made twice, the second time with the velocity turned round, and a claim stands only if both
 //! uphold it.
 
+use std::time::Instant;
+
+use super::control::add_control;
 use crate::claims::{
-    InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim,
-    StabilityRequest,
+    InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OperatorClaim, OperatorRequest, OrderClaim,
+    OrderRequest, StabilityClaim, StabilityRequest,
 };
 use crate::host::Session;
 use crate::record::{OrderRecord, Parameters, Study, StudyRecord};
 use crate::studies::setting::generic_parameters;
-use crate::studies::{Made, invariants, modes, order, stability};
+use crate::studies::{Made, invariants, modes, operator, order, stability};
 use crate::verdict::{self, Judgement};
 
 /// The studies made for a claim, and what came of them.
@@ -39,12 +42,16 @@ pub fn attempt_order(session: &mut Session, claim: &OrderClaim, place: Place<'_>
     let enough = |record: &OrderRecord| verdict::order::decides(claim, record);
     let make = |session: &mut Session, request: &OrderRequest| order::run(session, request, Some(&enough), place.seed);
     let mirrored = mirrored_order(&claim.request);
+    let begun = Instant::now();
     let studies = both(session, place, &claim.request, mirrored.as_ref(), make);
+    let took = begun.elapsed() / studies.len().max(1) as u32;
     let judge = |study: &StudyRecord| match &study.study {
         Study::Order(record) => verdict::order::judge(claim, study, record),
         _ => unreachable!("an order study was made"),
     };
-    judged(studies, judge)
+    let mut attempt = judged(studies, judge);
+    add_control(session, claim, &mut attempt, took);
+    attempt
 }
 
 /// Tries a claim about modes.
@@ -84,6 +91,17 @@ pub fn attempt_invariants(session: &mut Session, claim: &InvariantsClaim, place:
     let judge = |study: &StudyRecord| match &study.study {
         Study::Invariants(record) => verdict::invariants::judge(claim, study, record),
         _ => unreachable!("a study of invariants was made"),
+    };
+    judged(studies, judge)
+}
+
+/// Tries a claim about the operator of a bounded problem.
+pub fn attempt_operator(session: &mut Session, claim: &OperatorClaim, place: Place<'_>) -> Attempt {
+    let make = |session: &mut Session, request: &OperatorRequest| operator::run(session, request, place.seed);
+    let studies = both(session, place, &claim.request, None, make);
+    let judge = |study: &StudyRecord| match &study.study {
+        Study::Operator(record) => verdict::operator::judge(claim, study, record),
+        _ => unreachable!("a study of an operator was made"),
     };
     judged(studies, judge)
 }

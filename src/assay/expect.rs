@@ -158,6 +158,7 @@ impl Expectation {
                 refine: self.refine,
                 step_power: default_step_power(self.refine, self.step, expect, self.time_order),
                 final_time: problem.final_time(),
+                operation: None,
                 problem,
             },
             norm: self.norm,
@@ -198,6 +199,8 @@ fn stability_claim(equation: &str, number: StepNumber, up_to: f64) -> StabilityC
         number: Some(number),
         held: None,
         scan_to: (2.0 * up_to).max(4.0),
+        integrator: None,
+        map_to: None,
     };
     StabilityClaim { request, up_to, exactly: false }
 }

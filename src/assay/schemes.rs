@@ -19,7 +19,8 @@ pub fn source(choice: &SchemeChoice, folder: &Path) -> SchemeSource {
         start: choice.start_limit.unwrap_or(default.start),
         request: choice.time_limit.unwrap_or(default.request),
         memory: choice.memory_limit.or(default.memory),
-        ..default
+        message: choice.message_limit.unwrap_or(default.message),
+        processes: choice.process_limit.or(default.processes),
     };
     SchemeSource { route, folder: folder.to_path_buf(), limits }
 }

@@ -4,15 +4,17 @@ use std::collections::BTreeMap;
 
 use gridassay_reference::expression::{Expression, Scope};
 use gridassay_reference::problem::Problem;
+use gridassay_scheme::Operation;
 use toml::Spanned;
 
-use super::file::{CellsEntry, InvariantsEntry, ModesEntry, NumberOrList, OrderEntry, StabilityEntry};
+use super::file::{CellsEntry, InvariantsEntry, ModesEntry, NumberOrList, OperatorEntry, OrderEntry, StabilityEntry};
 use super::plan::{
-    InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OrderClaim, OrderRequest, StabilityClaim,
-    StabilityRequest, StepSize,
+    InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OperatorClaim, OperatorRequest, OrderClaim,
+    OrderRequest, StabilityClaim, StabilityRequest, StepSize,
 };
 use super::problem::ClaimsError;
 use super::read::Reader;
+use crate::analysis::integrators;
 use crate::record::{Invariant, Norms, Parameters, Refinement, StepNumber};
 
 /// How far below a claimed order the observed one may lie, unless told otherwise.
@@ -59,7 +61,25 @@ impl Reader<'_> {
         let least = if entry.refine == Refinement::Time { 1 } else { 2 };
         let cells = entry.cells.as_ref().map(|cells| self.cells(cells, problem.dimensions(), least)).transpose()?;
         let velocity_is_open = !entry.parameters.contains_key("velocity");
-        Ok(OrderRequest { problem, velocity_is_open, cells, step, refine: entry.refine, step_power, final_time })
+        let operation = entry.operation.as_ref().map(|name| self.operation(name, entry.refine)).transpose()?;
+        let refine = entry.refine;
+        Ok(OrderRequest { problem, velocity_is_open, cells, step, refine, step_power, final_time, operation })
+    }
+
+    /// The operation that a claim is about.
+    fn operation(&self, name: &Spanned<String>, refine: Refinement) -> Result<Operation, ClaimsError> {
+        let known = [Operation::Advance, Operation::March, Operation::Rate];
+        let Some(operation) = known.into_iter().find(|operation| operation.name() == name.get_ref()) else {
+            let message =
+                format!("there is no operation `{}` in time; there are `advance`, `march` and `rate`", name.get_ref());
+            return Err(self.at(name.span(), message));
+        };
+        if refine == Refinement::Time && operation != Operation::Advance {
+            let message =
+                format!("`{}` has no step to refine; claim an order in time through `advance`", operation.name());
+            return Err(self.at(name.span(), message));
+        }
+        Ok(operation)
     }
 
     fn step(&self, entry: &OrderEntry) -> Result<Option<StepSize>, ClaimsError> {
@@ -143,12 +163,14 @@ impl Reader<'_> {
                 cells: vec![entry.cells.as_ref().map_or(64, |cells| *cells.get_ref())],
                 courant: positive(&entry.courant, "courant")?,
                 diffusion_number: positive(&entry.diffusion_number, "diffusion_number")?,
+                mode_by_mode: entry.mode_by_mode,
             },
             phase_speed_error_within: positive(&entry.phase_speed_error_within, "phase_speed_error_within")?,
             damping_error_within: positive(&entry.damping_error_within, "damping_error_within")?,
             from_points_per_wavelength: positive(&entry.from_points_per_wavelength, "from_points_per_wavelength")?
                 .unwrap_or(20.0),
             symbol: entry.symbol.as_ref().map(|formula| self.symbol(formula)).transpose()?,
+            formal_order: entry.formal_order.as_ref().map(|order| *order.get_ref()),
         };
         if claim.request.courant.is_none() && claim.request.diffusion_number.is_none() {
             return Err(
@@ -156,9 +178,8 @@ impl Reader<'_> {
             );
         }
         let claims = [claim.phase_speed_error_within, claim.damping_error_within];
-        if claims.iter().all(Option::is_none) && claim.symbol.is_none() {
-            let message =
-                "[[modes]] claims nothing; give `phase_speed_error_within`, `damping_error_within` or `symbol`";
+        if claims.iter().all(Option::is_none) && claim.symbol.is_none() && claim.formal_order.is_none() {
+            let message = "[[modes]] claims nothing; give `phase_speed_error_within`, `damping_error_within`, `formal_order` or `symbol`";
             return Err(self.at(spanned.span(), message));
         }
         Ok(claim)
@@ -192,6 +213,8 @@ impl Reader<'_> {
             number: Some(number),
             held: held.as_ref().map(|held| self.positive(held, "the number that is held")).transpose()?,
             scan_to,
+            integrator: entry.integrator.as_ref().map(|name| self.integrator(name)).transpose()?,
+            map_to: entry.map_to.as_ref().map(|end| self.positive(end, "map_to")).transpose()?,
         };
         Ok(StabilityClaim { request, up_to, exactly: entry.exactly })
     }
@@ -223,6 +246,40 @@ impl Reader<'_> {
         Ok(InvariantsClaim { request })
     }
 
+    pub(super) fn operator(&self, spanned: &Spanned<OperatorEntry>) -> Result<OperatorClaim, ClaimsError> {
+        let entry = spanned.get_ref();
+        let positive =
+            |value: &Option<Spanned<f64>>, key| value.as_ref().map(|value| self.positive(value, key)).transpose();
+        let request = OperatorRequest {
+            equation: self.equation(&entry.equation)?,
+            parameters: parameters(&entry.parameters),
+            cells: entry.cells.as_ref().map_or(40, |cells| *cells.get_ref()),
+            courant: positive(&entry.courant, "courant")?,
+            diffusion_number: positive(&entry.diffusion_number, "diffusion_number")?,
+            boundaries: None,
+            integrator: entry.integrator.as_ref().map(|name| self.integrator(name)).transpose()?,
+        };
+        if request.courant.is_none() && request.diffusion_number.is_none() {
+            let message = "a study of an operator needs a step: give `courant` or `diffusion_number`, or both";
+            return Err(self.at(spanned.span(), message));
+        }
+        let spectral_radius_at_most = positive(&entry.spectral_radius_at_most, "spectral_radius_at_most")?;
+        let transient_growth_at_most = positive(&entry.transient_growth_at_most, "transient_growth_at_most")?;
+        if spectral_radius_at_most.is_none() && transient_growth_at_most.is_none() {
+            let message = "[[operator]] claims nothing; give `spectral_radius_at_most` or `transient_growth_at_most`";
+            return Err(self.at(spanned.span(), message));
+        }
+        Ok(OperatorClaim { request, spectral_radius_at_most, transient_growth_at_most })
+    }
+
+    fn integrator(&self, name: &Spanned<String>) -> Result<String, ClaimsError> {
+        if integrators::NAMES.contains(&name.get_ref().as_str()) {
+            return Ok(name.get_ref().clone());
+        }
+        let known = integrators::NAMES.join("`, `");
+        Err(self.at(name.span(), format!("there is no integrator `{}`; there are `{known}`", name.get_ref())))
+    }
+
     /// Checks that a claimed symbol can be read; it is evaluated where G is measured.
     fn symbol(&self, formula: &Spanned<String>) -> Result<String, ClaimsError> {
         let scope = Scope::new(SYMBOL_NAMES).with_imaginary_unit();
@@ -237,12 +294,13 @@ impl Reader<'_> {
 pub const SYMBOL_NAMES: [&str; 3] = ["theta", "c", "r"];
 
 /// The power of the cell width with which the step falls, unless told otherwise: in proportion, or as h^2 where the diffusion number is held;
-/// where space alone is studied, as fast as keeps the error in time (order `time_order`, 1 unless told) from falling more slowly than h^expect.
+/// where space alone is studied, as fast as keeps the error in time (order `time_order`, 1 unless told) from falling more slowly than h^expect,
+/// and never so slowly that a diffusion number given on the coarsest level grows: a right explicit scheme would blow up on the finer ones.
 pub fn default_step_power(refine: Refinement, step: Option<StepSize>, expect: f64, time_order: Option<f64>) -> f64 {
+    let slowest = if matches!(step, Some(StepSize::DiffusionNumber(_))) { 2.0 } else { 1.0 };
     match (refine, step) {
-        (Refinement::Space, _) => (expect / time_order.unwrap_or(1.0)).max(1.0),
-        (_, Some(StepSize::DiffusionNumber(_))) => 2.0,
-        _ => 1.0,
+        (Refinement::Space, _) => (expect / time_order.unwrap_or(1.0)).max(slowest),
+        _ => slowest,
     }
 }
 
@@ -253,4 +311,24 @@ pub fn in_proportion(x: usize, dimensions: usize) -> Vec<usize> {
 
 fn parameters(entries: &BTreeMap<String, NumberOrList>) -> Parameters {
     entries.iter().map(|(name, value)| (name.clone(), value.components())).collect()
+}
+
+#[cfg(test)]
+mod tests {
+    use super::*;
+
+    #[test]
+    fn a_diffusion_number_given_on_the_coarsest_level_grows_on_no_other() {
+        let held = Some(StepSize::DiffusionNumber(0.2));
+        for refine in [Refinement::Space, Refinement::SpaceTime] {
+            for (expect, time_order) in [(2.0, 4.0), (2.0, 3.0), (4.0, 4.0), (6.0, 4.0), (4.0, 1.0)] {
+                assert!(
+                    default_step_power(refine, held, expect, Some(time_order)) >= 2.0,
+                    "{refine:?} {expect} {time_order}"
+                );
+            }
+        }
+        assert_eq!(default_step_power(Refinement::Space, Some(StepSize::Courant(0.4)), 5.0, Some(3.0)), 5.0 / 3.0);
+        assert_eq!(default_step_power(Refinement::SpaceTime, Some(StepSize::Courant(0.4)), 5.0, None), 1.0);
+    }
 }

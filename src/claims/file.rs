@@ -66,6 +66,43 @@ pub struct ClaimsFile {
     #[serde(default)]
     #[schemars(with = "Vec<InvariantsEntry>")]
     pub invariants: Vec<Spanned<InvariantsEntry>>,
+    /// Claims about the operator of a bounded problem.
+    #[serde(default)]
+    #[schemars(with = "Vec<OperatorEntry>")]
+    pub operator: Vec<Spanned<OperatorEntry>>,
+}
+
+/// `[[operator]]`: the rate or the step between boundaries, as a matrix, in one dimension.
+#[derive(Clone, Debug, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct OperatorEntry {
+    /// Which of `[schemes]`, one name or a list. Default: all.
+    #[schemars(with = "Option<OneOrMany>")]
+    pub scheme: Option<Spanned<OneOrMany>>,
+    /// The equation's name.
+    #[schemars(with = "String")]
+    pub equation: Spanned<String>,
+    /// The equation's parameters. Default: generic values inside the offer.
+    #[serde(default)]
+    pub parameters: BTreeMap<String, NumberOrList>,
+    /// Cells. Default 40.
+    #[schemars(with = "Option<usize>")]
+    pub cells: Option<Spanned<usize>>,
+    /// Courant number of the step.
+    #[schemars(with = "Option<f64>")]
+    pub courant: Option<Spanned<f64>>,
+    /// Diffusion number of the step.
+    #[schemars(with = "Option<f64>")]
+    pub diffusion_number: Option<Spanned<f64>>,
+    /// A time integrator that takes the steps with the scheme's `rate`. Default: the scheme's own steps are probed.
+    #[schemars(with = "Option<String>")]
+    pub integrator: Option<Spanned<String>>,
+    /// Claim: the spectral radius of a step is at most this: 1 for a stable one.
+    #[schemars(with = "Option<f64>")]
+    pub spectral_radius_at_most: Option<Spanned<f64>>,
+    /// Claim: no state grows by more than this factor on the way, in the Euclidean norm.
+    #[schemars(with = "Option<f64>")]
+    pub transient_growth_at_most: Option<Spanned<f64>>,
 }
 
 /// A scheme: exactly one of `command`, `plugin` and `classical`.
@@ -83,12 +120,18 @@ pub struct SchemeEntry {
     /// The longest time for one request, such as `"60s"` or `"5min"`. Default 60 s.
     #[schemars(with = "Option<String>")]
     pub time_limit: Option<Spanned<String>>,
-    /// The longest time for start-up and for the first `prepare`. Default 60 s.
+    /// The longest time for start-up, until `describe` is answered. Default 60 s.
     #[schemars(with = "Option<String>")]
     pub start_limit: Option<Spanned<String>>,
     /// The most memory for the scheme's process, such as `"4GiB"`. Default: no limit.
     #[schemars(with = "Option<String>")]
     pub memory_limit: Option<Spanned<String>>,
+    /// The longest message that the scheme may send, such as `"64MiB"`. Default 1 GiB.
+    #[schemars(with = "Option<String>")]
+    pub message_limit: Option<Spanned<String>>,
+    /// The most processes that the scheme may have at once, itself included. Default: no limit.
+    #[schemars(with = "Option<u32>")]
+    pub process_limit: Option<Spanned<u32>>,
 }
 
 /// How the run is done.
@@ -187,6 +230,10 @@ pub struct OrderEntry {
     /// Where the run ends. Default: the problem's.
     #[schemars(with = "Option<f64>")]
     pub final_time: Option<Spanned<f64>>,
+    /// How the problem is taken to its end: `advance`, `march`, or `rate`, which the harness integrates so that the error in time is far below
+    /// the one in space. Default: the first of these that the scheme offers.
+    #[schemars(with = "Option<String>")]
+    pub operation: Option<Spanned<String>>,
     /// `l1`, `l2` (default) or `linf`.
     #[schemars(with = "Option<String>")]
     pub norm: Option<Spanned<String>>,
@@ -235,6 +282,12 @@ pub struct ModesEntry {
     /// Claim: G as a formula in `theta`, the Courant number `c` and the diffusion number `r`, with `i` the imaginary unit.
     #[schemars(with = "Option<String>")]
     pub symbol: Option<Spanned<String>>,
+    /// Claim: the formal order of accuracy, from the leading term of the modified equation at a constant Courant (or diffusion) number.
+    #[schemars(with = "Option<usize>")]
+    pub formal_order: Option<Spanned<usize>>,
+    /// Whether each wavenumber is tried by itself even where the scheme is linear. Default false.
+    #[serde(default)]
+    pub mode_by_mode: bool,
 }
 
 /// `[[stability]]`: the scheme is stable up to a step.
@@ -265,6 +318,13 @@ pub struct StabilityEntry {
     /// Whether the claim is that this is the limit itself: a scheme that is stable beyond it is refuted too. Default false.
     #[serde(default)]
     pub exactly: bool,
+    /// A time integrator that takes the steps with the scheme's `rate`: `rk1` to `rk7`, `ssp-rk2`, `ssp-rk3`, `ssp-rk3-four-stages`,
+    /// `low-storage-rk3`, `low-storage-rk4`, `ab2`, `ab3` or `ab4`. Default: the scheme's own steps.
+    #[schemars(with = "Option<String>")]
+    pub integrator: Option<Spanned<String>>,
+    /// A map of the plane of both numbers as well, up to this diffusion number and up to `scan_to` in the Courant number (equations with both).
+    #[schemars(with = "Option<f64>")]
+    pub map_to: Option<Spanned<f64>>,
     /// How far the scan goes. Default: twice the claim, at least 4.
     #[schemars(with = "Option<f64>")]
     pub scan_to: Option<Spanned<f64>>,

@@ -11,8 +11,8 @@ mod read;
 
 pub use entries::{DEFAULT_TOLERANCE, SYMBOL_NAMES, default_step_power, in_proportion};
 pub use plan::{
-    Claim, ClaimKind, InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OrderClaim, OrderRequest, Plan,
-    RouteChoice, SchemeChoice, StabilityClaim, StabilityRequest, StepSize,
+    Claim, ClaimKind, InvariantsClaim, InvariantsRequest, ModesClaim, ModesRequest, OperatorClaim, OperatorRequest,
+    OrderClaim, OrderRequest, Plan, RouteChoice, SchemeChoice, StabilityClaim, StabilityRequest, StepSize,
 };
 pub use problem::ClaimsError;
 pub use read::{plan_of, read_claims};

@@ -5,6 +5,7 @@ use std::path::PathBuf;
 use std::time::Duration;
 
 use gridassay_reference::problem::Problem;
+use gridassay_scheme::{BoundaryKind, Operation};
 
 use crate::record::{ClaimsRecord, Invariant, Parameters, Refinement, StepNumber};
 
@@ -34,6 +35,10 @@ pub struct SchemeChoice {
     pub start_limit: Option<Duration>,
     /// The most memory in bytes; `None`: no limit.
     pub memory_limit: Option<u64>,
+    /// The longest message in bytes; `None`: the host's default.
+    pub message_limit: Option<u64>,
+    /// The most processes at once; `None`: no limit.
+    pub process_limit: Option<u32>,
 }
 
 /// The three ways to hand a scheme in.
@@ -55,7 +60,8 @@ pub enum RouteChoice {
 impl SchemeChoice {
     /// A scheme reached by `route` within the default limits.
     pub fn new(route: RouteChoice) -> Self {
-        Self { route, time_limit: None, start_limit: None, memory_limit: None }
+        let (time_limit, start_limit, memory_limit, message_limit, process_limit) = (None, None, None, None, None);
+        Self { route, time_limit, start_limit, memory_limit, message_limit, process_limit }
     }
 }
 
@@ -83,6 +89,38 @@ pub enum ClaimKind {
     Stability(StabilityClaim),
     /// What the scheme keeps.
     Invariants(InvariantsClaim),
+    /// The operator of a bounded problem.
+    Operator(OperatorClaim),
+}
+
+/// What to measure for the operator of a bounded problem in one dimension.
+#[derive(Clone, Debug)]
+pub struct OperatorRequest {
+    /// The equation's name.
+    pub equation: String,
+    /// Parameters that the person fixed.
+    pub parameters: Parameters,
+    /// Cells.
+    pub cells: usize,
+    /// a dt / h.
+    pub courant: Option<f64>,
+    /// nu dt / h^2.
+    pub diffusion_number: Option<f64>,
+    /// Kinds of boundary at the lower and the upper end; `None`: the harness's choice.
+    pub boundaries: Option<[BoundaryKind; 2]>,
+    /// A time integrator that takes the steps with the scheme's rate; `None`: the scheme's own steps are probed.
+    pub integrator: Option<String>,
+}
+
+/// Claims about the operator of a bounded problem.
+#[derive(Clone, Debug)]
+pub struct OperatorClaim {
+    /// What to measure.
+    pub request: OperatorRequest,
+    /// Bound on the spectral radius of a step.
+    pub spectral_radius_at_most: Option<f64>,
+    /// Bound on the largest growth of the Euclidean norm on the way.
+    pub transient_growth_at_most: Option<f64>,
 }
 
 /// What to measure for an order of accuracy.
@@ -102,6 +140,8 @@ pub struct OrderRequest {
     pub step_power: f64,
     /// Where the run ends.
     pub final_time: f64,
+    /// The operation that takes the problem to its end; `None`: the first of `advance`, `march` and `rate` that is offered.
+    pub operation: Option<Operation>,
 }
 
 /// A step on the coarsest level.
@@ -143,6 +183,8 @@ pub struct ModesRequest {
     pub courant: Option<f64>,
     /// nu dt / h^2.
     pub diffusion_number: Option<f64>,
+    /// Whether each wavenumber is tried by itself even where the scheme is linear: the approximate dispersion relation of Pirozzoli (2006).
+    pub mode_by_mode: bool,
 }
 
 /// Claims about amplification factors.
@@ -158,6 +200,8 @@ pub struct ModesClaim {
     pub from_points_per_wavelength: f64,
     /// The claimed G as a formula.
     pub symbol: Option<String>,
+    /// The claimed order of the departure from the equation at small wavenumbers.
+    pub formal_order: Option<usize>,
 }
 
 /// What to measure for stable steps.
@@ -173,6 +217,11 @@ pub struct StabilityRequest {
     pub held: Option<f64>,
     /// How far the scan goes.
     pub scan_to: f64,
+    /// A time integrator that takes the steps with the scheme's rate, by its name in [`crate::analysis::integrators::NAMES`]; `None`: the
+    /// scheme's own steps.
+    pub integrator: Option<String>,
+    /// Where the equation has both numbers: a map of their plane up to this diffusion number, and up to `scan_to` in the Courant number.
+    pub map_to: Option<f64>,
 }
 
 /// A claimed stable range.

@@ -56,6 +56,10 @@ pub fn plan_of(path: &Path, text: &str, folder: &Path) -> Result<Plan, ClaimsErr
         let kind = ClaimKind::Modes(reader.modes(entry)?);
         reader.state(&mut claims, ("modes", entry.span()), &known, entry.get_ref().scheme.as_ref(), kind)?;
     }
+    for entry in &file.operator {
+        let kind = ClaimKind::Operator(reader.operator(entry)?);
+        reader.state(&mut claims, "operator", &known, entry.get_ref().scheme.as_ref(), kind)?;
+    }
     for entry in &file.stability {
         let kind = ClaimKind::Stability(reader.stability(entry)?);
         reader.state(&mut claims, ("stability", entry.span()), &known, entry.get_ref().scheme.as_ref(), kind)?;
@@ -67,7 +71,7 @@ pub fn plan_of(path: &Path, text: &str, folder: &Path) -> Result<Plan, ClaimsErr
     if claims.is_empty() {
         return Err(ClaimsError::whole(
             path,
-            "states no claim; add a table [[order]], [[modes]], [[stability]] or [[invariants]]",
+            "states no claim; add a table [[order]], [[modes]], [[stability]], [[operator]] or [[invariants]]",
         ));
     }
     plan.claims = claims;
@@ -136,12 +140,20 @@ impl Reader<'_> {
                 return Err(self.at(entry.span(), message));
             }
         };
+        if let Some(limit) = scheme.process_limit.as_ref().filter(|limit| *limit.get_ref() == 0) {
+            return Err(
+                self.at(limit.span(), "`process_limit` is 0; the scheme itself is a process, so give at least 1")
+            );
+        }
+        let bytes = |text: &Option<Spanned<String>>| text.as_ref().map(|text| self.bytes(text)).transpose();
         let duration = |text: &Option<Spanned<String>>| text.as_ref().map(|text| self.duration(text)).transpose();
         Ok(SchemeChoice {
             route,
             time_limit: duration(&scheme.time_limit)?,
             start_limit: duration(&scheme.start_limit)?,
-            memory_limit: scheme.memory_limit.as_ref().map(|text| self.bytes(text)).transpose()?,
+            memory_limit: bytes(&scheme.memory_limit)?,
+            message_limit: bytes(&scheme.message_limit)?,
+            process_limit: scheme.process_limit.as_ref().map(|limit| *limit.get_ref()),
         })
     }
 

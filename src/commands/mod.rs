@@ -6,18 +6,23 @@
 mod arguments;
 mod completions;
 mod contrast;
+mod greet;
 mod invariants;
 mod judge;
 mod manual;
 mod modes;
+mod operator;
 mod order;
 mod outcome;
 mod problems;
 mod redraw;
+mod repeat;
 mod single;
 mod source;
 mod splice;
 mod stability;
+mod starter;
+mod uncertainty;
 
 use std::process::ExitCode;
 
@@ -45,11 +50,15 @@ enum Command {
     Order(order::Order),
     Stability(stability::Stability),
     Invariants(invariants::Invariants),
+    Operator(operator::Operator),
     Problems(problems::Problems),
     Source(source::Source),
     Contrast(contrast::Contrast),
     Redraw(redraw::Redraw),
     Splice(splice::Splice),
+    Uncertainty(uncertainty::Uncertainty),
+    Greet(greet::Greet),
+    Starter(starter::Starter),
     Completions(completions::Completions),
     Manual(manual::Manual),
 }
@@ -63,11 +72,15 @@ impl Program {
             Command::Order(command) => command.run(),
             Command::Stability(command) => command.run(),
             Command::Invariants(command) => command.run(),
+            Command::Operator(command) => command.run(),
             Command::Problems(command) => command.run(),
             Command::Source(command) => command.run(),
             Command::Contrast(command) => command.run(),
             Command::Redraw(command) => command.run(),
             Command::Splice(command) => command.run(),
+            Command::Uncertainty(command) => command.run(),
+            Command::Greet(command) => command.run(),
+            Command::Starter(command) => command.run(),
             Command::Completions(command) => command.run(),
             Command::Manual(command) => command.run(),
         };

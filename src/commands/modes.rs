@@ -26,6 +26,9 @@ pub struct Modes {
     /// Diffusion number nu dt / h^2.
     #[arg(long, value_parser = positive)]
     diffusion_number: Option<f64>,
+    /// Tries each wavenumber by itself even where the scheme is linear.
+    #[arg(long)]
+    mode_by_mode: bool,
     #[command(flatten)]
     parameters: ParameterArguments,
     #[command(flatten)]
@@ -46,6 +49,7 @@ impl Modes {
             cells: self.cells,
             courant: self.courant,
             diffusion_number: self.diffusion_number,
+            mode_by_mode: self.mode_by_mode,
         };
         let seed = self.output.seed;
         single::measure(&self.scheme, "modes-1", &self.output, |session| modes::run(session, &request, None, seed))

@@ -4,6 +4,7 @@ use std::path::Path;
 
 use clap::{Args, ValueEnum};
 use gridassay_reference::problem::Problem;
+use gridassay_scheme::Operation;
 
 use super::arguments::{Output, ParameterArguments, Scheme, positive};
 use super::outcome::Outcome;
@@ -37,6 +38,9 @@ pub struct Order {
     /// Where the run ends; the problem's own final time without it.
     #[arg(long)]
     final_time: Option<f64>,
+    /// How the problem is taken to its end; the first of these that is offered without it. A rate is integrated to far below its error.
+    #[arg(long, value_enum)]
+    operation: Option<InTime>,
     /// The norm that is judged: l1, l2 or linf.
     #[arg(long, default_value = "l2", value_parser = ["l1", "l2", "linf"])]
     norm: String,
@@ -63,6 +67,23 @@ struct StepArguments {
     /// The step on the coarsest level.
     #[arg(long, value_parser = positive)]
     step: Option<f64>,
+}
+
+#[derive(Clone, Copy, Debug, ValueEnum)]
+enum InTime {
+    Advance,
+    March,
+    Rate,
+}
+
+impl From<InTime> for Operation {
+    fn from(operation: InTime) -> Self {
+        match operation {
+            InTime::Advance => Self::Advance,
+            InTime::March => Self::March,
+            InTime::Rate => Self::Rate,
+        }
+    }
 }
 
 #[derive(Clone, Copy, Debug, ValueEnum)]
@@ -109,6 +130,7 @@ impl Order {
             step_power: self.step_power.unwrap_or_else(|| default_step_power(refine, step, expect, None)),
             final_time: self.final_time.unwrap_or(problem.final_time()),
             velocity_is_open,
+            operation: self.operation.map(Operation::from),
             problem,
         };
         Ok(OrderClaim { request, norm: self.norm.clone(), field: None, expect, tolerance: DEFAULT_TOLERANCE })

@@ -18,6 +18,11 @@ pub enum Outcome {
     Worse,
     /// There was no claim, and something could not be measured.
     NotMeasured,
+    /// The same was done again, and came out the same or changed.
+    Repeated {
+        /// Whether anything changed.
+        changed: bool,
+    },
 }
 
 impl Outcome {
@@ -33,8 +38,8 @@ impl Outcome {
     /// The exit status.
     pub fn exit_code(self) -> ExitCode {
         match self {
-            Self::Judged(Verdict::Upheld) | Self::Measured => ExitCode::SUCCESS,
-            Self::Judged(Verdict::Refuted) | Self::Worse => 1.into(),
+            Self::Judged(Verdict::Upheld) | Self::Measured | Self::Repeated { changed: false } => ExitCode::SUCCESS,
+            Self::Judged(Verdict::Refuted) | Self::Worse | Self::Repeated { changed: true } => 1.into(),
             Self::Judged(Verdict::Undecided) | Self::NotMeasured => 3.into(),
         }
     }

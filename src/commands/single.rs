@@ -25,7 +25,14 @@ pub fn judge(
 ) -> Result<Outcome, Box<dyn std::error::Error>> {
     let mut plan = empty_plan(scheme, output)?;
     plan.claims.push(Claim { id: id.to_owned(), scheme: SCHEME.to_owned(), line: None, kind });
-    let results = assay::run(&plan, std::env::args().collect(), &*progress::fitting(true), |_| Ok(()))?;
+    let manner = assay::Manner {
+        command_line: std::env::args().collect(),
+        workers: 1,
+        progress: &progress::Quiet,
+        journal: None,
+        done: Vec::new(),
+    };
+    let results = assay::run(&plan, manner)?;
     show(&results, output)
 }
 
@@ -52,7 +59,8 @@ fn empty_plan(scheme: &Scheme, output: &Output) -> Result<Plan, String> {
     })
 }
 
-fn show(results: &Results, output: &Output) -> Result<Outcome, Box<dyn std::error::Error>> {
+/// Shows results as was asked, and leaves a dossier where one is wanted.
+pub fn show(results: &Results, output: &Output) -> Result<Outcome, Box<dyn std::error::Error>> {
     if let Some(folder) = &output.out {
         write_results(&dossier::prepare_folder(folder)?, results)?;
         dossier::write_dossier(folder, results)?;

@@ -5,6 +5,7 @@ use clap::Args;
 use super::arguments::{Output, ParameterArguments, Scheme, positive};
 use super::outcome::Outcome;
 use super::single;
+use crate::analysis::integrators;
 use crate::claims::StabilityRequest;
 use crate::record::StepNumber;
 use crate::studies::stability;
@@ -25,6 +26,12 @@ pub struct Stability {
     /// How far the scan goes.
     #[arg(long, default_value_t = 4.0, value_parser = positive)]
     scan_to: f64,
+    /// A time integrator that takes the steps with the scheme's rate, such as rk4 or ab3.
+    #[arg(long, value_parser = clap::builder::PossibleValuesParser::new(integrators::NAMES))]
+    integrator: Option<String>,
+    /// Maps the plane of both numbers as well, up to this diffusion number and up to --scan-to in the Courant number.
+    #[arg(long, value_name = "NUMBER")]
+    map_to: Option<f64>,
     #[command(flatten)]
     parameters: ParameterArguments,
     #[command(flatten)]
@@ -42,6 +49,8 @@ impl Stability {
             number: self.vary_diffusion_number.then_some(StepNumber::DiffusionNumber),
             held: self.held,
             scan_to: self.scan_to,
+            integrator: self.integrator,
+            map_to: self.map_to,
         };
         let seed = self.output.seed;
         single::measure(&self.scheme, "stability-1", &self.output, |session| stability::run(session, &request, seed))

@@ -83,6 +83,6 @@ fn rows(study: &StudyRecord) -> Vec<(String, Vec<Cell>)> {
         Study::Stability(record) => {
             vec![row(format!("stable {}, {}", record.number.words(), record.equation), record.stable_up_to, None)]
         }
-        Study::Modes(_) | Study::Invariants(_) => Vec::new(),
+        Study::Modes(_) | Study::Invariants(_) | Study::Uncertainty(_) | Study::Operator(_) => Vec::new(),
     }
 }

@@ -1,12 +1,15 @@
 //! What a study found and how it was set up, as short statements that several outputs share.
 
+use std::collections::BTreeMap;
+
 use serde::Serialize;
 
 use super::clean::visible;
-use super::invariants;
 use super::words;
+use super::{invariants, uncertainty};
 use crate::record::{
-    ClaimedSymbol, ModesRecord, Observed, OrderRecord, Parameters, StabilityRecord, Study, StudyRecord,
+    ClaimedSymbol, Control, INTERIOR, ModesRecord, Observed, OrderRecord, Parameters, StabilityRecord, Study,
+    StudyRecord,
 };
 
 /// A piece of a statement. Numbers stay numbers until an output rounds them for reading.
@@ -47,6 +50,8 @@ pub(crate) fn heading(study: &StudyRecord) -> Vec<Part> {
             }
             parts
         }
+        Study::Uncertainty(record) => vec![text(format!("Grid convergence of {}", visible(&record.table)))],
+        Study::Operator(record) => vec![text(format!("Operator between boundaries, {}", visible(&record.equation)))],
         Study::Invariants(record) => vec![text(format!("Invariants of {}", visible(&record.equation)))],
         Study::Stability(record) => {
             vec![text(format!("Stable range of the {}, {}", record.number.words(), visible(&record.equation)))]
@@ -59,6 +64,8 @@ pub(crate) fn findings(study: &StudyRecord) -> Vec<Fact> {
     match &study.study {
         Study::Order(record) => order_findings(record),
         Study::Invariants(record) => invariants::findings(record),
+        Study::Uncertainty(record) => uncertainty::findings(record),
+        Study::Operator(record) => super::operator::findings(record),
         Study::Modes(record) => modes_findings(record),
         Study::Stability(record) => stability_findings(record, study.stopped.is_some()),
     }
@@ -69,6 +76,8 @@ pub(crate) fn settings(study: &StudyRecord) -> Vec<Fact> {
     match &study.study {
         Study::Order(record) => order_settings(record),
         Study::Invariants(record) => invariants::settings(record),
+        Study::Uncertainty(record) => uncertainty::settings(record),
+        Study::Operator(record) => super::operator::settings(record),
         Study::Modes(record) => modes_settings(record),
         Study::Stability(record) => stability_settings(record),
     }
@@ -83,7 +92,67 @@ fn order_findings(record: &OrderRecord) -> Vec<Fact> {
             facts.push(fact(format!("Observed order in {names}{of_field}"), parts));
         }
     }
+    for (place, fields) in &record.places {
+        for (field, norms) in fields {
+            let of_field = if several { format!(", {}", visible(field)) } else { String::new() };
+            facts.push(fact(format!("Order {}{of_field}", place_words(place)), norms_parts(norms)));
+        }
+    }
+    for (name, observed) in &record.functionals {
+        facts
+            .push(fact(format!("Order of the functional {}", visible(name)), functional_parts(record, name, observed)));
+    }
+    facts.extend(record.control.as_ref().map(control));
     facts
+}
+
+/// A place as in "order in the interior" and "order near x_lower".
+fn place_words(place: &str) -> String {
+    if place == INTERIOR { format!("in the {INTERIOR}") } else { format!("near {}", visible(place)) }
+}
+
+fn norms_parts(norms: &BTreeMap<String, Observed>) -> Vec<Part> {
+    let mut parts = Vec::new();
+    for (index, (norm, observed)) in norms.iter().enumerate() {
+        parts.push(text(format!("{}{} ", if index > 0 { ", " } else { "" }, words::norm_name(norm))));
+        parts.push(observed.order.map_or_else(|| text("not determined"), Part::Number));
+    }
+    parts
+}
+
+fn functional_parts(record: &OrderRecord, name: &str, observed: &Observed) -> Vec<Part> {
+    let mut parts = observed_parts(record, observed);
+    if let Some(last) = record.levels.last().and_then(|level| level.functionals.get(name)) {
+        parts.extend([text("; on the finest level it is ")]);
+        parts.push(last.value.map_or_else(|| text("not finite"), Part::Number));
+        parts.extend([text(", exactly "), Part::Number(last.exact)]);
+        parts.extend(last.error.into_iter().flat_map(|error| [text(", error "), Part::Number(error)]));
+    }
+    parts
+}
+
+/// The smallest added error that the study refutes.
+fn control(control: &Control) -> Fact {
+    let mut parts = match (control.smallest_refuted, control.on_finest) {
+        (Some(size), Some(on_finest)) => vec![
+            text("an added error of order "),
+            Part::Number(control.order),
+            text(" is refuted from size "),
+            Part::Number(size),
+            text(" on, "),
+            Part::Number(on_finest),
+            text(" of the solution on the finest level"),
+        ],
+        _ => vec![text("no added error of order "), Part::Number(control.order), text(" was refuted")],
+    };
+    for (index, trial) in control.tried.iter().enumerate() {
+        parts.push(text(if index == 0 { "; tried: " } else { ", " }));
+        parts.extend([Part::Number(trial.size), text(format!(" {}", trial.verdict.word()))]);
+    }
+    if let Some(skipped) = &control.skipped {
+        parts.push(text(format!("; {}", visible(skipped))));
+    }
+    fact("Detection limit", parts)
 }
 
 /// Neighbouring norms of which the same is said, said once.
@@ -181,8 +250,43 @@ fn modes_findings(record: &ModesRecord) -> Vec<Fact> {
             facts.push(fact("The scheme adds", parts));
         }
     }
+    resolution(&mut facts, record);
+    worst_directions(&mut facts, record);
+    if let Some(found) = &record.semi_discrete {
+        super::semi_discrete::findings(&mut facts, found);
+    }
     facts
 }
+
+/// Cells per wavelength for given errors.
+fn resolution(facts: &mut Vec<Fact>, record: &ModesRecord) {
+    let several = record.resolution.iter().any(|entry| entry.branch != record.resolution[0].branch);
+    for entry in &record.resolution {
+        let of = if several { format!(", {}", visible(&entry.branch)) } else { String::new() };
+        let mut parts = vec![text(format!("{} within ", entry.quantity.words())), Part::Number(entry.within)];
+        match entry.points_per_wavelength {
+            Some(points) => parts.extend([text(" from "), Part::Number(points)]),
+            None => parts.push(text(": not even the longest wave")),
+        }
+        facts.push(fact(format!("Cells per wavelength{of}"), parts));
+    }
+}
+
+/// The direction in which waves of eight cells err most.
+fn worst_directions(facts: &mut Vec<Fact>, record: &ModesRecord) {
+    for worst in record.worst_directions.iter().filter(|worst| worst.points_per_wavelength == TOLD_POINTS) {
+        let mut parts = vec![text(format!("{}, ", visible(&worst.branch))), Part::Number(worst.error), text(" along ")];
+        for (index, component) in worst.direction.iter().enumerate() {
+            parts.push(text(if index > 0 { ", " } else { "(" }));
+            parts.push(Part::Number(*component));
+        }
+        parts.extend([text(") at "), Part::Number(worst.points_per_wavelength), text(" cells per wavelength")]);
+        facts.push(fact(format!("Worst {}", worst.quantity.words()), parts));
+    }
+}
+
+/// The wavelength for which the worst directions are told; all stand in the results.
+const TOLD_POINTS: f64 = 8.0;
 
 /// G against a claimed formula.
 fn claimed_symbol(facts: &mut Vec<Fact>, claimed: &ClaimedSymbol) {
@@ -255,6 +359,7 @@ fn stability_findings(record: &StabilityRecord, stopped: bool) -> Vec<Fact> {
     if let Some(bound) = record.refused_from {
         facts.push(fact("Refused by the scheme from", vec![Part::Number(bound)]));
     }
+    super::semi_discrete::ranges(&mut facts, &record.predicted, words, record.scanned_up_to);
     facts
 }
 

@@ -14,12 +14,15 @@ mod figure_files;
 mod invariants;
 mod junit;
 mod number;
+mod operator;
 mod page;
+mod semi_discrete;
 mod statement;
 mod summary;
 mod table;
 mod table_files;
 pub mod terminal;
+mod uncertainty;
 mod words;
 
 use std::path::{Path, PathBuf};
@@ -34,6 +37,9 @@ use figure::Figure;
 
 /// The file of the results within a dossier.
 pub const RESULTS_FILE: &str = "results.json";
+
+/// The file of a run's journal within a dossier.
+pub const JOURNAL_FILE: &str = "journal.jsonl";
 
 /// What all outputs are made from.
 pub(crate) struct Dossier<'a> {

@@ -4,8 +4,8 @@ use serde::Serialize;
 
 use super::chart::thin;
 use super::clean::visible;
-use super::invariants;
 use super::words;
+use super::{invariants, uncertainty};
 use crate::record::{ModeRecord, ModesRecord, OrderRecord, StabilityRecord, Study, StudyRecord};
 
 /// A table.
@@ -65,6 +65,8 @@ pub(crate) fn of_study(study: &StudyRecord, most: usize) -> Vec<Table> {
         Study::Order(record) => order_tables(record),
         Study::Modes(record) => modes_tables(record, most),
         Study::Invariants(record) => invariants::tables(record),
+        Study::Uncertainty(record) => uncertainty::tables(record),
+        Study::Operator(record) => super::operator::tables(record, most),
         Study::Stability(record) => stability_tables(record, most),
     }
 }
@@ -137,9 +139,13 @@ fn order_table(record: &OrderRecord, field: &str, several: bool) -> Table {
 }
 
 fn modes_tables(record: &ModesRecord, most: usize) -> Vec<Table> {
-    if record.modes.is_empty() {
-        return Vec::new();
-    }
+    let of_rate = record.semi_discrete.as_ref().map(|found| super::semi_discrete::tables(found, most));
+    let of_steps = (!record.modes.is_empty()).then(|| step_table(record, most));
+    let stencil = stencil_table(record, most);
+    of_steps.into_iter().chain(of_rate.into_iter().flatten()).chain(stencil).collect()
+}
+
+fn step_table(record: &ModesRecord, most: usize) -> Table {
     let dimensions = record.modes[0].theta.len();
     let branches = record.modes.iter().any(|mode| mode.branch != record.modes[0].branch);
     let mut columns = Vec::new();
@@ -194,15 +200,13 @@ fn modes_tables(record: &ModesRecord, most: usize) -> Vec<Table> {
         })
         .collect();
     let of = (rows.len() < record.modes.len()).then_some(record.modes.len());
-    let mut tables = vec![Table {
+    Table {
         id: "modes".into(),
         caption: "Modes, per step; speeds relative to the exact ones".into(),
         columns,
         rows,
         of,
-    }];
-    tables.extend(stencil_table(record, most));
-    tables
+    }
 }
 
 /// The coefficients of the stencil as built: new value = sum of coefficient x old value at the offset.
@@ -259,6 +263,24 @@ fn stability_tables(record: &StabilityRecord, most: usize) -> Vec<Table> {
                 Column { numeric: false, ..column("with the limit", "agrees", "with the limit") },
             ],
             rows: rows.collect(),
+            of: None,
+        });
+    }
+    if !record.map.is_empty() {
+        let row = |row: &crate::record::MapRow| {
+            let interval = |[from, to]: &[f64; 2]| format!("{from:.6} to {to:.6}");
+            let stable: Vec<String> = row.stable.iter().map(interval).collect();
+            let words = if stable.is_empty() { "none".to_owned() } else { stable.join("; ") };
+            vec![Cell::Number(Some(row.diffusion_number)), Cell::Text(words)]
+        };
+        tables.push(Table {
+            id: "map".into(),
+            caption: "Stable Courant numbers by diffusion number".into(),
+            columns: vec![
+                column("diffusion number", "diffusion_number", "diffusion number"),
+                Column { numeric: false, ..column("stable Courant numbers", "stable", "stable Courant numbers") },
+            ],
+            rows: record.map.iter().map(row).collect(),
             of: None,
         });
     }

@@ -12,6 +12,7 @@ mod executable;
 mod float_mode;
 mod frames;
 mod guard;
+mod inbox;
 mod library;
 mod plugin_child;
 mod process;

@@ -15,6 +15,7 @@ use rustix::event::{PollFd, PollFlags, Timespec, poll};
 use rustix::process::{Pid, PidfdFlags, pidfd_open};
 
 use super::guard::{self, Orders, Report};
+use super::inbox::Inbox;
 use super::signals;
 use super::tail::Tail;
 use super::{FaultKind, Limits};
@@ -39,7 +40,7 @@ pub(super) struct Process {
     tail: Arc<Mutex<Tail>>,
     stderr_reader: Option<JoinHandle<()>>,
     /// What was read and not yet taken.
-    pub input: Vec<u8>,
+    inbox: Inbox,
     limits: Limits,
     deadline: Instant,
     limit: (Duration, &'static str),
@@ -85,7 +86,7 @@ impl Process {
             stdout,
             tail,
             stderr_reader,
-            input: Vec::new(),
+            inbox: Inbox::default(),
             limits,
             deadline: Instant::now(),
             limit: (limits.start, "start_limit"),
@@ -117,6 +118,21 @@ impl Process {
         self.deadline += time;
     }
 
+    /// What the scheme has written and nobody has taken yet.
+    pub fn pending(&self) -> &[u8] {
+        self.inbox.pending()
+    }
+
+    /// Takes the first `count` of these bytes.
+    pub fn take(&mut self, count: usize) -> Vec<u8> {
+        self.inbox.take(count)
+    }
+
+    /// Makes room for `count` bytes that are known to come.
+    pub fn expect(&mut self, count: usize) {
+        self.inbox.expect(count);
+    }
+
     pub fn message_limit(&self) -> u64 {
         self.limits.message
     }
@@ -139,9 +155,13 @@ impl Process {
         Ok(())
     }
 
-    /// Reads what there is into `input`, waiting for it; false at end of file.
+    /// Reads what there is, waiting for it; false at end of file.
     pub fn read(&mut self) -> Result<bool, FaultKind> {
         loop {
+            // A scheme that writes without end leaves nothing to wait for, and must not outrun the clock.
+            if Instant::now() >= self.deadline {
+                return Err(self.timed_out());
+            }
             match self.read_now()? {
                 Some(0) => return Ok(false),
                 Some(_) => return Ok(true),
@@ -151,11 +171,7 @@ impl Process {
     }
 
     fn read_now(&mut self) -> Result<Option<usize>, FaultKind> {
-        if self.input.capacity() - self.input.len() < 1 << 16 {
-            // Growth by doubling, beginning with one pipe.
-            self.input.reserve(self.input.len().max(1 << 16));
-        }
-        match rustix::io::read(&self.stdout, rustix::buffer::spare_capacity(&mut self.input)) {
+        match rustix::io::read(&self.stdout, rustix::buffer::spare_capacity(self.inbox.room())) {
             Ok(count) => Ok(Some(count)),
             Err(rustix::io::Errno::AGAIN | rustix::io::Errno::INTR) => Ok(None),
             Err(error) => Err(system(error)),
@@ -186,7 +202,7 @@ impl Process {
             if ended {
                 return Err(self.closed("stdout"));
             }
-            if self.input.len() as u64 > self.limits.message {
+            if self.inbox.pending().len() as u64 > self.limits.message {
                 return Err(FaultKind::TooLong { limit: self.limits.message });
             }
         }
@@ -237,6 +253,10 @@ impl Process {
         lock(&self.tail).push(line);
     }
 
+    pub fn forget_log(&self) {
+        *lock(&self.tail) = Tail::default();
+    }
+
     pub fn stderr_tail(&self) -> String {
         lock(&self.tail).text()
     }
@@ -277,7 +297,7 @@ impl Process {
                 return false;
             }
             if open && !fds[1].revents().is_empty() {
-                self.input.clear();
+                self.inbox.clear();
                 open = !matches!(self.read_now(), Ok(Some(0)) | Err(_));
             }
         }

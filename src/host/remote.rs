@@ -5,7 +5,7 @@ use std::time::Instant;
 use gridassay_scheme::conversation::decode::{count, known_keys, member, typed};
 use gridassay_scheme::conversation::{Arrays, Body, Message, MessageError, Outgoing, Transport};
 use gridassay_scheme::{
-    Advance, CONTRACT, Case, Description, Fields, Harness, March, NoCallbacks, Nodes, SchemeError, Solution,
+    Advance, CONTRACT, Case, Description, Fields, Harness, March, NoCallbacks, Nodes, Offer, SchemeError, Solution,
 };
 use serde_json::{Value, json};
 
@@ -242,4 +242,30 @@ pub(super) fn check_description(description: &Description) -> Result<(), FaultKi
         }
     }
     Ok(())
+}
+
+/// Nodes are needed exactly where the offer says `cell_nodes`, and must be a quadrature.
+pub(super) fn check_nodes(description: &Description, case: &Case, nodes: Option<Nodes>) -> Answer<Option<Nodes>> {
+    let misfit =
+        |reason: String| Failure::from(MessageError::Misfit { place: "the answer to `prepare`".to_owned(), reason });
+    let several = |offer: &Offer| offer.values == gridassay_scheme::Values::CellNodes;
+    let needed = description.offer_for(case).is_some_and(several);
+    let Some(nodes) = nodes else {
+        return if needed { Err(misfit("`cell_nodes` needs `offsets` and `weights`".to_owned())) } else { Ok(None) };
+    };
+    if !needed {
+        return Err(misfit("`offsets` and `weights` belong to `cell_nodes` alone".to_owned()));
+    }
+    let Nodes { offsets, weights } = &nodes;
+    if offsets.is_empty() || offsets.len() != weights.len() {
+        return Err(misfit(format!("{} offsets and {} weights", offsets.len(), weights.len())));
+    }
+    let ascending = offsets.windows(2).all(|pair| pair[0] < pair[1]);
+    if !ascending || !offsets.iter().all(|offset| (0.0..=1.0).contains(offset)) {
+        return Err(misfit(format!("offsets {offsets:?} are not ascending within [0, 1]")));
+    }
+    // Weights are sums of a few roundings each; eps x count covers what a quadrature table in f64 may miss.
+    let sum: f64 = weights.iter().sum();
+    let tolerance = 16.0 * f64::EPSILON * weights.len() as f64;
+    if (sum - 1.0).abs() <= tolerance { Ok(Some(nodes)) } else { Err(misfit(format!("weights sum to {sum}, not 1"))) }
 }

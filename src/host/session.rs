@@ -5,12 +5,12 @@ use std::panic::{AssertUnwindSafe, catch_unwind};
 
 use gridassay_scheme::conversation::MessageError;
 use gridassay_scheme::{
-    Advance, ArrayEncoding, Case, Description, Fields, Harness, March, Nodes, Offer, Operation, Scheme, SchemeError,
-    Solution, panic_message,
+    Advance, ArrayEncoding, Case, Description, Fields, Harness, March, Nodes, Operation, Scheme, SchemeError, Solution,
+    panic_message,
 };
 
 use super::process::Process;
-use super::remote::{Failure, Remote, check_description};
+use super::remote::{Failure, Remote, check_description, check_nodes};
 use super::wire::{Form, Wire};
 use super::{
     Fault, FaultKind, HostError, Identity, Route, SchemeSource, crate_folder, digest, executable, plugin_child,
@@ -24,6 +24,8 @@ pub struct Session {
     identity: Identity,
     /// Whether the last `prepare` succeeded and no fault came since.
     prepared: bool,
+    /// The encoding of arrays that the caller chose.
+    encoding: Option<ArrayEncoding>,
     /// What the last process that ended had printed.
     last_words: String,
 }
@@ -64,7 +66,7 @@ impl Session {
         };
         let runner = Runner::Process(Box::new(remote));
         let source = Some(source.clone());
-        Ok(Self { source, runner, description, identity, prepared: false, last_words: String::new() })
+        Ok(Self { source, runner, description, identity, prepared: false, encoding: None, last_words: String::new() })
     }
 
     /// Takes a scheme of this process, such as the one that a solver's own tests judge.
@@ -79,7 +81,7 @@ impl Session {
             flush_to_zero: None,
         };
         let runner = Runner::InProcess(scheme);
-        Self { source: None, runner, description, identity, prepared: false, last_words: String::new() }
+        Self { source: None, runner, description, identity, prepared: false, encoding: None, last_words: String::new() }
     }
 
     /// A second conversation with the same scheme, started anew; `None` for a scheme that was handed over in this process.
@@ -105,6 +107,15 @@ impl Session {
         match &self.runner {
             Runner::Process(remote) => remote.wire.process.stderr_tail(),
             _ => self.last_words.clone(),
+        }
+    }
+
+    /// Forgets what the scheme has printed so far: what is shown beside a later fault is then of the work that led to it, whatever the
+    /// same process did before.
+    pub fn forget_log(&mut self) {
+        self.last_words.clear();
+        if let Runner::Process(remote) = &self.runner {
+            remote.wire.process.forget_log();
         }
     }
 
@@ -213,7 +224,15 @@ impl Session {
         if self.prepared { Ok(&mut self.runner) } else { Err(HostError::Refused(SchemeError::NotPrepared)) }
     }
 
+    /// Uses this encoding from the next `prepare` on instead of the one that suits the scheme best; `None` goes back to that.
+    pub fn use_encoding(&mut self, encoding: Option<ArrayEncoding>) {
+        self.encoding = encoding;
+    }
+
     fn encoding(&self) -> ArrayEncoding {
+        if let Some(encoding) = self.encoding {
+            return encoding;
+        }
         let understood = self.description.arrays.contains(&ArrayEncoding::Base64);
         if understood { ArrayEncoding::Base64 } else { ArrayEncoding::Text }
     }
@@ -350,32 +369,6 @@ fn same_shape(place: &str, fields: &[Vec<f64>], expected: &[usize]) -> Result<()
         Some((index, (field, length))) => Err(wrong(format!("{place}, field {index},"), *length, field.len()).into()),
         None => Ok(()),
     }
-}
-
-/// Nodes are needed exactly where the offer says `cell_nodes`, and must be a quadrature.
-fn check_nodes(description: &Description, case: &Case, nodes: Option<Nodes>) -> Result<Option<Nodes>, Failure> {
-    let misfit =
-        |reason: String| Failure::from(MessageError::Misfit { place: "the answer to `prepare`".to_owned(), reason });
-    let several = |offer: &Offer| offer.values == gridassay_scheme::Values::CellNodes;
-    let needed = description.offer_for(case).is_some_and(several);
-    let Some(nodes) = nodes else {
-        return if needed { Err(misfit("`cell_nodes` needs `offsets` and `weights`".to_owned())) } else { Ok(None) };
-    };
-    if !needed {
-        return Err(misfit("`offsets` and `weights` belong to `cell_nodes` alone".to_owned()));
-    }
-    let Nodes { offsets, weights } = &nodes;
-    if offsets.is_empty() || offsets.len() != weights.len() {
-        return Err(misfit(format!("{} offsets and {} weights", offsets.len(), weights.len())));
-    }
-    let ascending = offsets.windows(2).all(|pair| pair[0] < pair[1]);
-    if !ascending || !offsets.iter().all(|offset| (0.0..=1.0).contains(offset)) {
-        return Err(misfit(format!("offsets {offsets:?} are not ascending within [0, 1]")));
-    }
-    // Weights are sums of a few roundings each; eps x count covers what a quadrature table in f64 may miss.
-    let sum: f64 = weights.iter().sum();
-    let tolerance = 16.0 * f64::EPSILON * weights.len() as f64;
-    if (sum - 1.0).abs() <= tolerance { Ok(Some(nodes)) } else { Err(misfit(format!("weights sum to {sum}, not 1"))) }
 }
 
 /// Whether some offer of `description` has `operation` for `case`.

@@ -36,12 +36,11 @@ impl Wire {
     fn line(&mut self) -> Result<Option<Vec<u8>>, FaultKind> {
         let mut searched = 0;
         loop {
-            if let Some(found) = memchr(b'\n', &self.process.input[searched..]) {
-                let end = searched + found + 1;
-                let rest = self.process.input.split_off(end);
-                return Ok(Some(std::mem::replace(&mut self.process.input, rest)));
+            let pending = self.process.pending();
+            if let Some(found) = memchr(b'\n', &pending[searched..]) {
+                return Ok(Some(self.process.take(searched + found + 1)));
             }
-            searched = self.process.input.len();
+            searched = pending.len();
             if searched as u64 > self.process.message_limit() {
                 return Err(FaultKind::TooLong { limit: self.process.message_limit() });
             }
@@ -53,19 +52,16 @@ impl Wire {
 
     fn frame(&mut self) -> Result<Option<Result<Message, MessageError>>, FaultKind> {
         loop {
-            match frames::needed(&self.process.input)? {
-                Some(size) if self.process.input.len() >= size => {
-                    let rest = self.process.input.split_off(size);
-                    let frame = std::mem::replace(&mut self.process.input, rest);
-                    return Ok(Some(frames::message(frame)));
+            let pending = self.process.pending();
+            let length = pending.len();
+            match frames::needed(pending)? {
+                Some(size) if length >= size => {
+                    return Ok(Some(frames::message(self.process.take(size))));
                 }
                 Some(size) if size as u64 > self.process.message_limit() => {
                     return Err(FaultKind::TooLong { limit: self.process.message_limit() });
                 }
-                Some(size) => {
-                    let missing = size - self.process.input.len();
-                    self.process.input.reserve_exact(missing);
-                }
+                Some(size) => self.process.expect(size - length),
                 None => {}
             }
             if !self.process.read()? {

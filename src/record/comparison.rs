@@ -204,6 +204,9 @@ fn subject(study: &StudyRecord) -> String {
             format!("{} {:?} {:?} {:?}", record.equation, record.number, record.held, record.parameters)
         }
         Study::Invariants(record) => format!("{} {:?}", record.equation, record.parameters),
+        // Values of the person's own, of which no scheme is asked.
+        Study::Uncertainty(_) => study.id.clone(),
+        Study::Operator(record) => format!("{} {:?} {:?}", record.equation, record.parameters, record.integrator),
     };
     format!("{} {} {about}", study.scheme, study.study.kind())
 }

@@ -5,7 +5,7 @@ use std::collections::BTreeMap;
 use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
-use super::{InvariantsRecord, ModesRecord, OrderRecord, StabilityRecord};
+use super::{InvariantsRecord, ModesRecord, OperatorRecord, OrderRecord, StabilityRecord, UncertaintyRecord};
 
 /// What `format` says in every results file.
 pub const FORMAT: &str = "gridassay-results";
@@ -47,7 +47,7 @@ pub struct SchemeRecord {
     pub name: String,
     /// The version that the scheme gives itself.
     pub version: String,
-    /// How it was reached: `command`, `plugin`, `classical` or `in process`.
+    /// How it was reached: `command`, `plugin`, `classical` or `in process`; `table` for values that no scheme answered.
     pub route: String,
     /// SHA-256 of the executable, script or library, in hexadecimal; `null` where there is no file of its own.
     pub digest: Option<String>,
@@ -114,6 +114,10 @@ pub enum Study {
     Stability(StabilityRecord),
     /// A study of invariants.
     Invariants(InvariantsRecord),
+    /// The uncertainty of a table of values.
+    Uncertainty(UncertaintyRecord),
+    /// A study of the operator of a bounded problem.
+    Operator(OperatorRecord),
 }
 
 impl Study {
@@ -124,16 +128,20 @@ impl Study {
             Self::Modes(_) => "modes",
             Self::Stability(_) => "stability",
             Self::Invariants(_) => "invariants",
+            Self::Uncertainty(_) => "uncertainty",
+            Self::Operator(_) => "operator",
         }
     }
 
-    /// The equation's name.
+    /// The equation's name; empty where there is none.
     pub fn equation(&self) -> &str {
         match self {
             Self::Order(record) => &record.equation,
             Self::Modes(record) => &record.equation,
             Self::Stability(record) => &record.equation,
             Self::Invariants(record) => &record.equation,
+            Self::Uncertainty(_) => "",
+            Self::Operator(record) => &record.equation,
         }
     }
 }

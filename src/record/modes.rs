@@ -3,7 +3,7 @@
 use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
-use super::Parameters;
+use super::{DirectionRecord, Parameters, Resolution, SemiDiscrete, WorstDirection};
 
 /// A Fourier study.
 #[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
@@ -41,6 +41,18 @@ pub struct ModesRecord {
     /// The leading error terms of the modified equation, where they could be read.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub modified_equation: Option<ModifiedEquation>,
+    /// Cells per wavelength for given errors, where the equation moves waves in one dimension.
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    pub resolution: Vec<Resolution>,
+    /// Waves in every direction at 4, 8, 16 and 32 points per wavelength, in two and three dimensions where the stencil is short.
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    pub directions: Vec<DirectionRecord>,
+    /// The directions of the largest errors.
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    pub worst_directions: Vec<WorstDirection>,
+    /// The scheme's semi-discrete rate, where it offers one in one dimension.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub semi_discrete: Option<SemiDiscrete>,
 }
 
 /// The linearity and shift trial: deviations relative to the largest value.

@@ -5,7 +5,7 @@ use std::collections::BTreeMap;
 use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
-use super::Parameters;
+use super::{Parameters, Verdict};
 
 /// What is refined from level to level.
 #[derive(Clone, Copy, Debug, Default, PartialEq, Eq, Serialize, Deserialize, JsonSchema)]
@@ -32,7 +32,7 @@ impl Refinement {
 }
 
 /// A refinement study.
-#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
 pub struct OrderRecord {
     /// The equation's name.
     pub equation: String,
@@ -60,6 +60,16 @@ pub struct OrderRecord {
     pub solution_size: BTreeMap<String, Norms>,
     /// By field, then by norm (`l1`, `l2`, `linf`): the observed order.
     pub observed: BTreeMap<String, BTreeMap<String, Observed>>,
+    /// By place (`interior`, `x_lower`, ...), field and norm: the observed order there; empty where the domain has no sides. A side stands for
+    /// the strip of [`STRIP`] cells along it.
+    #[serde(default, skip_serializing_if = "BTreeMap::is_empty")]
+    pub places: BTreeMap<String, BTreeMap<String, BTreeMap<String, Observed>>>,
+    /// By functional: the observed order of its error.
+    #[serde(default, skip_serializing_if = "BTreeMap::is_empty")]
+    pub functionals: BTreeMap<String, Observed>,
+    /// The same study on the scheme with a known error added; absent where no claim was upheld.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub control: Option<Control>,
 }
 
 impl OrderRecord {
@@ -71,14 +81,39 @@ impl OrderRecord {
         self.levels.iter().filter(|level| !level.errors.is_empty()).map(one).collect()
     }
 
+    /// The ladder of one field in one norm at one place. The floors are those of the whole field.
+    pub fn series_at(&self, place: &str, field: &str, norm: &str) -> Vec<(f64, f64, f64)> {
+        let read = |table: &BTreeMap<String, Norms>| table.get(field).and_then(|norms| norms.get(norm));
+        let one = |level: &Level| {
+            let errors = level.places.get(place)?;
+            Some((level.h, read(errors).unwrap_or(f64::NAN), read(&level.floor).unwrap_or(0.0)))
+        };
+        self.levels.iter().filter_map(one).collect()
+    }
+
+    /// The ladder of the error of a functional.
+    pub fn series_of(&self, functional: &str) -> Vec<(f64, f64, f64)> {
+        let one = |level: &Level| {
+            let value = level.functionals.get(functional)?;
+            Some((level.h, value.error.unwrap_or(f64::NAN), value.floor.unwrap_or(0.0)))
+        };
+        self.levels.iter().filter_map(one).collect()
+    }
+
     /// The size of the exact solution of one field in one norm; 0 where it is not known.
     pub fn size(&self, field: &str, norm: &str) -> f64 {
         self.solution_size.get(field).and_then(|norms| norms.get(norm)).unwrap_or(0.0)
     }
 }
 
+/// The name of the place that lies between the strips along the sides.
+pub const INTERIOR: &str = "interior";
+
+/// Cells in the strip along a side, over which errors near that side are taken.
+pub const STRIP: usize = 2;
+
 /// One level of a ladder.
-#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
 pub struct Level {
     /// Cells in each direction.
     pub cells: Vec<usize>,
@@ -97,9 +132,57 @@ pub struct Level {
     /// Wall time of the scheme's run on this level in seconds, without the exact solution and the norms; it differs from run to run.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub seconds: Option<f64>,
+    /// By place, then by field: the norms of the error in the interior and in the strip along each side.
+    #[serde(default, skip_serializing_if = "BTreeMap::is_empty")]
+    pub places: BTreeMap<String, BTreeMap<String, Norms>>,
+    /// By name: the functionals of the problem.
+    #[serde(default, skip_serializing_if = "BTreeMap::is_empty")]
+    pub functionals: BTreeMap<String, FunctionalValue>,
     /// Why this level has no errors, where it has none.
     #[serde(default, skip_serializing_if = "Option::is_none")]
     pub note: Option<String>,
+}
+
+/// A functional on one level: the sum over all values of the integrand times the measure that each stands for.
+#[derive(Clone, Copy, Debug, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct FunctionalValue {
+    /// From the scheme's state.
+    pub value: Option<f64>,
+    /// From the exact state, by the same sum.
+    pub exact: f64,
+    /// The modulus of their difference.
+    pub error: Option<f64>,
+    /// The size that round-off gives to it.
+    pub floor: Option<f64>,
+}
+
+/// The control of an upheld claim: an error of known order and size is added to the scheme, and the claim judged anew.
+#[derive(Clone, Debug, Default, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Control {
+    /// The order of the added error: one below the claim, at least 0.
+    pub order: f64,
+    /// The detection limit: the smallest size that is refuted. The added error is this x (h / L)^order x the size of the solution, with L
+    /// the extent in x (where the step alone is refined: the whole time). `null`: none was refuted, or no control was run.
+    pub smallest_refuted: Option<f64>,
+    /// The added error at the detection limit on the finest level, relative to the solution.
+    pub on_finest: Option<f64>,
+    /// The sizes that were tried, in the order of trial.
+    pub tried: Vec<Trial>,
+    /// Why sizes that would have told more were not tried, where they were not.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub skipped: Option<String>,
+}
+
+/// One size of an added error.
+#[derive(Clone, Copy, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct Trial {
+    /// The size.
+    pub size: f64,
+    /// What became of the claim with it.
+    pub verdict: Verdict,
 }
 
 /// Norms of one array, weighted by cell measure and divided by the total measure.

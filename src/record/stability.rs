@@ -3,7 +3,7 @@
 use schemars::JsonSchema;
 use serde::{Deserialize, Serialize};
 
-use super::Parameters;
+use super::{Parameters, PredictedRange};
 
 /// Which number measures the step.
 #[derive(Clone, Copy, Debug, PartialEq, Eq, Serialize, Deserialize, JsonSchema)]
@@ -60,6 +60,22 @@ pub struct StabilityRecord {
     /// Long runs from noise on either side of the limit.
     #[serde(default, skip_serializing_if = "Vec::is_empty")]
     pub confirmation: Vec<Confirmation>,
+    /// Ranges that time integrators would have with the scheme's rate, where it offers one.
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    pub predicted: Vec<PredictedRange>,
+    /// The plane of both numbers, row by row, where a map was asked for.
+    #[serde(default, skip_serializing_if = "Vec::is_empty")]
+    pub map: Vec<MapRow>,
+}
+
+/// The stable Courant numbers at one diffusion number.
+#[derive(Clone, Debug, PartialEq, Serialize, Deserialize, JsonSchema)]
+#[serde(deny_unknown_fields)]
+pub struct MapRow {
+    /// The diffusion number.
+    pub diffusion_number: f64,
+    /// The stable Courant numbers, as intervals; empty where none is stable. The ends are the boundary of the plane's stable set.
+    pub stable: Vec<[f64; 2]>,
 }
 
 /// Growth without any stable step: max |G| - 1 = coefficient x number^power.

@@ -1,6 +1,6 @@
 //! The trial before any Fourier study: is a step linear, the same at every position, and the same at every time?
 
-use gridassay_scheme::{Advance, Fields, NoCallbacks};
+use gridassay_scheme::{Advance, Fields, NoCallbacks, Operation};
 
 use super::Stop;
 use super::cellwise::Cellwise;
@@ -16,11 +16,14 @@ const ALLOWED: f64 = 1e-6;
 /// A state with its older levels.
 pub type Levels = Vec<Fields>;
 
-/// Takes one step of `setting` from a state with its older levels (newest first), at time `time`.
+/// What the scheme makes of a state with its older levels (newest first) at time `time`: one step of `setting`, or its rate.
 ///
 /// # Errors
 /// The scheme refused or failed.
 pub fn step(session: &mut Session, setting: &Setting, levels: &Levels, time: f64) -> Result<Levels, Stop> {
+    if setting.operation == Operation::Rate {
+        return Ok(vec![session.rate(time, &levels[0], &mut NoCallbacks)?]);
+    }
     let mut state = levels[0].clone();
     let mut earlier = levels[1..].to_vec();
     let request = Advance { time, step: setting.step, steps: 1, state: &mut state, earlier: &mut earlier };

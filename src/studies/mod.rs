@@ -10,11 +10,14 @@ pub mod layout;
 pub mod linearity;
 pub mod modes;
 pub mod noise;
+pub mod operator;
 pub mod order;
 pub mod selection;
+pub mod semi_discrete;
 pub mod setting;
 pub mod speed;
 pub mod stability;
+pub mod uncertainty;
 
 mod made;
 mod stop;

@@ -1,6 +1,6 @@
 //! The periodic setting of a Fourier study: grid, parameters and step from Courant and diffusion numbers.
 
-use gridassay_scheme::{BoundaryKind, Case, Grid, GridKind, NoCallbacks, Nodes, Offer, Operation};
+use gridassay_scheme::{BoundaryKind, Case, Grid, GridKind, NoCallbacks, Nodes, Offer, Operation, SideKinds};
 
 use super::selection::{Need, choose};
 use super::{Stop, case};
@@ -36,14 +36,48 @@ pub struct Setting {
     pub step: f64,
     /// The numbers as realised; both where the equation has both.
     pub numbers: Numbers,
+    /// What the scheme is asked for: `advance`, or the `rate` of a semi-discrete scheme.
+    pub operation: Operation,
 }
 
 impl Setting {
-    /// The setting of `equation` on `cells` at `numbers`, with the person's `fixed` parameters; the others are generic.
+    /// The setting of `equation` on `cells` at `numbers`, with the person's `fixed` parameters; the others are generic. The scheme is asked
+    /// for steps.
     ///
     /// # Errors
     /// Numbers that do not go with the equation, or a scheme without a fitting offer.
     pub fn new(
+        session: &Session,
+        equation: &str,
+        fixed: &Parameters,
+        cells: &[usize],
+        numbers: Numbers,
+    ) -> Result<Self, Stop> {
+        Self::asking_for(Operation::Advance, session, equation, fixed, cells, numbers)
+    }
+
+    /// The same, with the scheme asked for `operation`: `advance` or `rate`. A rate has one time level, whatever the steps have.
+    ///
+    /// # Errors
+    /// As [`Setting::new`].
+    pub fn asking_for(
+        operation: Operation,
+        session: &Session,
+        equation: &str,
+        fixed: &Parameters,
+        cells: &[usize],
+        numbers: Numbers,
+    ) -> Result<Self, Stop> {
+        Self::between([BoundaryKind::Periodic; 2], operation, session, equation, fixed, cells, numbers)
+    }
+
+    /// The same between boundaries of these kinds at the lower and the upper end of every direction.
+    ///
+    /// # Errors
+    /// As [`Setting::new`].
+    pub fn between(
+        kinds: [BoundaryKind; 2],
+        operation: Operation,
         session: &Session,
         equation: &str,
         fixed: &Parameters,
@@ -59,12 +93,13 @@ impl Setting {
         let upper: Vec<f64> = (0..dimensions).map(|axis| LOWER[axis] + LENGTH[axis]).collect();
         let grid = Grid::uniform(cells, &LOWER[..dimensions], &upper);
         let (parameters, step, numbers) = resolve(equation, fixed, &grid, numbers)?;
-        let case = case::periodic(equation, &parameters, grid);
+        let mut case = case::periodic(equation, &parameters, grid);
+        case.boundaries.fill(kinds.map(SideKinds::Same));
         let need = Need {
             equation,
             dimensions,
-            operations: &[Operation::Advance],
-            boundaries: &[BoundaryKind::Periodic],
+            operations: &[operation],
+            boundaries: &kinds,
             source: false,
             coefficients: &[],
             parameters: &parameters,
@@ -73,7 +108,9 @@ impl Setting {
         };
         let (offer, _) = choose(session.description(), &need).map_err(Stop::NotOffered)?;
         let names = case::fields(offer, dimensions, None);
-        Ok(Self { offer: offer.clone(), names, case, parameters, step, numbers })
+        let levels = if operation == Operation::Rate { 1 } else { offer.levels };
+        let offer = Offer { levels, ..offer.clone() };
+        Ok(Self { offer, names, case, parameters, step, numbers, operation })
     }
 
     /// Asks the scheme to prepare the case; answers the nodes of a cell where it has several.

@@ -2,6 +2,7 @@
 
 pub mod invariants;
 pub mod modes;
+pub mod operator;
 pub mod order;
 pub mod stability;
 pub mod words;

@@ -12,6 +12,18 @@ pub fn judge(claim: &ModesClaim, study: &StudyRecord, record: &ModesRecord) -> J
             "a scheme that can be run on this case",
         );
     }
+    if record.linear == Some(false) && claim.request.mode_by_mode {
+        return Judgement::undecided(
+            "the wavenumbers were tried one by one, so that what stands is an approximate dispersion relation",
+            "the same claim without `mode_by_mode`, for a linear scheme",
+        );
+    }
+    if record.modes.is_empty() && record.semi_discrete.is_some() {
+        return Judgement::undecided(
+            "the scheme offers its rate and no steps, so that it has no amplification factor of its own",
+            "a scheme that offers `advance`, or a claim about its stable range with an integrator",
+        );
+    }
     if record.linear == Some(false) {
         return Judgement::undecided(
             "the scheme is not linear and shift invariant, so that it has no amplification factor",
@@ -26,6 +38,9 @@ pub fn judge(claim: &ModesClaim, study: &StudyRecord, record: &ModesRecord) -> J
     if let Some(within) = claim.damping_error_within {
         let measured = |mode: &ModeRecord| mode.damping_error.map(f64::abs);
         judgements.push(bounded(claim, record, "damping error in one step", within, measured));
+    }
+    if let Some(order) = claim.formal_order {
+        judgements.push(formal_order(order, record));
     }
     if let Some(symbol) = &record.claimed_symbol {
         judgements.push(symbol_judged(symbol));
@@ -73,6 +88,26 @@ fn bounded(
             format!("{says}; G is uncertain by {uncertainty:.1e}"),
             "an implicit part that is solved more tightly",
         )
+    }
+}
+
+/// Weighs a claimed formal order: more than was claimed is no mistake.
+fn formal_order(claimed: usize, record: &ModesRecord) -> Judgement {
+    let Some(equation) = &record.modified_equation else {
+        return Judgement::undecided(
+            "no term of the modified equation stands out of rounding",
+            "a scalar scheme in one dimension that is not exact at this step, or another Courant number",
+        );
+    };
+    let terms = equation.terms.first().map_or_else(String::new, |(derivative, coefficient)| {
+        format!("; the leading term is {coefficient:.4e} times the derivative of order {derivative}")
+    });
+    match equation.formal_order {
+        Some(found) if found >= claimed => Judgement::upheld(format!("formally of order {found}{terms}")),
+        found => {
+            let found = found.unwrap_or(0);
+            Judgement::refuted(format!("formally of order {found}, claimed {claimed}{terms}"))
+        }
     }
 }
 

@@ -9,7 +9,10 @@ const SAME: f64 = 1e-6;
 
 /// Weighs a stable range.
 pub fn judge(claim: &StabilityClaim, study: &StudyRecord, record: &StabilityRecord) -> Judgement {
-    let words = record.number.words();
+    let words = &match &claim.request.integrator {
+        Some(integrator) => format!("{} with {integrator}", record.number.words()),
+        None => record.number.words().to_owned(),
+    };
     if let Some(stopped) = &study.stopped {
         return Judgement::undecided(
             format!("the range was not measured: {stopped}"),

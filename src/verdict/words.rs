@@ -1,6 +1,6 @@
 //! Claims in the words of the trade.
 
-use crate::claims::{ClaimKind, InvariantsClaim, ModesClaim, OrderClaim, StabilityClaim};
+use crate::claims::{ClaimKind, InvariantsClaim, ModesClaim, OperatorClaim, OrderClaim, StabilityClaim};
 use crate::record::{Claimed, StepNumber};
 
 /// A claim as a sentence without its scheme.
@@ -10,6 +10,7 @@ pub fn claim(kind: &ClaimKind) -> String {
         ClaimKind::Modes(claim) => modes(claim),
         ClaimKind::Stability(claim) => stability(claim),
         ClaimKind::Invariants(claim) => invariants(claim),
+        ClaimKind::Operator(claim) => operator(claim),
     }
 }
 
@@ -31,10 +32,15 @@ pub fn claimed(kind: &ClaimKind) -> Option<Claimed> {
         }),
         ClaimKind::Modes(claim) => {
             let phase = claim.phase_speed_error_within.map(|within| bare("phase_speed_error", within));
-            phase.or(claim.damping_error_within.map(|within| bare("damping_error", within)))
+            let damping = claim.damping_error_within.map(|within| bare("damping_error", within));
+            phase.or(damping).or(claim.formal_order.map(|order| bare("formal_order", order as f64)))
         }
         ClaimKind::Stability(claim) => Some(bare("stable_up_to", claim.up_to)),
         ClaimKind::Invariants(_) => None,
+        ClaimKind::Operator(claim) => {
+            let radius = claim.spectral_radius_at_most.map(|bound| bare("spectral_radius", bound));
+            radius.or(claim.transient_growth_at_most.map(|bound| bare("transient_growth", bound)))
+        }
     }
 }
 
@@ -65,6 +71,9 @@ fn modes(claim: &ModesClaim) -> String {
     if let Some(within) = claim.damping_error_within {
         parts.push(format!("damping within {within} a step from {from} points per wavelength"));
     }
+    if let Some(order) = claim.formal_order {
+        parts.push(format!("formal order {order}"));
+    }
     if let Some(symbol) = &claim.symbol {
         parts.push(format!("G = {symbol}"));
     }
@@ -77,7 +86,16 @@ fn modes(claim: &ModesClaim) -> String {
 fn stability(claim: &StabilityClaim) -> String {
     let number = claim.request.number.map_or("step", StepNumber::words);
     let exactly = if claim.exactly { " and no further" } else { "" };
-    format!("stable up to {number} {}{exactly} for {}", claim.up_to, claim.request.equation)
+    let with = claim.request.integrator.as_ref().map_or_else(String::new, |name| format!(" with {name}"));
+    format!("stable up to {number} {}{exactly}{with} for {}", claim.up_to, claim.request.equation)
+}
+
+fn operator(claim: &OperatorClaim) -> String {
+    let radius = claim.spectral_radius_at_most.map(|bound| format!("spectral radius of a step at most {bound}"));
+    let transient = claim.transient_growth_at_most.map(|bound| format!("growth on the way at most {bound}"));
+    let parts: Vec<String> = radius.into_iter().chain(transient).collect();
+    let with = claim.request.integrator.as_ref().map_or_else(String::new, |name| format!(" with {name}"));
+    format!("{} for {} between boundaries{with}", parts.join(" and "), claim.request.equation)
 }
 
 fn invariants(claim: &InvariantsClaim) -> String {

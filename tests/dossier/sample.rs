@@ -86,6 +86,10 @@ pub fn modes(scheme: &Scheme, cells: usize, c: f64) -> ModesRecord {
             formal_order: Some(scheme.order as usize),
             terms: vec![(scheme.order as usize + 1, -0.083_21)],
         }),
+        resolution: Vec::new(),
+        directions: Vec::new(),
+        worst_directions: Vec::new(),
+        semi_discrete: None,
     }
 }
 
@@ -105,8 +109,7 @@ pub fn order(scheme: &Scheme, cells: &[usize], c: f64) -> OrderRecord {
             steps: Some(steps as usize),
             errors: BTreeMap::from([("u".into(), norms)]),
             floor: BTreeMap::from([("u".into(), Norms { l1: Some(1e-15), l2: Some(1e-15), linf: Some(3e-15) })]),
-            seconds: None,
-            note: None,
+            ..Level::default()
         }
     };
     let levels: Vec<_> = cells.iter().map(level).collect();
@@ -142,6 +145,7 @@ pub fn order(scheme: &Scheme, cells: &[usize], c: f64) -> OrderRecord {
         )]),
         observed: BTreeMap::from([("u".into(), BTreeMap::from(observed))]),
         levels,
+        ..OrderRecord::default()
     }
 }
 
@@ -167,6 +171,8 @@ pub fn stability(scheme: &Scheme) -> StabilityRecord {
             Confirmation { number: limit * 0.99, steps: 2000, growth: Some(0.713), agrees: true },
             Confirmation { number: limit * 1.01, steps: 2000, growth: None, agrees: true },
         ],
+        predicted: Vec::new(),
+        map: Vec::new(),
     }
 }
 

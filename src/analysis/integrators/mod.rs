@@ -5,10 +5,12 @@
 
 mod adams_bashforth;
 mod catalogue;
+mod dormand_prince;
 mod runge_kutta;
 
 pub use adams_bashforth::AdamsBashforth;
 pub use catalogue::{NAMES, by_name};
+pub use dormand_prince::{Equations, Unfinished, integrate};
 pub use runge_kutta::RungeKutta;
 
 use super::eigen::Excess;

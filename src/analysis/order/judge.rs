@@ -1,7 +1,7 @@
 //! An observed order against a claimed one.
 
 use super::fit::Interval;
-use super::ladder::SetAside;
+use super::ladder::{BLOWN_UP, SetAside};
 use super::observe::{Observed, Settings};
 use super::trend::Trend;
 use std::fmt;
@@ -141,7 +141,11 @@ impl fmt::Display for Reason {
             Reason::BadClaim { claim, tolerance } => {
                 write!(f, "the claimed order {claim} or the tolerance {tolerance} is no positive number")
             }
-            Reason::Failed { level } => write!(f, "level {} has an error that is not finite", level + 1),
+            Reason::Failed { level } => write!(
+                f,
+                "the error on level {} is not finite, or more than {BLOWN_UP} times the solution: the run blew up",
+                level + 1
+            ),
             Reason::Exact => write!(f, "the errors are at round-off: the scheme solves this problem exactly"),
             Reason::TooFew { usable, at_round_off, unresolved } => write!(
                 f,
@@ -181,7 +185,9 @@ impl Reason {
     pub fn remedy(&self) -> Option<&'static str> {
         match self {
             Reason::BadClaim { .. } => Some("state a positive order and a positive tolerance"),
-            Reason::Failed { .. } => Some("find out why this level failed, or leave it out of the ladder"),
+            Reason::Failed { .. } => {
+                Some("a smaller step (a study of stability tells the largest), or finding out why this level failed")
+            }
             Reason::Exact => {
                 Some("choose a problem that the scheme cannot solve exactly, with more terms or generic wavelengths")
             }

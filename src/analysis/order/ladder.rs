@@ -69,6 +69,9 @@ pub const FLOORS: f64 = 30.0;
 /// saturates, and slopes near zero say nothing.
 pub const RESOLVED: f64 = 0.5;
 
+/// A run has blown up where its error is larger than the solution by this factor. Whether it ends at 1e10 or beyond all numbers is chance.
+pub const BLOWN_UP: f64 = 1e3;
+
 impl Ladder {
     /// A ladder from its levels.
     ///
@@ -120,9 +123,11 @@ impl Ladder {
         &self.levels
     }
 
-    /// Index of the first level whose error is no number that a norm can have: NaN, infinite or negative.
+    /// Index of the first level that failed: its error is no number that a norm can have (NaN, infinite or negative), or the run blew up,
+    /// which tells of the step and not of the order.
     pub fn first_failed(&self) -> Option<usize> {
-        self.levels.iter().position(|l| !(l.error.is_finite() && l.error >= 0.0))
+        let most = self.solution_size.map_or(f64::MAX, |size| BLOWN_UP * size);
+        self.levels.iter().position(|l| !(0.0..=most).contains(&l.error))
     }
 
     /// For each level why it does not count, or `None` where it does.

@@ -5,7 +5,8 @@
 //!
 //! 1. **Levels that do not count.** From the first level with e < 30 f on, all finer levels are at round-off. Where the size of the
 //!    solution is known, coarse levels with an error of more than half of it resolve nothing. Both are set aside. A level whose error is
-//!    not finite makes the ladder undecided; fewer than three usable levels do, too.
+//!    not finite, or a thousand times the solution, has blown up and makes the ladder undecided: that tells of the step, not of the order.
+//!    Fewer than three usable levels do, too.
 //! 2. **Slopes.** Between neighbours, p_i = ln(e_i / e_{i+1}) / ln(h_i / h_{i+1}), for any ratio. Where levels stand closer than 1.25,
 //!    some are skipped, since close levels magnify noise.
 //! 3. **Trend.** The last three slopes are compared with an error C h^p exp(D h^q), whose slopes tend to p like h^q. They are *level*
@@ -42,7 +43,7 @@ mod trend;
 
 pub use fit::{Interval, LineFit, fit_line};
 pub use judge::{Judgement, Outcome, Reason, judge};
-pub use ladder::{FLOORS, Ladder, LadderError, Level, RESOLVED, SetAside};
+pub use ladder::{BLOWN_UP, FLOORS, Ladder, LadderError, Level, RESOLVED, SetAside};
 pub use observe::{Observed, Settings, observe};
 pub use time::{TimeError, ladder_from_differences, ladder_of_differences};
 pub use trend::{Slope, Trend};

@@ -199,3 +199,17 @@ fn ladders_that_are_none_are_refused() {
     assert!(matches!(Ladder::from_errors(&[1.0], &[1.0], f64::NAN), Err(LadderError::BadFloor { .. })));
     assert!(matches!(Ladder::from_errors(&[1.0], &[1.0, 2.0], 0.0), Err(LadderError::Length { .. })));
 }
+
+#[test]
+fn a_run_that_blew_up_tells_nothing_of_the_order_whether_or_not_its_numbers_are_still_finite() {
+    let sizes = [0.4, 0.2, 0.1, 0.05];
+    for last in [[1e-3, 1e40], [1e7, 1e90], [2.0e3, 1e5], [f64::INFINITY, f64::NAN]] {
+        let ladder = Ladder::from_errors(&sizes, &[0.1, 0.025, last[0], last[1]], 0.0).unwrap().with_solution_size(1.0);
+        let found = judge_ladder(&ladder, 2.0);
+        assert_eq!(found.outcome, Outcome::Undecided, "{last:?}: {}", found.reason);
+        assert!(found.reason.to_string().contains("blew up"), "{}", found.reason);
+    }
+    // Errors that grow to the size of the solution are no blow-up: they refute.
+    let ladder = Ladder::from_errors(&sizes, &[0.02, 0.05, 0.15, 0.6], 0.0).unwrap().with_solution_size(1.0);
+    assert_eq!(judge_ladder(&ladder, 2.0).outcome, Outcome::Refuted);
+}

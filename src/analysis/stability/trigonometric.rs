@@ -120,7 +120,7 @@ fn theta_power(theta: f64, n: usize) -> f64 {
 }
 
 /// Coefficients of cos(k theta) in powers of w = 4 sin^2(theta/2) = 2 - 2 cos(theta).
-fn chebyshev(k: usize) -> Vec<f64> {
+pub(super) fn chebyshev(k: usize) -> Vec<f64> {
     // cos(k t) obeys T_{k+1} = 2 cos(t) T_k - T_{k-1}, with cos(t) = 1 - w/2.
     let (mut before, mut now) = (vec![1.0], vec![1.0, -0.5]);
     if k == 0 {

@@ -8,6 +8,7 @@ mod compared;
 mod convergence;
 mod draw;
 mod modes;
+mod polar;
 mod stable_range;
 
 use serde::Serialize;
@@ -104,9 +105,9 @@ pub(crate) enum Across {
 pub(crate) fn of_studies(results: &Results, ids: &[String]) -> Vec<Vec<Chart>> {
     let each = results.studies.iter().zip(ids);
     each.map(|(study, id)| match &study.study {
-        Study::Modes(record) => modes::charts(id, record),
+        Study::Modes(record) => [modes::charts(id, record), polar::charts(id, record)].concat(),
         Study::Order(record) => convergence::charts(id, record, results, &study.id),
-        Study::Invariants(_) => Vec::new(),
+        Study::Invariants(_) | Study::Uncertainty(_) | Study::Operator(_) => Vec::new(),
         Study::Stability(record) => stable_range::charts(id, record, results, &study.id),
     })
     .collect()

@@ -3,19 +3,56 @@
 use super::axis::linear_range;
 use super::{Across, Axis, Chart, Mark, Role, Scale, Series, Ticks, thin};
 use crate::dossier::clean::visible;
-use crate::record::{ModeRecord, ModesRecord};
+use crate::record::{ModeRecord, ModesRecord, SemiDiscrete};
 
 /// Most points in one curve of a chart.
 const POINTS: usize = 193;
 
 pub(super) fn charts(id: &str, record: &ModesRecord) -> Vec<Chart> {
     let curves = curves(&record.modes);
-    if curves.is_empty() {
-        return Vec::new();
+    let mut charts = Vec::new();
+    if !curves.is_empty() {
+        charts.push(amplification(id, &curves));
+        charts.extend(phase_speed(id, &curves));
     }
-    let mut charts = vec![amplification(id, &curves)];
-    charts.extend(phase_speed(id, &curves));
+    charts.extend(record.semi_discrete.as_ref().and_then(|found| modified_wavenumber(id, found)));
     charts
+}
+
+/// Real and imaginary part of the modified wavenumber over the wavenumber, with the line on which a scheme without error lies.
+fn modified_wavenumber(id: &str, found: &SemiDiscrete) -> Option<Chart> {
+    let part = |index: usize| -> Vec<[f64; 2]> {
+        let of = found.modes.iter().filter(|mode| mode.theta >= 0.0);
+        of.filter_map(|mode| Some([mode.theta, mode.modified_wavenumber?[index]])).collect()
+    };
+    let mut series = Vec::new();
+    let line = vec![[0.0, 0.0], [std::f64::consts::PI, std::f64::consts::PI]];
+    push(&mut series, "no error".into(), Role::Exact, 0, line);
+    push(&mut series, "real part (phase)".into(), Role::Measured, 0, part(0));
+    push(&mut series, "imaginary part (damping)".into(), Role::Measured, 1, part(1));
+    if series.len() < 3 {
+        return None;
+    }
+    let values = series.iter().flat_map(|series| &series.points).map(|point| point[1].clamp(-4.0, 4.0));
+    let range = linear_range(values, 0.04, [-1.0, 3.2]);
+    Some(Chart {
+        id: format!("{id}-modified-wavenumber"),
+        title: "Modified wavenumber of the rate".into(),
+        description: "Real and imaginary part of the modified wavenumber over the wavenumber; without error the real part is the \
+                      wavenumber itself and the imaginary part is zero."
+            .into(),
+        x: theta_axis(&[]),
+        y: Axis {
+            label: "modified wavenumber k′ h".into(),
+            symbol: "k′h".into(),
+            scale: Scale::Linear,
+            range,
+            ticks: Ticks::Numbers,
+        },
+        series,
+        marks: vec![Mark { axis: Across::Y, value: 0.0, label: String::new() }],
+        bands: Vec::new(),
+    })
 }
 
 /// The modes of one branch in one direction, ascending in theta.

@@ -12,6 +12,46 @@ const POINTS: usize = 257;
 const HIGHEST: f64 = 1.5;
 
 pub(super) fn charts(id: &str, record: &StabilityRecord, results: &Results, study: &str) -> Vec<Chart> {
+    let mut charts = range(id, record, results, study);
+    charts.extend(map(id, record));
+    charts
+}
+
+/// The boundary of the stable set in the plane of both numbers: the first and the last stable Courant number of each row.
+fn map(id: &str, record: &StabilityRecord) -> Option<Chart> {
+    let end = |pick: fn(&[[f64; 2]]) -> Option<f64>| -> Vec<[f64; 2]> {
+        record.map.iter().filter_map(|row| Some([row.diffusion_number, pick(&row.stable)?])).collect()
+    };
+    let upper = end(|stable| stable.last().map(|interval| interval[1]));
+    if upper.is_empty() {
+        return None;
+    }
+    let lower = end(|stable| stable.first().map(|interval| interval[0]).filter(|from| *from > 0.0));
+    let mut series = vec![Series { name: "largest stable".into(), role: Role::Measured, slot: 0, points: upper }];
+    if !lower.is_empty() {
+        series.push(Series { name: "smallest stable".into(), role: Role::Measured, slot: 1, points: lower });
+    }
+    let axis = |label: &str, symbol: &str, end: f64| Axis {
+        label: label.into(),
+        symbol: symbol.into(),
+        scale: Scale::Linear,
+        range: [0.0, end],
+        ticks: Ticks::Numbers,
+    };
+    let widest = record.map.iter().map(|row| row.diffusion_number).fold(0.0, f64::max);
+    Some(Chart {
+        id: format!("{id}-map"),
+        title: "Stable Courant numbers over the diffusion number".into(),
+        description: "Boundary of the stable set in the plane of the diffusion number and the Courant number; stable below the curve.".into(),
+        x: axis("diffusion number", "r", widest),
+        y: axis("Courant number", "c", record.scanned_up_to),
+        series,
+        marks: Vec::new(),
+        bands: Vec::new(),
+    })
+}
+
+fn range(id: &str, record: &StabilityRecord, results: &Results, study: &str) -> Vec<Chart> {
     let points = record.scan.iter().filter_map(|&(number, growth)| Some([number, growth.filter(|g| g.is_finite())?]));
     let points: Vec<_> = points.collect();
     if points.is_empty() {

@@ -186,6 +186,8 @@ fn study_view<'a>(results: &'a Results, study: &'a StudyRecord, id: &'a str, fig
             Study::Modes(_) => "modes",
             Study::Stability(_) => "stability",
             Study::Invariants(_) => "invariants",
+            Study::Uncertainty(_) => "uncertainty",
+            Study::Operator(_) => "operator",
         },
         heading: facts::heading(study),
         findings: facts::findings(study),

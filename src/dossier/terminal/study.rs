@@ -25,7 +25,7 @@ pub fn study_text(study: &StudyRecord, colour: bool) -> String {
     match &study.study {
         Study::Order(record) => ladders(&mut out, record),
         Study::Modes(record) => curves(&mut out, &chart::modes_charts(record), colour),
-        Study::Stability(_) | Study::Invariants(_) => {}
+        Study::Stability(_) | Study::Invariants(_) | Study::Uncertainty(_) | Study::Operator(_) => {}
     }
     for fact in facts::findings(study) {
         let mut label = left(&fact.label, LABEL);

@@ -17,6 +17,7 @@ mod variation;
 
 use gridassay_scheme::NoCallbacks;
 
+pub use self::parameters::within as parameters_within;
 use self::run::History;
 use self::states::Family;
 use self::tally::Tally;

@@ -39,7 +39,12 @@ pub fn measure(
         1 => line.along_one_direction(&SampledSymbol::derivative(&responses, 0))?,
         _ => line.everywhere()?,
     };
+    if let Some(stencil) = stencil.as_ref().filter(|_| setting.case.dimensions > 1) {
+        record.directions = super::directions::waves(setting, &line.exact, stencil)?;
+        record.worst_directions = super::directions::worst(&record.directions);
+    }
     record.modified_equation = super::modified::equation(setting, &line.exact, stencil.as_ref(), &record.modes);
+    record.resolution = super::resolution::needed(setting, &line.exact, stencil.as_ref(), &record.modes)?;
     Ok(())
 }
 

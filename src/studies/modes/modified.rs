@@ -14,6 +14,9 @@ const HIGHEST: usize = 9;
 /// How many terms from the leading one on are told.
 const TOLD: usize = 3;
 
+/// Waves shorter than this are none through which a series in theta may be laid.
+const LONGEST_THETA: f64 = 0.65;
+
 /// Long waves through which ln G is laid where the stencil is not short.
 const SAMPLES: usize = 6;
 
@@ -29,7 +32,9 @@ pub fn equation(
     }
     let series = match stencil.filter(|stencil| stencil.components() == 1) {
         Some(stencil) => Series::from_stencil(stencil, HIGHEST)?,
-        None => Series::from_samples(&long_waves(modes))?,
+        None => Some(long_waves(modes))
+            .filter(|waves| waves.len() == SAMPLES)
+            .and_then(|waves| Series::from_samples(&waves))?,
     };
     let due = exact.series();
     // At a constant Courant number the step falls like h, at a constant diffusion number like h^2.
@@ -49,7 +54,8 @@ pub fn equation(
 
 /// (theta, ln G) of the physical branch at the longest waves, theta > 0; the phase is the followed one.
 fn long_waves(modes: &[ModeRecord]) -> Vec<(f64, Complex64)> {
-    let physical = modes.iter().filter(|mode| mode.exact.is_some() && mode.theta[0] > 0.0);
+    let physical =
+        modes.iter().filter(|mode| mode.exact.is_some() && mode.theta[0] > 0.0 && mode.theta[0] <= LONGEST_THETA);
     let logarithm = |mode: &ModeRecord| {
         let [re, im] = mode.exact?;
         let exact = Complex64::new(re, im);

@@ -14,7 +14,7 @@ use crate::studies::linearity::step;
 use crate::studies::setting::Setting;
 
 /// The amplitude of the wave. Nonlinear weights and limiters of the usual kind do not depend on it, but for their small safeguards.
-const AMPLITUDE: f64 = 1.0;
+pub const AMPLITUDE: f64 = 1.0;
 
 /// A second amplitude, by which a dependence shows.
 const OTHER_AMPLITUDE: f64 = 1e-3;
@@ -50,8 +50,11 @@ pub fn measure(session: &mut Session, setting: &Setting, record: &mut ModesRecor
     Ok(())
 }
 
-/// By what one step multiplies wave number `mode`, and the share of the energy that it moves to other wavenumbers.
-fn response(
+/// By what one step (or the rate) multiplies wave number `mode`, and the share of the energy that it moves to other wavenumbers.
+///
+/// # Errors
+/// The scheme refused or failed.
+pub fn response(
     session: &mut Session,
     setting: &Setting,
     cells: usize,

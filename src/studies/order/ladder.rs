@@ -1,6 +1,7 @@
 //! The ladder: which grids, which steps, coarse to fine.
 
 use gridassay_reference::problem::Problem;
+use gridassay_scheme::Operation;
 
 use crate::claims::{OrderRequest, StepSize, in_proportion};
 use crate::record::Refinement;
@@ -36,7 +37,8 @@ const MOST_STEPS: usize = 50_000_000;
 /// A step that the problem does not define (a Courant number without a speed), or a number of steps beyond any budget.
 pub fn rungs(request: &OrderRequest, steady: bool) -> Result<Vec<Rung>, Stop> {
     let cells = cells(request);
-    if steady {
+    // Where the scheme or the harness chooses the steps there are none to plan.
+    if steady || matches!(request.operation, Some(Operation::March | Operation::Rate)) {
         return Ok(cells.into_iter().map(|cells| Rung { cells, step: None, steps: None }).collect());
     }
     let duration = request.final_time - request.problem.start_time();
@@ -56,8 +58,17 @@ pub fn rungs(request: &OrderRequest, steady: bool) -> Result<Vec<Rung>, Stop> {
     if request.refine == Refinement::Time {
         return (0..STEP_RUNGS).map(|k| rung(coarsest.clone(), f64::from(1 << k))).collect();
     }
-    let ratio = |level: &Vec<usize>| (level[0] as f64 / coarsest[0] as f64).powf(request.step_power);
-    cells.iter().map(|level| rung(level.clone(), ratio(level))).collect()
+    let ratio = |level: &Vec<usize>| -> Result<f64, Stop> {
+        let asked = (level[0] as f64 / coarsest[0] as f64).powf(request.step_power);
+        // A step that the harness chose stays within the problem's own numbers on every level: in proportion to the width the diffusion
+        // number would grow, and a right explicit scheme would blow up on the finer ones.
+        let most = match request.step {
+            None => duration / default_step(&request.problem, level)? / first as f64,
+            Some(_) => 0.0,
+        };
+        Ok(if most > asked * (1.0 + 1e-9) { most } else { asked })
+    };
+    cells.iter().map(|level| rung(level.clone(), ratio(level)?)).collect()
 }
 
 /// The next rung of a ladder that the harness chose itself.

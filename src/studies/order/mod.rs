@@ -1,8 +1,13 @@
 //! The refinement study: errors on a ladder of grids and steps.
 
+pub mod control;
+mod functionals;
 mod ladder;
 mod level;
 mod observe;
+mod places;
+mod semi_discrete;
+mod traps;
 
 use std::collections::BTreeMap;
 use std::time::{Duration, Instant};
@@ -17,6 +22,7 @@ use crate::host::Session;
 use crate::record::{Level, Norms, OrderRecord, Refinement, Study};
 
 pub use observe::observed;
+use observe::{observed_at_places, observed_functionals};
 
 /// How long a ladder that the harness chose itself may go on growing.
 const BUDGET: Duration = Duration::from_secs(8);
@@ -36,6 +42,8 @@ pub fn run(
     let mut notes = Vec::new();
     let ended = measure(session, request, enough, seed, &mut record, &mut notes);
     record.observed = observed(&record);
+    record.places = observed_at_places(&record);
+    record.functionals = observed_functionals(&record);
     Made::new(Study::Order(record), ended, notes)
 }
 
@@ -54,6 +62,9 @@ fn empty(request: &OrderRequest) -> OrderRecord {
         levels: Vec::new(),
         solution_size: BTreeMap::new(),
         observed: BTreeMap::new(),
+        places: BTreeMap::new(),
+        functionals: BTreeMap::new(),
+        control: None,
     }
 }
 
@@ -71,6 +82,7 @@ fn measure(
         return Err(Stop::Request(format!("`{}` is steady, so that there is no step to refine", problem.name())));
     }
     let mut rungs = ladder::rungs(request, steady)?;
+    notes.extend(traps::notes(request, &rungs));
     if let Some(step) = rungs[0].step {
         record.courant = speed::crossings(problem, &rungs[0].cells)?.map(|rate| rate * step);
         record.diffusion_number = speed::spreading(problem, &rungs[0].cells).map(|rate| rate * step);
@@ -80,11 +92,12 @@ fn measure(
     let mut next = 0;
     while let Some(rung) = rungs.get(next).cloned() {
         let took = Instant::now();
-        let answer = level::run(session, problem, &rung, request.final_time, seed.wrapping_add(next as u64))?;
+        let answer = level::run(session, request, &rung, level::Variation::Shaken(seed.wrapping_add(next as u64)))?;
         record.operation = answer.operation.name().to_owned();
+        let rung = as_run(rung, &answer, record);
         match request.refine {
-            Refinement::Time => push_difference(record, &rung, before.as_ref(), &answer),
-            _ => push_error(record, &rung, problem, &answer),
+            Refinement::Time => push_difference(record, &rung, request, before.as_ref(), &answer),
+            _ => push_error(record, &rung, request, &answer),
         }
         before = Some(answer);
         next += 1;
@@ -100,16 +113,34 @@ fn measure(
     Ok(())
 }
 
+/// The rung as it was run: where the scheme or the harness chose the steps, the planned ones were not used and are not told.
+fn as_run(rung: Rung, answer: &Answer, record: &mut OrderRecord) -> Rung {
+    if !matches!(answer.operation, Operation::March | Operation::Rate) {
+        return rung;
+    }
+    (record.courant, record.diffusion_number, record.step_power) = (None, None, None);
+    Rung { step: None, steps: None, ..rung }
+}
+
 /// Whether the harness may add a finer level of its own: the next one takes about eight times as long in 2-D and time.
 fn may_grow(request: &OrderRequest, finest: &Rung, would_take: Duration) -> bool {
     let cells: usize = finest.cells.iter().map(|n| 2 * n).product();
     request.cells.is_none() && request.refine != Refinement::Time && cells <= MOST_CELLS && would_take < BUDGET
 }
 
-fn push_error(record: &mut OrderRecord, rung: &Rung, problem: &gridassay_reference::problem::Problem, answer: &Answer) {
+fn push_error(record: &mut OrderRecord, rung: &Rung, request: &OrderRequest, answer: &Answer) {
+    let problem = &request.problem;
+    let time = if problem.is_steady() { 0.0 } else { request.final_time };
     let h = (problem.upper()[0] - problem.lower()[0]) / rung.cells[0] as f64;
     let errors = level::differences(&answer.layout, &answer.state, &answer.exact);
-    let floor = level::differences(&answer.layout, &answer.shaken, &answer.state);
+    let mut floor = level::differences(&answer.layout, &answer.shaken, &answer.state);
+    if answer.operation == Operation::Rate {
+        let largest = answer.exact.iter().flatten().fold(0.0_f64, |largest, value| largest.max(value.abs()));
+        let in_time = Some(semi_discrete::TOLERANCE * largest);
+        for norms in &mut floor {
+            *norms = sum((*norms, Norms { l1: in_time, l2: in_time, linf: in_time }));
+        }
+    }
     let zeros: Vec<Vec<f64>> = answer.exact.iter().map(|field| vec![0.0; field.len()]).collect();
     record.solution_size = by_field(&answer.names, level::differences(&answer.layout, &answer.exact, &zeros));
     record.levels.push(Level {
@@ -119,20 +150,27 @@ fn push_error(record: &mut OrderRecord, rung: &Rung, problem: &gridassay_referen
         steps: rung.steps,
         errors: by_field(&answer.names, errors),
         floor: by_field(&answer.names, floor),
-        seconds: Some(answer.seconds),
+        places: places::norms(problem, &rung.cells, answer, &answer.state, &answer.exact),
+        functionals: functionals::values(problem, time, answer),
+        seconds: answer.seconds,
         note: level::not_finite(&answer.names, &answer.state),
     });
 }
 
 /// Where the step alone is refined: the difference of this rung from the one before stands with the one before, whose error is the larger.
-fn push_difference(record: &mut OrderRecord, rung: &Rung, before: Option<&Answer>, answer: &Answer) {
+fn push_difference(
+    record: &mut OrderRecord,
+    rung: &Rung,
+    request: &OrderRequest,
+    before: Option<&Answer>,
+    answer: &Answer,
+) {
     if let (Some(before), Some(level)) = (before, record.levels.last_mut()) {
         level.errors = by_field(&answer.names, level::differences(&answer.layout, &before.state, &answer.state));
         let own = level::differences(&before.layout, &before.shaken, &before.state);
         let next = level::differences(&answer.layout, &answer.shaken, &answer.state);
-        let sum =
-            |(a, b): (Norms, Norms)| Norms { l1: add(a.l1, b.l1), l2: add(a.l2, b.l2), linf: add(a.linf, b.linf) };
         level.floor = by_field(&answer.names, own.into_iter().zip(next).map(sum).collect());
+        level.places = places::norms(&request.problem, &rung.cells, answer, &before.state, &answer.state);
         level.note = level::not_finite(&answer.names, &before.state);
     }
     record.levels.push(Level {
@@ -140,11 +178,14 @@ fn push_difference(record: &mut OrderRecord, rung: &Rung, before: Option<&Answer
         h: rung.step.unwrap_or(f64::NAN),
         step: rung.step,
         steps: rung.steps,
-        errors: BTreeMap::new(),
-        floor: BTreeMap::new(),
-        seconds: Some(answer.seconds),
+        seconds: answer.seconds,
         note: Some("the finest step: what the others are held against".to_owned()),
+        ..Level::default()
     });
+}
+
+fn sum((a, b): (Norms, Norms)) -> Norms {
+    Norms { l1: add(a.l1, b.l1), l2: add(a.l2, b.l2), linf: add(a.linf, b.linf) }
 }
 
 fn add(a: Option<f64>, b: Option<f64>) -> Option<f64> {

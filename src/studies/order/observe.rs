@@ -14,9 +14,39 @@ pub fn observed(record: &OrderRecord) -> BTreeMap<String, BTreeMap<String, Obser
     fields.iter().map(|field| (field.clone(), of_field(field))).collect()
 }
 
+/// The observed order of every field in every norm at every place.
+pub(super) fn observed_at_places(
+    record: &OrderRecord,
+) -> BTreeMap<String, BTreeMap<String, BTreeMap<String, Observed>>> {
+    let Some(first) = record.levels.iter().find(|level| !level.places.is_empty()) else { return BTreeMap::new() };
+    let in_norm = |place: &str, field: &str, norm: &str| {
+        of_series(&record.series_at(place, field, norm), record.size(field, norm))
+    };
+    let of_field = |place: &str, field: &str| {
+        Norms::NAMES.iter().map(|norm| ((*norm).to_owned(), in_norm(place, field, norm))).collect()
+    };
+    let at = |(place, fields): (&String, &BTreeMap<String, Norms>)| {
+        (place.clone(), fields.keys().map(|field| (field.clone(), of_field(place, field))).collect())
+    };
+    first.places.iter().map(at).collect()
+}
+
+/// The observed order of the error of every functional.
+pub(super) fn observed_functionals(record: &OrderRecord) -> BTreeMap<String, Observed> {
+    let Some(first) = record.levels.first() else { return BTreeMap::new() };
+    let size =
+        |name: &str| record.levels.last().and_then(|level| level.functionals.get(name)).map_or(0.0, |f| f.exact.abs());
+    let one = |name: &String| (name.clone(), of_series(&record.series_of(name), size(name)));
+    first.functionals.keys().map(one).collect()
+}
+
 fn one(record: &OrderRecord, field: &str, norm: &str) -> Observed {
-    let ladder = match Ladder::from_series(&record.series(field, norm)) {
-        Ok(ladder) => ladder.with_solution_size(record.size(field, norm)),
+    of_series(&record.series(field, norm), record.size(field, norm))
+}
+
+fn of_series(series: &[(f64, f64, f64)], size: f64) -> Observed {
+    let ladder = match Ladder::from_series(series) {
+        Ok(ladder) => ladder.with_solution_size(size),
         Err(error) => return Observed { note: Some(error.to_string()), ..Observed::default() },
     };
     let observed = observe(&ladder, Settings::default());

@@ -6,7 +6,7 @@ use super::numbers;
 use crate::analysis::eigen::{Excess, modulus_excess, spectral_excess};
 use crate::analysis::matrix::Matrix;
 use crate::analysis::stability::{StencilGrowth, Worst, worst_theta};
-use crate::analysis::symbol::{SampledSymbol, Stencil};
+use crate::analysis::symbol::{ImpulseResponses, SampledSymbol, Stencil};
 use crate::claims::StabilityRequest;
 use crate::host::Session;
 use crate::record::{Parameters, StepNumber, finite};
@@ -17,6 +17,12 @@ use crate::studies::{Stop, impulse, linearity};
 /// Cells of the grids on which impulses are run: the first holds any usual stencil; the others are asked where the response is not short, so that
 /// more wavenumbers than one grid holds are tried. The worst theta of central differences is on a grid only when its cells divide by four.
 const GRIDS: [usize; 4] = [96, 88, 92, 100];
+
+/// Cells of the grid on which a response that does not end is tried, where it has not decayed on the first.
+const WIDE: usize = 384;
+
+/// Maxima over a grid that are followed between its wavenumbers.
+const REFINED: usize = 2;
 
 /// Rounding of a stencil's coefficients by the scheme, relative to the largest: a step of several stages sums some dozens of terms.
 const STEP_ROUNDING: f64 = 16.0 * f64::EPSILON;
@@ -37,6 +43,7 @@ pub struct Growth<'a> {
     scanned: Vec<(f64, Option<f64>)>,
     refused_from: Option<f64>,
     used_all_grids: bool,
+    is_wide: bool,
 }
 
 impl<'a> Growth<'a> {
@@ -70,6 +77,7 @@ impl<'a> Growth<'a> {
             scanned: Vec::new(),
             refused_from: None,
             used_all_grids: false,
+            is_wide: false,
         })
     }
 
@@ -85,7 +93,9 @@ impl<'a> Growth<'a> {
 
     /// The grids that were used.
     pub fn cells(&self) -> Vec<usize> {
-        if self.used_all_grids { self.cells.clone() } else { self.cells[..1].to_vec() }
+        let mut cells = if self.used_all_grids { self.cells.clone() } else { self.cells[..1].to_vec() };
+        cells.extend(self.is_wide.then(|| admitted(self.session, &self.request.equation, WIDE)));
+        cells
     }
 
     /// (number, largest modulus) as tried, ascending.
@@ -137,26 +147,39 @@ impl<'a> Growth<'a> {
     }
 
     fn worst(&mut self, value: f64) -> Result<Worst, Stop> {
-        let responses = self.responses(self.cells[0], value)?;
-        let m = responses.components();
-        // Coefficients below rounding are those of an implicit scheme whose response decays but never ends.
-        let largest = (0..m * m).flat_map(|p| responses.response(p / m, p % m)).fold(0.0_f64, |a, b| a.max(b.abs()));
-        if let Some(stencil) = Stencil::from_responses(&responses, 0.0) {
-            return self.worst_of(&stencil);
+        if !self.is_wide {
+            let responses = self.responses(self.cells[0], value)?;
+            if let Some(stencil) = Stencil::from_responses(&responses, 0.0) {
+                return self.worst_of(&stencil);
+            }
+            if let Some((stencil, noise)) = self.decaying(&responses) {
+                let both_signs = responses.components() > 1;
+                return worst_theta(|theta| excess_of(&stencil.symbol([theta, 0.0, 0.0]), noise), both_signs);
+            }
+            self.is_wide = true;
         }
-        if let Some(stencil) = Stencil::from_responses(&responses, f64::EPSILON * largest) {
-            let noise = (self.noise * largest).max(ROUNDING * largest).max(stencil.dropped());
-            return worst_theta(|theta| excess_of(&stencil.symbol([theta, 0.0, 0.0]), noise), m > 1);
+        let responses = self.responses(admitted(self.session, &self.request.equation, WIDE), value)?;
+        if let Some((stencil, noise)) = self.decaying(&responses) {
+            return refined(&SampledSymbol::from_responses(&responses), &stencil, noise);
         }
         self.used_all_grids = true;
         let mut worst = sampled(&SampledSymbol::from_responses(&responses), self.noise)?;
-        for cells in self.cells.clone().into_iter().skip(1) {
+        for cells in self.cells.clone() {
             let other = sampled(&SampledSymbol::from_responses(&self.responses(cells, value)?), self.noise)?;
-            if other.excess.value - other.excess.uncertainty > worst.excess.value - worst.excess.uncertainty {
+            if score(&other) > score(&worst) {
                 worst = other;
             }
         }
         Ok(worst)
+    }
+
+    /// The stencil of a response that decays to rounding within half of the grid, as an implicit scheme's does, with the noise of its G.
+    fn decaying(&self, responses: &ImpulseResponses) -> Option<(Stencil, f64)> {
+        let m = responses.components();
+        let largest = (0..m * m).flat_map(|p| responses.response(p / m, p % m)).fold(0.0_f64, |a, b| a.max(b.abs()));
+        let stencil = Stencil::from_responses(responses, f64::EPSILON * largest)?;
+        let noise = (self.noise * largest).max(ROUNDING * largest).max(stencil.dropped());
+        Some((stencil, noise))
     }
 
     fn worst_of(&self, stencil: &Stencil) -> Result<Worst, Stop> {
@@ -167,7 +190,7 @@ impl<'a> Growth<'a> {
     }
 
     /// Impulse responses on `cells` at `value`; the scheme is asked to prepare only where the case differs from the last.
-    fn responses(&mut self, cells: usize, value: f64) -> Result<crate::analysis::symbol::ImpulseResponses, Stop> {
+    fn responses(&mut self, cells: usize, value: f64) -> Result<ImpulseResponses, Stop> {
         let numbers = numbers(self.number, value, self.request.held);
         let (equation, fixed) = (&self.request.equation, &self.request.parameters);
         let setting = Setting::new(self.session, equation, fixed, &[cells], numbers)?;
@@ -204,16 +227,59 @@ fn scalar_excess(factor: Complex64, noise: f64) -> Excess {
     Excess { value: modulus_excess(factor), uncertainty: noise.max(ROUNDING * factor.norm()) }
 }
 
-/// The worst wavenumber of a grid.
-fn sampled(symbol: &SampledSymbol, noise: f64) -> Result<Worst, Stop> {
-    let mut worst: Option<Worst> = None;
-    for at in 0..symbol.grid().count() {
+/// Growth beyond its uncertainty.
+fn score(worst: &Worst) -> f64 {
+    worst.excess.value - worst.excess.uncertainty
+}
+
+/// The excess at every wavenumber of a grid, by rising theta.
+fn all(symbol: &SampledSymbol, noise: f64) -> Result<Vec<Worst>, Stop> {
+    let at = |at: usize| {
         let excess = excess_of(&symbol.block(at), noise)?;
-        let found = Worst { theta: symbol.grid().theta(at)[0], excess };
-        let score = |worst: &Worst| worst.excess.value - worst.excess.uncertainty;
-        if worst.as_ref().is_none_or(|worst| score(&found) > score(worst)) {
-            worst = Some(found);
+        Ok(Worst { theta: symbol.grid().theta(at)[0], excess })
+    };
+    let mut all: Vec<Worst> = (0..symbol.grid().count()).map(at).collect::<Result<_, Stop>>()?;
+    all.sort_by(|a, b| a.theta.total_cmp(&b.theta));
+    Ok(all)
+}
+
+/// The worst wavenumber of a grid. NaN is growth.
+pub(super) fn sampled(symbol: &SampledSymbol, noise: f64) -> Result<Worst, Stop> {
+    let all = all(symbol, noise)?;
+    let not_finite = all.iter().find(|worst| score(worst).is_nan()).copied();
+    let largest = || all.iter().copied().max_by(|a, b| score(a).total_cmp(&score(b)));
+    not_finite.or_else(largest).ok_or_else(|| Stop::Analysis("a grid without cells has no modes".to_owned()))
+}
+
+/// The worst wavenumber of all: the largest maxima over the grid, followed between its wavenumbers by golden-section search.
+fn refined(symbol: &SampledSymbol, stencil: &Stencil, noise: f64) -> Result<Worst, Stop> {
+    let all = all(symbol, noise)?;
+    let last = all.len() - 1;
+    let mut worst = sampled(symbol, noise)?;
+    let is_peak = |i: &usize| {
+        let (before, own, after) = (score(&all[i.max(&1) - 1]), score(&all[*i]), score(&all[(i + 1).min(last)]));
+        own >= before && own >= after && (own > before || own > after)
+    };
+    let mut peaks: Vec<usize> = (0..=last).filter(is_peak).collect();
+    peaks.sort_by(|a, b| score(&all[*b]).total_cmp(&score(&all[*a])));
+    for peak in peaks.into_iter().take(REFINED) {
+        let (mut low, mut high) = (all[peak.max(1) - 1].theta, all[(peak + 1).min(last)].theta);
+        let share = 0.5 * (5.0_f64.sqrt() - 1.0);
+        let at = |theta: f64| -> Result<Worst, Stop> {
+            Ok(Worst { theta, excess: excess_of(&stencil.symbol([theta, 0.0, 0.0]), noise)? })
+        };
+        let (mut left, mut right) = (at(high - share * (high - low))?, at(low + share * (high - low))?);
+        // A maximum is flat: theta to 1e-6 of the bracket gives its height to 1e-12.
+        for _ in 0..28 {
+            worst = [left, right].into_iter().fold(worst, |a, b| if score(&b) > score(&a) { b } else { a });
+            if score(&left) >= score(&right) {
+                (high, right) = (right.theta, left);
+                left = at(high - share * (high - low))?;
+            } else {
+                (low, left) = (left.theta, right);
+                right = at(low + share * (high - low))?;
+            }
         }
     }
-    worst.ok_or_else(|| Stop::Analysis("a grid without cells has no modes".to_owned()))
+    Ok(worst)
 }

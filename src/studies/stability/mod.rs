@@ -2,6 +2,8 @@
 
 mod confirm;
 mod growth;
+mod map;
+mod predicted;
 
 use self::growth::Growth;
 use super::setting::Numbers;
@@ -9,10 +11,7 @@ use super::{Made, Stop};
 use crate::analysis::stability::{Scan, StableRange, StableSet, search};
 use crate::claims::StabilityRequest;
 use crate::host::Session;
-use crate::record::{StabilityRecord, StepNumber, Study, WeakGrowth, finite};
-
-/// The number at which the steps to tenfold growth are told, where there is no stable step.
-const TOLD_AT: f64 = 0.1;
+use crate::record::{StabilityRecord, StepNumber, Study, WeakGrowth};
 
 /// Measures the stable set.
 pub fn run(session: &mut Session, request: &StabilityRequest, seed: u64) -> Made {
@@ -32,6 +31,8 @@ pub fn run(session: &mut Session, request: &StabilityRequest, seed: u64) -> Made
         by_runs_alone: false,
         scan: Vec::new(),
         confirmation: Vec::new(),
+        predicted: Vec::new(),
+        map: Vec::new(),
     };
     let mut notes = Vec::new();
     let ended = measure(session, request, seed, &mut record, &mut notes);
@@ -61,6 +62,12 @@ fn measure(
     record: &mut StabilityRecord,
     notes: &mut Vec<String>,
 ) -> Result<(), Stop> {
+    if let Some(integrator) = &request.integrator {
+        return predicted::by_integrator(session, request, integrator, seed, record);
+    }
+    if let Some(end) = request.map_to {
+        record.map = map::rows(session, request, end, seed)?;
+    }
     let mut growth = Growth::new(session, request, record.number, seed)?;
     record.parameters = growth.parameters();
     if let Some(failing) = growth.not_linear() {
@@ -74,7 +81,11 @@ fn measure(
     record.scan = growth.scanned();
     record.refused_from = growth.refused_from();
     tell(&set, &mut growth, record)?;
-    confirm::from_noise(session, request, seed, record)
+    confirm::from_noise(session, request, seed, record)?;
+    if let Err(stop) = predicted::beside_the_measured(session, request, seed, record, notes) {
+        notes.push(format!("the rate was not measured: {stop}"));
+    }
+    Ok(())
 }
 
 /// Enters a stable set into the record.
@@ -93,13 +104,7 @@ fn tell(set: &StableSet, growth: &mut Growth<'_>, record: &mut StabilityRecord) 
         }
         StableRange::NoStableStep { growth } => {
             record.stable_up_to = Some(0.0);
-            record.weak_growth = growth.and_then(|weak| {
-                Some(WeakGrowth {
-                    power: finite(weak.power)?,
-                    coefficient: finite(weak.coefficient)?,
-                    steps_to_tenfold: finite(weak.steps_until(10.0, TOLD_AT))?,
-                })
-            });
+            record.weak_growth = growth.and_then(WeakGrowth::of);
         }
     }
     Ok(())

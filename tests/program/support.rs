@@ -165,3 +165,23 @@ impl Formulas {
         values
     }
 }
+
+/// The processes that run in `folder`.
+pub fn remaining(folder: &Path) -> Vec<String> {
+    let entries = std::fs::read_dir("/proc").unwrap().flatten();
+    let here = entries.filter(|entry| std::fs::read_link(entry.path().join("cwd")).is_ok_and(|cwd| cwd == folder));
+    here.map(|entry| {
+        let words = std::fs::read(entry.path().join("cmdline")).unwrap_or_default();
+        String::from_utf8_lossy(&words).replace('\0', " ")
+    })
+    .collect()
+}
+
+/// Whether no process runs in `folder`, now or soon.
+pub fn gone(folder: &Path) -> bool {
+    let until = std::time::Instant::now() + Duration::from_secs(20);
+    while !remaining(folder).is_empty() && std::time::Instant::now() < until {
+        std::thread::sleep(Duration::from_millis(20));
+    }
+    remaining(folder).is_empty()
+}

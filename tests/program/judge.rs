@@ -2,11 +2,10 @@
 //!
 //! Trusted: textbook orders and limits of the schemes at hand. Every test runs the program itself.
 
-mod support;
-
 use std::path::{Path, PathBuf};
 use std::process::{Command, Output};
 
+use crate::support;
 use gridassay::record::{Results, Study, Verdict, read_results};
 
 /// A fresh folder of this name.

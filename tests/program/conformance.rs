@@ -4,18 +4,16 @@
 //! give the same numbers to the last bit and the same refusals. `upwind` is a scheme as people write it, in Rust, C and Python;
 //! `everything` folds all that it is told into its answers, so that nothing can be lost on the way unseen.
 
-mod support;
-
-#[path = "schemes/rust/src/everything.rs"]
+#[path = "../schemes/rust/src/everything.rs"]
 mod everything;
-#[path = "schemes/rust/src/upwind.rs"]
+#[path = "../schemes/rust/src/upwind.rs"]
 mod upwind;
 
+use crate::support::{
+    self, Formulas, advection, c_library, command, periodic, plugin, python, rust_executable, rust_plugin, schemes,
+};
 use gridassay::host::{HostError, Route, Session};
 use gridassay_scheme::{Advance, BoundaryKind, Callback, Case, Fields, Grid, March, Parameter, SchemeError, SideKinds};
-use support::{
-    Formulas, advection, c_library, command, periodic, plugin, python, rust_executable, rust_plugin, schemes,
-};
 
 /// What was answered, in a form that can be compared: bits of numbers, words of refusals.
 #[derive(Debug, PartialEq)]

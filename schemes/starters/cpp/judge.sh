@@ -1,0 +1,6 @@
+#!/bin/sh
+# Builds the scheme where it has to be built, and judges it. Exit status: 0 all upheld, 1 something refuted, 3 something undecided.
+set -e
+cd "$(dirname "$0")"
+c++ -std=c++17 -O2 -Wall -Wextra -shared -fPIC scheme.cpp -o libscheme.so
+exec gridassay judge claims.toml "$@"
