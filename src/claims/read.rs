@@ -58,7 +58,7 @@ pub fn plan_of(path: &Path, text: &str, folder: &Path) -> Result<Plan, ClaimsErr
     }
     for entry in &file.operator {
         let kind = ClaimKind::Operator(reader.operator(entry)?);
-        reader.state(&mut claims, "operator", &known, entry.get_ref().scheme.as_ref(), kind)?;
+        reader.state(&mut claims, ("operator", entry.span()), &known, entry.get_ref().scheme.as_ref(), kind)?;
     }
     for entry in &file.stability {
         let kind = ClaimKind::Stability(reader.stability(entry)?);

@@ -3,6 +3,9 @@
 #[doc = include_str!("scheme.md")]
 pub mod scheme {}
 
+#[doc = include_str!("conversation.md")]
+pub mod conversation {}
+
 #[doc = include_str!("claims.md")]
 pub mod claims {}
 
