@@ -268,3 +268,48 @@ fn bounded_runs_of_a_nonlinear_scheme_uphold_no_stable_range() {
     );
     assert_eq!((status, verdicts(&results.unwrap())), (3, vec![Verdict::Undecided]), "{said}");
 }
+
+/// The published table of the second worked example of Celik et al. (2008), with a third column of its own.
+const FORCES: &str = "cells,drag,lift\n980,10.605,6.0909\n4500,10.725,5.9624\n18000,10.788,6.0042\n";
+
+#[test]
+fn a_table_of_values_is_weighed_and_a_bad_one_is_told_with_its_line() {
+    let folder = folder("uncertainty");
+    std::fs::write(folder.join("forces.csv"), FORCES).unwrap();
+    let output = gridassay(&folder, &["uncertainty", "forces.csv", "--dimensions", "2", "--json", "--out", "report"]);
+    assert_eq!(output.status.code(), Some(0), "{}", String::from_utf8_lossy(&output.stderr));
+    let results: Results = serde_json::from_slice(&output.stdout).unwrap();
+    let Study::Uncertainty(record) = &results.studies[0].study else { panic!("a study of uncertainty") };
+    // Printed: p = 0.75 and an index of 1.1 per cent.
+    let drag = &record.quantities[0].triples[0];
+    assert!((drag.order.unwrap() - 0.75).abs() < 0.005 && (drag.fine_index.unwrap() - 0.011).abs() < 5e-4, "{drag:?}");
+    let page = std::fs::read_to_string(folder.join("report/index.html")).unwrap();
+    assert!(page.contains("drag") && page.contains("oscillatory"), "the page shows what the terminal shows");
+    let shown = gridassay(&folder, &["uncertainty", "forces.csv", "--dimensions", "2"]);
+    let shown = String::from_utf8_lossy(&shown.stdout).into_owned();
+    assert!(shown.contains("apparent order 0.75") && shown.contains("oscillatory"), "{shown}");
+    std::fs::write(folder.join("forces.csv"), FORCES.replace("10.725", "ten")).unwrap();
+    let output = gridassay(&folder, &["uncertainty", "forces.csv"]);
+    assert_eq!(output.status.code(), Some(2));
+    let said = String::from_utf8_lossy(&output.stderr).into_owned();
+    assert!(said.contains("forces.csv:3: `ten` in the column `drag` is no finite number"), "{said}");
+}
+
+#[test]
+fn a_rate_is_integrated_where_the_claim_says_so_and_an_unknown_operation_is_told_with_its_line() {
+    let claims = |operation: &str| {
+        format!(
+            "[scheme]\nclassical = \"central4-rk4\"\n[[order]]\nproblem = \"travelling-sine\"\ncells = [24, 48, 96, 192]\noperation = \"{operation}\"\nexpect = 4\n"
+        )
+    };
+    let (status, results, said) = judge("rate", &claims("rate"));
+    assert_eq!(status, 0, "{said}");
+    let results = results.unwrap();
+    let Study::Order(record) = &results.studies[0].study else { panic!("an order study") };
+    assert_eq!((record.operation.as_str(), record.levels[0].steps), ("rate", None));
+    let control = record.control.as_ref().expect("an upheld claim has a control");
+    assert!(control.smallest_refuted.is_some() && results.verdicts[0].reason.contains("added error of order 3"));
+    let (status, _, said) = judge("no-such-operation", &claims("leap"));
+    assert_eq!(status, 2, "{said}");
+    assert!(said.contains("claims.toml:6") && said.contains("`advance`, `march` and `rate`"), "{said}");
+}

@@ -101,7 +101,8 @@ fn measure(
         }
         before = Some(answer);
         next += 1;
-        if next == rungs.len() && may_grow(request, &rung, begun.elapsed() + 8 * took.elapsed()) {
+        let finite = record.levels.last().is_none_or(|level| level.note.is_none());
+        if next == rungs.len() && finite && may_grow(request, &rung, begun.elapsed() + 8 * took.elapsed()) {
             record.observed = observed(record);
             if enough.is_some_and(|enough| !enough(record)) {
                 rungs.push(ladder::next(request, &rung, steady)?);
