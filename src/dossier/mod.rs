@@ -25,6 +25,7 @@ mod words;
 
 use std::path::{Path, PathBuf};
 
+pub(crate) use clean::visible;
 pub use error::DossierError;
 
 use crate::record::{Results, write_bytes, write_results};
