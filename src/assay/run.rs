@@ -7,6 +7,7 @@ use super::progress::Progress;
 use super::schemes::{Schemes, session_record};
 use super::workers::{Told, side_by_side};
 use crate::claims::Plan;
+use crate::dossier::visible;
 use crate::host::Session;
 use crate::record::{
     FORMAT, Journal, JournalEntry, RecordError, Results, RunRecord, SchemeRecord, Study, StudyRecord, VERSION, Verdict,
@@ -62,7 +63,7 @@ pub fn run(plan: &Plan, manner: Manner<'_>) -> Result<Results, RunError> {
             Told::Begun(index) => {
                 let claim = &plan.claims[index];
                 let what = format!("{}: {}", claim.scheme, words::claim(&claim.kind));
-                manner.progress.tells(taken, plan.claims.len(), &what);
+                manner.progress.tells(taken, plan.claims.len(), &visible(&what));
                 taken += 1;
             }
             Told::Done(entry) => {

@@ -28,6 +28,7 @@ mod words;
 use std::path::{Path, PathBuf};
 
 pub use annotations::annotations;
+pub(crate) use clean::visible;
 pub use error::DossierError;
 pub use page::contrast_page;
 

@@ -14,6 +14,7 @@ mod frames;
 mod guard;
 mod inbox;
 mod library;
+mod log;
 mod plugin_child;
 mod process;
 mod questions;

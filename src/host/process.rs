@@ -6,9 +6,8 @@ use std::os::fd::{AsFd, AsRawFd, OwnedFd};
 use std::os::unix::net::UnixStream;
 use std::os::unix::process::CommandExt;
 use std::path::Path;
-use std::process::{Child, ChildStderr, Command, Stdio};
-use std::sync::{Arc, Mutex, MutexGuard, PoisonError};
-use std::thread::JoinHandle;
+use std::process::{Child, Command, Stdio};
+use std::sync::{Mutex, MutexGuard, PoisonError};
 use std::time::{Duration, Instant};
 
 use rustix::event::{PollFd, PollFlags, Timespec, poll};
@@ -16,8 +15,8 @@ use rustix::process::{Pid, PidfdFlags, pidfd_open};
 
 use super::guard::{self, Orders, Report};
 use super::inbox::Inbox;
+use super::log::Log;
 use super::signals;
-use super::tail::Tail;
 use super::{FaultKind, Limits};
 
 /// Pipes hold 64 KiB by default; a larger one halves the switches between the two processes for large arrays.
@@ -37,8 +36,7 @@ pub(super) struct Process {
     control: UnixStream,
     stdin: Option<OwnedFd>,
     stdout: OwnedFd,
-    tail: Arc<Mutex<Tail>>,
-    stderr_reader: Option<JoinHandle<()>>,
+    log: Log,
     /// What was read and not yet taken.
     inbox: Inbox,
     limits: Limits,
@@ -71,21 +69,19 @@ impl Process {
         let mut guard = spawned.map_err(|reason| not_started(reason, folder))?;
         let stdin = OwnedFd::from(guard.stdin.take().expect("stdin was piped"));
         let stdout = OwnedFd::from(guard.stdout.take().expect("stdout was piped"));
-        let stderr = guard.stderr.take().expect("stderr was piped");
+        let stderr = OwnedFd::from(guard.stderr.take().expect("stderr was piped"));
         for pipe in [&stdin, &stdout] {
             rustix::io::ioctl_fionbio(pipe, true).map_err(system)?;
             // A system that grants less is slower and not wrong.
             let _ = rustix::pipe::fcntl_setpipe_size(pipe, PIPE_SIZE);
         }
-        let tail = Arc::new(Mutex::new(Tail::default()));
-        let stderr_reader = Some(read_stderr(stderr, Arc::clone(&tail)));
+        let log = Log::of(stderr).map_err(system)?;
         let mut process = Self {
             guard,
             control,
             stdin: Some(stdin),
             stdout,
-            tail,
-            stderr_reader,
+            log,
             inbox: Inbox::default(),
             limits,
             deadline: Instant::now(),
@@ -250,15 +246,20 @@ impl Process {
 
     /// Keeps a line of stdout that is no message with the log.
     pub fn log(&self, line: &[u8]) {
-        lock(&self.tail).push(line);
+        self.log.push(line);
     }
 
     pub fn forget_log(&self) {
-        *lock(&self.tail) = Tail::default();
+        self.log.forget();
+    }
+
+    /// What was printed so far belongs to the start of the process.
+    pub fn has_started(&self) {
+        self.log.started();
     }
 
     pub fn stderr_tail(&self) -> String {
-        lock(&self.tail).text()
+        self.log.text()
     }
 
     /// Ends the process and everything that it started: politely by closing its stdin where `polite`, else at once.
@@ -272,9 +273,7 @@ impl Process {
         }
         let _ = self.guard.wait();
         // The guard has ended every process that could hold the other end, so that the reader comes to the end of file.
-        if let Some(reader) = self.stderr_reader.take() {
-            let _ = reader.join();
-        }
+        self.log.close();
     }
 
     /// Whether the guard has left within `patience`. Output that still comes is thrown away: it may be what keeps the scheme.
@@ -306,24 +305,10 @@ impl Process {
 
 impl Drop for Process {
     fn drop(&mut self) {
-        if matches!(self.guard.try_wait(), Ok(None)) || self.stderr_reader.is_some() {
+        if matches!(self.guard.try_wait(), Ok(None)) || self.log.is_open() {
             self.end(true);
         }
     }
-}
-
-fn read_stderr(mut stderr: ChildStderr, tail: Arc<Mutex<Tail>>) -> JoinHandle<()> {
-    std::thread::spawn(move || {
-        let mut buffer = [0u8; 1 << 13];
-        loop {
-            match stderr.read(&mut buffer) {
-                Ok(0) => break,
-                Ok(count) => lock(&tail).push(&buffer[..count]),
-                Err(error) if error.kind() == io::ErrorKind::Interrupted => {}
-                Err(_) => break,
-            }
-        }
-    })
 }
 
 fn lock<T>(mutex: &Mutex<T>) -> MutexGuard<'_, T> {

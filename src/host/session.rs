@@ -293,7 +293,10 @@ fn start(source: &SchemeSource) -> Result<Started, HostError> {
     })?;
     let mut remote = Remote::new(Wire::new(process, form));
     match introduce(source, &mut remote) {
-        Ok((description, flush_to_zero)) => Ok(Started { remote, description, flush_to_zero }),
+        Ok((description, flush_to_zero)) => {
+            remote.wire.process.has_started();
+            Ok(Started { remote, description, flush_to_zero })
+        }
         Err(kind) => Err(fault(source, kind, "start-up", remote)),
     }
 }

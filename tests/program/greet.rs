@@ -41,8 +41,12 @@ fn every_classical_scheme_is_greeted_without_complaint() {
 fn what_is_wrong_is_named_with_its_remedy() {
     // (what is changed in the scheme of the tests, into what, what is said)
     let table = [
-        ("u = read(p[\"state\"][\"u\"])", "u = read(p[\"state\"][\"u\"])[1:]", "15 values"),
-        ("{\"state\": {\"u\": write(u)}}", "{\"state\": {\"w\": write(u)}}", "lacks `u`"),
+        ("read(p[\"state\"][\"u\"]), p", "read(p[\"state\"][\"u\"])[1:], p", "11 values where 12 are needed"),
+        (
+            "{\"state\": {\"u\": write(u)}}",
+            "{\"state\": {\"w\": write(u)}}",
+            "has `w`, which is not asked for; expected: `u`",
+        ),
         (
             "u[j] - (u[j - 1] if j else inflow)",
             "u[j] - (u[j - 1] if j else inflow) + random.random()",
