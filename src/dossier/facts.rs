@@ -344,6 +344,11 @@ fn stability_findings(record: &StabilityRecord, stopped: bool) -> Vec<Fact> {
     if let Some(theta) = record.worst_theta {
         facts.push(fact("Mode that grows first", vec![text("θ = "), Part::Number(theta)]));
     }
+    if let Some(power) = record.growth_at_limit {
+        let parts =
+            vec![text("like the power "), Part::Number(power), text(" of the number of steps: a defective eigenvalue")];
+        facts.push(fact("At the limit itself it grows", parts));
+    }
     if let Some(weak) = record.weak_growth {
         let parts = vec![
             text("max |G| − one = "),

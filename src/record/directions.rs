@@ -19,7 +19,8 @@ pub struct DirectionRecord {
     pub damping_error: f64,
     /// Numerical over exact phase speed; `null` where the exact speed is zero. Near to such directions it says little.
     pub phase_speed_ratio: Option<f64>,
-    /// Numerical less exact phase speed, over the largest exact phase speed of any direction; `null` where nothing moves in any.
+    /// By how much the wave runs faster than the exact one (negative: slower), over the largest exact phase speed of any direction; `null`
+    /// where nothing moves in any.
     pub phase_speed_error: Option<f64>,
     /// Size of the numerical over that of the exact group velocity; `null` for systems, and where the exact one is zero.
     pub group_speed_ratio: Option<f64>,

@@ -47,6 +47,10 @@ pub struct StabilityRecord {
     pub intervals: Vec<[f64; 2]>,
     /// k h of the mode that grows first beyond the limit, where there is a limit.
     pub worst_theta: Option<f64>,
+    /// At the limit itself the powers of G grow like this power of the number of steps: a defective eigenvalue on the unit circle, as of
+    /// leapfrog at Courant number 1. `null`: bounded there, or of one component, which cannot be defective.
+    #[serde(default, skip_serializing_if = "Option::is_none")]
+    pub growth_at_limit: Option<f64>,
     /// How the largest growth rises from zero, where there is no stable step at all.
     pub weak_growth: Option<WeakGrowth>,
     /// A bound that the scheme sets itself by refusing larger steps.

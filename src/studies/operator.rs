@@ -65,7 +65,7 @@ fn measure(
     record.unknowns = matrix.size();
     let deviation = probe.deviation(&matrix, seed)?;
     record.deviation = finite(deviation);
-    if !(deviation <= ALLOWED) {
+    if deviation.is_nan() || deviation > ALLOWED {
         return Err(Stop::Analysis(format!(
             "the scheme is not linear in this case: the answer to a random state deviates from its matrix by {deviation:.1e} of the largest value"
         )));

@@ -92,5 +92,9 @@ fn without_limit(claim: &StabilityClaim, record: &StabilityRecord) -> Judgement 
 }
 
 fn worst(record: &StabilityRecord) -> String {
-    record.worst_theta.map_or_else(String::new, |theta| format!("; beyond it the mode at k h = {theta:.4} grows first"))
+    let at_limit = record.growth_at_limit.map_or_else(String::new, |power| {
+        format!("; at the limit itself that mode grows like the power {power:.1} of the number of steps")
+    });
+    let first = |theta| format!("; beyond it the mode at k h = {theta:.4} grows first{at_limit}");
+    record.worst_theta.map_or_else(String::new, first)
 }

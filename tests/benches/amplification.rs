@@ -1,4 +1,5 @@
-//! What the whole amplification curve of a linear scheme costs, against one step of the scheme plus one FFT. Target: at most twice.
+//! What the whole amplification curve of a linear scheme costs, against one step of the scheme plus one FFT (target: at most twice), and how
+//! that cost grows: n log n from 2^8 to 2^16 cells in one dimension and from 32^2 to 512^2 in two, told as cost / (n log2 n).
 //!
 //! `cargo bench --bench amplification`. Each figure is the least of many repetitions: the machine is shared, and noise only adds.
 
@@ -18,13 +19,17 @@ use rustfft::FftPlanner;
 const REPETITIONS: usize = 400;
 
 /// Seconds of the fastest repetition.
-fn fastest(mut work: impl FnMut()) -> f64 {
+fn fastest(work: impl FnMut()) -> f64 {
+    fastest_of(REPETITIONS, work)
+}
+
+fn fastest_of(repetitions: usize, mut work: impl FnMut()) -> f64 {
     let once = |work: &mut dyn FnMut()| {
         let begun = Instant::now();
         work();
         begun.elapsed().as_secs_f64()
     };
-    (0..REPETITIONS).map(|_| once(&mut work)).fold(f64::INFINITY, f64::min)
+    (0..repetitions).map(|_| once(&mut work)).fold(f64::INFINITY, f64::min)
 }
 
 fn main() {
@@ -37,6 +42,38 @@ fn main() {
             measure(scheme, cells);
         }
     }
+    println!(
+        "\n{:>16} {:>11}  {:>10} {:>10} {:>10}  transform / (n log2 n), ns",
+        "scheme", "cells", "impulse us", "FFT us", "all us"
+    );
+    for power in [8, 10, 12, 14, 16] {
+        grows("lax-wendroff", &[1 << power]);
+    }
+    for side in [32, 64, 128, 256, 512] {
+        grows("lax-wendroff-2d", &[side, side]);
+    }
+}
+
+/// The harness's own part, the transform of the responses, against n log n.
+fn grows(name: &str, cells: &[usize]) {
+    let mut session = Session::in_process(gridassay_classical::scheme(name).expect("a classical scheme"));
+    let numbers = Numbers { courant: Some(0.4), diffusion: None };
+    let setting = Setting::new(&session, "advection", &Parameters::new(), cells, numbers).expect("an offer");
+    let nodes = setting.prepare(&mut session).expect("a case");
+    let cellwise = Cellwise::new(&setting.offer, nodes.as_ref(), cells);
+    let n: usize = cells.iter().product();
+    let repetitions = (40_000_000 / n).clamp(5, REPETITIONS);
+    let impulse = fastest_of(repetitions, || {
+        black_box(impulse::responses(&mut session, &setting, &cellwise).expect("a response"));
+    });
+    let responses = impulse::responses(&mut session, &setting, &cellwise).expect("a response");
+    let transform = fastest_of(repetitions, || {
+        black_box(SampledSymbol::from_responses(&responses));
+    });
+    let per = 1e9 * transform / (n as f64 * (n as f64).log2());
+    let shown = cells.iter().map(ToString::to_string).collect::<Vec<_>>().join(" x ");
+    let all = impulse + transform;
+    println!("{name:>16} {shown:>11}  {:>10.1} {:>10.1} {:>10.1}  {per:.2}", 1e6 * impulse, 1e6 * transform, 1e6 * all);
 }
 
 fn measure(name: &str, cells: usize) {

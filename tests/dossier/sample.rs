@@ -171,6 +171,7 @@ pub fn stability(scheme: &Scheme) -> StabilityRecord {
             Confirmation { number: limit * 0.99, steps: 2000, growth: Some(0.713), agrees: true },
             Confirmation { number: limit * 1.01, steps: 2000, growth: None, agrees: true },
         ],
+        growth_at_limit: None,
         predicted: Vec::new(),
         map: Vec::new(),
     }

@@ -106,7 +106,7 @@ const DIVISIONS: usize = 480;
 /// Halvings below the first division: growth that begins at long waves is seen down to theta of about 1e-6.
 const HALVINGS: usize = 12;
 /// Maxima of the samples that are refined.
-const REFINED: usize = 3;
+const REFINED: usize = 4;
 
 /// The eigenvalues of a rate at all theta in [0, pi]; those of a real scheme at -theta are their conjugates, and grow alike.
 pub struct RateSpectrum {

@@ -37,8 +37,8 @@ pub fn waves(setting: &Setting, exact: &Exact<'_>, stencil: &Stencil) -> Result<
             of_wavelength.extend(Ray { setting, exact, stencil, points, direction: &direction }.waves()?);
         }
         let fastest = of_wavelength.iter().map(|(_, speed, _)| speed.abs()).fold(0.0, f64::max);
-        all.extend(of_wavelength.into_iter().map(|(mut record, _, lead)| {
-            record.phase_speed_error = (fastest > 0.0).then(|| lead / fastest).and_then(finite);
+        all.extend(of_wavelength.into_iter().map(|(mut record, speed, lead)| {
+            record.phase_speed_error = (fastest > 0.0).then(|| lead * speed.signum() / fastest).and_then(finite);
             record
         }));
     }

@@ -5,6 +5,7 @@ use num_complex::Complex64;
 use super::numbers;
 use crate::analysis::eigen::{Excess, modulus_excess, spectral_excess};
 use crate::analysis::matrix::Matrix;
+use crate::analysis::powers::{Powers, powers};
 use crate::analysis::stability::{StencilGrowth, Worst, worst_theta};
 use crate::analysis::symbol::{ImpulseResponses, SampledSymbol, Stencil};
 use crate::claims::StabilityRequest;
@@ -21,8 +22,9 @@ const GRIDS: [usize; 4] = [96, 88, 92, 100];
 /// Cells of the grid on which a response that does not end is tried, where it has not decayed on the first.
 const WIDE: usize = 384;
 
-/// Maxima over a grid that are followed between its wavenumbers.
-const REFINED: usize = 2;
+/// Maxima over a grid that are followed between its wavenumbers: waves that neither grow nor decay, as the longest and the shortest of central
+/// differences, are maxima below the limit too, and must not crowd out the one that grows next.
+const REFINED: usize = 4;
 
 /// Rounding of a stencil's coefficients by the scheme, relative to the largest: a step of several stages sums some dozens of terms.
 const STEP_ROUNDING: f64 = 16.0 * f64::EPSILON;
@@ -146,6 +148,22 @@ impl<'a> Growth<'a> {
         }
     }
 
+    /// The power of n like which the powers of G(theta) grow at `value`, where an eigenvalue on the unit circle is defective.
+    ///
+    /// # Errors
+    /// The scheme failed, or its eigenvalues could not be found.
+    pub fn defect_at(&mut self, value: f64, theta: f64) -> Result<Option<f64>, Stop> {
+        let responses = self.responses(self.cells[0], value)?;
+        let Some(stencil) = Stencil::from_responses(&responses, 0.0).filter(|stencil| stencil.components() > 1) else {
+            return Ok(None);
+        };
+        let found = powers(&stencil.symbol([theta, 0.0, 0.0]), self.noise);
+        match found.map_err(|error| Stop::Analysis(error.to_string()))? {
+            Powers::Defective { power } => Ok(finite(power)),
+            Powers::Bounded { .. } | Powers::Exponential { .. } => Ok(None),
+        }
+    }
+
     fn worst(&mut self, value: f64) -> Result<Worst, Stop> {
         if !self.is_wide {
             let responses = self.responses(self.cells[0], value)?;
@@ -253,7 +271,9 @@ pub(super) fn sampled(symbol: &SampledSymbol, noise: f64) -> Result<Worst, Stop>
 
 /// The worst wavenumber of all: the largest maxima over the grid, followed between its wavenumbers by golden-section search.
 fn refined(symbol: &SampledSymbol, stencil: &Stencil, noise: f64) -> Result<Worst, Stop> {
-    let all = all(symbol, noise)?;
+    // The coefficients are real, so that -theta behaves as theta does.
+    let mut all = all(symbol, noise)?;
+    all.retain(|worst| worst.theta >= 0.0);
     let last = all.len() - 1;
     let mut worst = sampled(symbol, noise)?;
     let is_peak = |i: &usize| {

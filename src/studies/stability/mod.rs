@@ -26,6 +26,7 @@ pub fn run(session: &mut Session, request: &StabilityRequest, seed: u64) -> Made
         scanned_up_to: request.scan_to,
         intervals: Vec::new(),
         worst_theta: None,
+        growth_at_limit: None,
         weak_growth: None,
         refused_from: None,
         by_runs_alone: false,
@@ -101,6 +102,9 @@ fn tell(set: &StableSet, growth: &mut Growth<'_>, record: &mut StabilityRecord) 
             }
             record.stable_up_to = Some(limit);
             record.worst_theta = growth.worst_theta(limit * 1.001)?;
+            if let Some(theta) = record.worst_theta {
+                record.growth_at_limit = growth.defect_at(limit, theta)?;
+            }
         }
         StableRange::NoStableStep { growth } => {
             record.stable_up_to = Some(0.0);
