@@ -265,7 +265,10 @@ mod tests {
         let held = Some(StepSize::DiffusionNumber(0.2));
         for refine in [Refinement::Space, Refinement::SpaceTime] {
             for (expect, time_order) in [(2.0, 4.0), (2.0, 3.0), (4.0, 4.0), (6.0, 4.0), (4.0, 1.0)] {
-                assert!(default_step_power(refine, held, expect, Some(time_order)) >= 2.0, "{refine:?} {expect} {time_order}");
+                assert!(
+                    default_step_power(refine, held, expect, Some(time_order)) >= 2.0,
+                    "{refine:?} {expect} {time_order}"
+                );
             }
         }
         assert_eq!(default_step_power(Refinement::Space, Some(StepSize::Courant(0.4)), 5.0, Some(3.0)), 5.0 / 3.0);

@@ -35,7 +35,15 @@ fn ladder(draw: &mut Draw, least: f64, most: f64) -> Vec<usize> {
     levels.enumerate().filter(|(level, cells)| *level < 4 || *cells <= most).map(|(_, cells)| cells as usize).collect()
 }
 
-fn file(equation: &str, dimensions: usize, extra: &str, solution: &str, lower: f64, length: f64, times: [f64; 2]) -> String {
+fn file(
+    equation: &str,
+    dimensions: usize,
+    extra: &str,
+    solution: &str,
+    lower: f64,
+    length: f64,
+    times: [f64; 2],
+) -> String {
     let corner = |at: f64| vec![format!("{at:.15}"); dimensions].join(", ");
     let periodic = vec!["\"periodic\""; dimensions].join(", ");
     format!(

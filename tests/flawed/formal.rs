@@ -37,10 +37,7 @@ impl Formal {
 fn space_symbols(space: &str) -> (Option<&'static str>, Option<&'static str>) {
     match space {
         "central2" => (Some("i*sin(theta)"), Some("2*(1 - cos(theta))")),
-        "central4" => (
-            Some("i*(8*sin(theta) - sin(2*theta))/6"),
-            Some("(15 - 16*cos(theta) + cos(2*theta))/6"),
-        ),
+        "central4" => (Some("i*(8*sin(theta) - sin(2*theta))/6"), Some("(15 - 16*cos(theta) + cos(2*theta))/6")),
         "central6" => (
             Some("i*(45*sin(theta) - 9*sin(2*theta) + sin(3*theta))/30"),
             Some("(49/18 - 3*cos(theta) + 3/10*cos(2*theta) - 1/45*cos(3*theta))"),
@@ -56,7 +53,9 @@ fn space_symbols(space: &str) -> (Option<&'static str>, Option<&'static str>) {
         "upwind2" => (Some("(3 - 4*exp(-i*theta) + exp(-2*i*theta))/2"), None),
         "upwind3" => (Some("(2*exp(i*theta) + 3 - 6*exp(-i*theta) + exp(-2*i*theta))/6"), None),
         "upwind5" => (
-            Some("(-3*exp(2*i*theta) + 30*exp(i*theta) + 20 - 60*exp(-i*theta) + 15*exp(-2*i*theta) - 2*exp(-3*i*theta))/60"),
+            Some(
+                "(-3*exp(2*i*theta) + 30*exp(i*theta) + 20 - 60*exp(-i*theta) + 15*exp(-2*i*theta) - 2*exp(-3*i*theta))/60",
+            ),
             None,
         ),
         _ => (None, None),
@@ -120,8 +119,16 @@ pub fn formal(name: &'static str) -> Formal {
         lines: one_step.is_none(),
         implicit: name.contains("crank-nicolson") || name.contains("implicit"),
         limited: name.starts_with("muscl") || name.contains("-muscl"),
-        monotone: ["upwind", "lax-friedrichs", "upwind1-rk1", "explicit-euler-diffusion", "implicit-euler-diffusion", "upwind-2d", "diffusion-2d"]
-            .contains(&name)
+        monotone: [
+            "upwind",
+            "lax-friedrichs",
+            "upwind1-rk1",
+            "explicit-euler-diffusion",
+            "implicit-euler-diffusion",
+            "upwind-2d",
+            "diffusion-2d",
+        ]
+        .contains(&name)
             || name.starts_with("muscl")
             || name.starts_with("burgers-g")
             || name.starts_with("burgers-l"),
@@ -161,7 +168,12 @@ fn orders_by_name(name: &str) -> (f64, f64) {
         _ => 2.0,
     };
     match name {
-        "burgers-godunov" | "burgers-lax-friedrichs" | "euler-rusanov" | "acoustics-upwind" | "upwind-2d" | "upwind-3d" => (1.0, 1.0),
+        "burgers-godunov"
+        | "burgers-lax-friedrichs"
+        | "euler-rusanov"
+        | "acoustics-upwind"
+        | "upwind-2d"
+        | "upwind-3d" => (1.0, 1.0),
         "dg-p1" => (2.0, 2.0),
         "dg-p2" => (3.0, 3.0),
         "dg-p3" => (4.0, 4.0),

@@ -76,14 +76,14 @@ pub fn steady(equation: &str, walls: Walls) -> String {
         "diffusion" => "diffusivity = 0.6",
         _ => "velocity = [0.8]\ndiffusivity = 0.6",
     };
-    between_walls(equation, parameters, walls, "4 + sin(2.3*x + 0.7) + exp(0.5*x)", "steady = true")
+    between_walls(equation, parameters, walls, "20 + sin(2.3*x + 0.7) + exp(0.5*x)", "steady = true")
 }
 
 /// A rarefaction from -1 to 2 that starts at 0.8, through the sonic point, and a shock back to -1 that starts at 1.6 (speed 1/2).
 pub fn burgers_jumps() -> String {
     "name = \"own\"\ntitle = \"own\"\nreference = \"own\"\nequation = \"burgers\"\ndimensions = 1\n\
      [parameters]\nviscosity = 0\n[solution]\nu = \"if(x < 1.6 + 0.5*t, max(-1, min(2, (x - 0.8)/t)), -1)\"\n\
-     [domain]\nlower = [0.3]\nupper = [2.0]\nboundaries = [\"periodic\"]\n[time]\nstart = 0.03\nfinal = 0.19\n\
+     [domain]\nlower = [0.3]\nupper = [2.0]\nboundaries = [\"periodic\"]\n[time]\nstart = 1e-6\nfinal = 0.19\n\
      [breaks]\nx = [\"0.8 - t\", \"0.8 + 2*t\", \"1.6 + 0.5*t\"]\n"
         .to_owned()
 }

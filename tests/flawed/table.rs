@@ -17,7 +17,13 @@ const OBSERVED: [(&str, &str, f64, f64, &str); 4] = [
     ("weno5-ssprk3", "two-waves", 3.9, 5.5, WEIGHTS),
     ("weno5-rk4", "two-waves", 3.9, 5.5, WEIGHTS),
     ("weno5-jiang-shu-rk4", "two-waves", 3.9, 5.5, WEIGHTS),
-    ("dg-p1", "travelling-gaussian", 1.9, 3.1, "the error at the nodes falls at third order until the projection's own error of second order rules"),
+    (
+        "dg-p1",
+        "travelling-gaussian",
+        1.9,
+        3.1,
+        "the error at the nodes falls at third order until the projection's own error of second order rules",
+    ),
 ];
 
 const WEIGHTS: &str = "the weights still feel near-critical points of the second wave (Henrick, Aslam & Powers 2005)";
@@ -161,4 +167,26 @@ pub const REFUTED: &[(&str, &str, &str)] = &[
     ("first-courant-number-kept", "invariants-advection", "at cell 7"),
     ("every-tenth-step-halved", "invariants-advection", "at cell 7"),
     ("negative-values-clipped", "invariants-advection", "at cell 6"),
+    ("crank-nicolson-diffusion-gradient-along-x", "order-diffusion-gradient-below", "all below"),
+    ("central4-first-order-closure", "order-walls", "tends to 2.8"),
+    ("central6-low-order-closure", "order-diffusion-values", "all below"),
+    ("pade4-average-of-an-eighth", "order-diffusion", "all below"),
+    ("pade4-wall-row-beta", "order-walls", "tends to 2.1"),
+    ("rk4-source-times", "order-diffusion-values", "all below"),
+    ("rk4-source-at-the-start", "order-diffusion-values", "all below"),
+    ("rk4-source-doubled", "order-diffusion-values", "all below"),
+    ("rk4-walls-at-stage-times", "order-walls-both", "all below"),
+    ("rk4-walls-at-the-start", "order-diffusion-values", "all below"),
+    ("central2-walls-exchanged-sign", "order-walls", "all below"),
+    ("diffusion-2d-transposed-source", "order-diffusion-source", "all below"),
+    ("euler-viscosity-without-sound", "order-euler-waves", "errors grow"),
+    ("burgers-no-sonic-point", "order-burgers-jumps", "all below"),
+    ("poisson-inward-gradient", "order-steady-poisson-gradient-below", "all below"),
 ];
+
+/// Exposed by its own crate's tests, but refuted by no standard claim yet, and why: the claim named here must stay undecided.
+pub const NOT_YET: [(&str, &str, &str); 1] = [(
+    "pade4-wall-row-sign",
+    "order-walls-both",
+    "grows between walls: the order's run blows up, which is no order, and stability is claimed on periodic grids alone",
+)];

@@ -185,7 +185,9 @@ impl Reason {
     pub fn remedy(&self) -> Option<&'static str> {
         match self {
             Reason::BadClaim { .. } => Some("state a positive order and a positive tolerance"),
-            Reason::Failed { .. } => Some("a smaller step (a study of stability tells the largest), or finding out why this level failed"),
+            Reason::Failed { .. } => {
+                Some("a smaller step (a study of stability tells the largest), or finding out why this level failed")
+            }
             Reason::Exact => {
                 Some("choose a problem that the scheme cannot solve exactly, with more terms or generic wavelengths")
             }
