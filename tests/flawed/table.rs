@@ -88,11 +88,11 @@ pub const REFUTED: &[(&str, &str, &str)] = &[
     ("explicit-diffusion-single-precision", "modes-diffusion", "the coefficient of the neighbour at offset 0"),
     ("explicit-diffusion-seam-off-by-one", "invariants-diffusion", "at cell 36"),
     ("crank-nicolson-diffusion-one-per-cent", "order-diffusion-values", "all below"),
-    ("crank-nicolson-diffusion-implicit", "order-diffusion", "tends to 0.8"),
+    ("crank-nicolson-diffusion-implicit", "order-diffusion-values-time", "all below"),
     ("crank-nicolson-diffusion-part-typed-wrong", "order-diffusion-values-time", "tends to 1.0"),
-    ("crank-nicolson-diffusion-late-walls", "order-diffusion-values", "tends to 0.9"),
-    ("crank-nicolson-diffusion-walls-at-half-step", "order-diffusion-values", "tends to 0.9"),
-    ("crank-nicolson-diffusion-old-source", "order-diffusion-values", "tends to 0.9"),
+    ("crank-nicolson-diffusion-late-walls", "order-diffusion-values-time", "all below"),
+    ("crank-nicolson-diffusion-walls-at-half-step", "order-diffusion-values-time", "all below"),
+    ("crank-nicolson-diffusion-old-source", "order-diffusion-values-time", "all below"),
     ("crank-nicolson-diffusion-source-sign", "order-diffusion-values", "all below"),
     ("crank-nicolson-diffusion-shifted-source", "order-diffusion-values", "tends to 0.9"),
     ("crank-nicolson-diffusion-inward-gradient", "order-diffusion-gradient-above", "all below"),
@@ -119,9 +119,9 @@ pub const REFUTED: &[(&str, &str, &str)] = &[
     ("upwind3-exchanged-weights", "modes-advection", "the coefficient of the neighbour at offset -1"),
     ("upwind5-typed-weight", "modes-advection", "the coefficient of the neighbour at offset 0"),
     ("upwind5-absolute-velocity", "invariants-advection", "at cell 18"),
-    ("weno5-reversed-linear-weights", "order-advection-space", "tends to 2.8"),
+    ("weno5-reversed-linear-weights", "order-advection-space", "all below"),
     ("weno5-equal-linear-weights", "order-advection-space", "all below"),
-    ("weno5-duplicate-index", "order-advection-space", "tends to 1.6"),
+    ("weno5-duplicate-index", "order-advection-space", "all below"),
     ("muscl-slope-not-halved", "invariants-advection", "at cell 36"),
     ("muscl-slope-zero", "order-advection-space", "tends to 1.0"),
     ("muscl-minmod-takes-the-larger", "invariants-advection", "at cell 16"),
@@ -162,7 +162,7 @@ pub const REFUTED: &[(&str, &str, &str)] = &[
     ("boundary-layer-velocity-halved", "modes-advection", "the coefficient of the neighbour at offset -1"),
     ("one-step-too-many", "modes-advection", "the coefficient of the neighbour at offset -1"),
     ("one-step-too-few", "invariants-advection", "at cell 19"),
-    ("step-clipped", "order-advection", "all below"),
+    ("step-clipped", "stability-advection", ""),
     ("single-precision-state", "invariants-advection", "at cell 28"),
     ("first-courant-number-kept", "invariants-advection", "at cell 7"),
     ("every-tenth-step-halved", "invariants-advection", "at cell 7"),
@@ -180,13 +180,19 @@ pub const REFUTED: &[(&str, &str, &str)] = &[
     ("central2-walls-exchanged-sign", "order-walls", "all below"),
     ("diffusion-2d-transposed-source", "order-diffusion-source", "all below"),
     ("euler-viscosity-without-sound", "order-euler-waves", "errors grow"),
-    ("burgers-no-sonic-point", "order-burgers-jumps", "all below"),
     ("poisson-inward-gradient", "order-steady-poisson-gradient-below", "all below"),
 ];
 
 /// Exposed by its own crate's tests, but refuted by no standard claim yet, and why: the claim named here must stay undecided.
-pub const NOT_YET: [(&str, &str, &str); 1] = [(
-    "pade4-wall-row-sign",
-    "order-walls-both",
-    "grows between walls: the order's run blows up, which is no order, and stability is claimed on periodic grids alone",
-)];
+pub const NOT_YET: [(&str, &str, &str); 2] = [
+    (
+        "burgers-no-sonic-point",
+        "order-burgers-jumps",
+        "the standing jump grows out of a smooth fan, and the slopes have not settled on this ladder",
+    ),
+    (
+        "pade4-wall-row-sign",
+        "order-walls-both",
+        "grows between walls: the order's run blows up, which is no order, and stability is claimed on periodic grids alone",
+    ),
+];
