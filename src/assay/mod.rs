@@ -9,6 +9,8 @@ mod run;
 pub mod schemes;
 mod workers;
 
-pub use attempt::{Attempt, Place, attempt_invariants, attempt_modes, attempt_order, attempt_stability};
+pub use attempt::{
+    Attempt, Place, attempt_invariants, attempt_modes, attempt_operator, attempt_order, attempt_stability,
+};
 pub use expect::{Expectation, expect};
 pub use run::{Manner, RunError, of_table, run, single};

@@ -15,7 +15,9 @@ mod table;
 
 use std::collections::BTreeMap;
 
-use gridassay::assay::{Attempt, Place, attempt_invariants, attempt_modes, attempt_order, attempt_stability};
+use gridassay::assay::{
+    Attempt, Place, attempt_invariants, attempt_modes, attempt_operator, attempt_order, attempt_stability,
+};
 use gridassay::claims::ClaimKind;
 use gridassay::host::Session;
 use gridassay::record::Verdict;
@@ -33,6 +35,7 @@ fn attempt(scheme: Box<dyn Scheme>, claim: &ClaimKind) -> Attempt {
         ClaimKind::Modes(claim) => attempt_modes(&mut session, claim, place),
         ClaimKind::Stability(claim) => attempt_stability(&mut session, claim, place),
         ClaimKind::Invariants(claim) => attempt_invariants(&mut session, claim, place),
+        ClaimKind::Operator(claim) => attempt_operator(&mut session, claim, place),
     }
 }
 
