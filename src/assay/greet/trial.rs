@@ -1,5 +1,6 @@
 //! One combination tried: an answer, the same answer again, the questions that belong to it.
 
+use gridassay_scheme::conversation::MessageError;
 use gridassay_scheme::{Advance, BoundaryKind, Fields, March, NoCallbacks, Operation, SchemeError};
 
 use super::Step;
@@ -176,6 +177,9 @@ fn explained(combination: &Combination, error: &HostError) -> Step {
 
 fn mend(kind: &FaultKind) -> &'static str {
     match kind {
+        FaultKind::Message(MessageError::WrongLength { .. }) => {
+            "answer as many values of each field as the question holds; where cells meet, periodic ends count once"
+        }
         FaultKind::Message(_) => {
             "compare the answer with the page on the conversation: gridassay starter conversation DIR"
         }

@@ -85,7 +85,9 @@ mod tests {
             let path = entry.path();
             match path.is_dir() {
                 true => found(folder, &path, into),
-                false => drop(into.insert(path.strip_prefix(folder).unwrap().to_str().unwrap().to_owned())),
+                false => {
+                    into.insert(path.strip_prefix(folder).unwrap().to_str().unwrap().to_owned());
+                }
             }
         }
     }
