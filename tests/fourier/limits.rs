@@ -7,8 +7,9 @@ use std::f64::consts::FRAC_PI_2;
 
 use gridassay::expect;
 use gridassay_classical::advection_diffusion::central::CentralSpace;
+use gridassay_classical::numerics::method_of_lines::MethodOfLines;
 use gridassay_classical::numerics::runge_kutta::RK2;
-use gridassay_classical::registry::with_runge_kutta;
+use gridassay_classical::one_step::Repeated;
 
 use super::common::{agree, classical, stability_of};
 
@@ -56,8 +57,8 @@ fn central_and_compact_differences_with_runge_kutta_methods() {
 /// |R(iy)| = 1 + y^4 / 8: there is no stable step, and any tolerance would make up a limit.
 #[test]
 fn second_order_runge_kutta_with_central_differences_has_no_stable_step() {
-    let scheme = || with_runge_kutta(CentralSpace::second_order(), RK2);
-    let record = stability_of(scheme(), "advection", 4.0);
+    let scheme = || Repeated::new(MethodOfLines::new(CentralSpace::second_order(), RK2));
+    let record = stability_of(Box::new(scheme()), "advection", 4.0);
     assert_eq!(record.stable_up_to, Some(0.0));
     let weak = record.weak_growth.unwrap();
     agree("power", weak.power, 4.0, 0.01);
