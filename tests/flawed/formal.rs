@@ -71,9 +71,12 @@ fn runge_kutta(stages: u32, number: &str, factor: &str) -> String {
 const LAX_WENDROFF: &str = "1 - i*c*sin(theta) - c^2*(1 - cos(theta))";
 const BEAM_WARMING: &str = "1 - c/2*(3 - 4*exp(-i*theta) + exp(-2*i*theta)) + c^2/2*(1 - exp(-i*theta))^2";
 
-/// Name, order in space, order in time, symbol and largest stable Courant or diffusion number of the schemes that take space and time in one.
+/// Name, order in space, order in time, symbol, and the largest stable Courant or diffusion number with whether it is exact.
+type OneStep = (&'static str, f64, f64, &'static str, (f64, bool));
+
+/// The schemes that take space and time in one.
 #[rustfmt::skip]
-const ONE_STEP: [(&str, f64, f64, &str, (f64, bool)); 13] = [
+const ONE_STEP: [OneStep; 13] = [
     ("upwind", 1.0, 1.0, "1 - c*(1 - exp(-i*theta))", (1.0, true)),
     ("lax-friedrichs", 1.0, 1.0, "cos(theta) - i*c*sin(theta)", (1.0, true)),
     ("lax-wendroff", 2.0, 2.0, LAX_WENDROFF, (1.0, true)),

@@ -94,18 +94,18 @@ mod tests {
 
     #[test]
     fn values_along_a_side_land_on_that_side() {
-        let along = |n: usize| (0..n).map(|i| i as f64).collect::<Vec<_>>();
-        let axes = vec![along(3), along(2), along(4)];
+        let counted = |n: usize| (0..n).map(|i| i as f64).collect::<Vec<_>>();
+        let axes = vec![counted(3), counted(2), counted(4)];
         let layout = FieldLayout { axes: axes.clone(), lower: axes.clone(), upper: axes.clone(), widths: axes };
         let points = layout.points();
-        for axis in 0..3 {
+        for (axis, along) in points.iter().enumerate() {
             for upper in [false, true] {
                 let end = if upper { layout.axes[axis].len() - 1 } else { 0 } as f64;
                 let mut field = vec![0.0; 24];
                 let values = vec![1.0; 24 / layout.axes[axis].len()];
                 set_side(&layout, axis, upper, &values, &mut field);
                 for (index, value) in field.iter().enumerate() {
-                    assert_eq!(*value == 1.0, points[axis][index] == end, "axis {axis}, upper {upper}, value {index}");
+                    assert_eq!(*value == 1.0, along[index] == end, "axis {axis}, upper {upper}, value {index}");
                 }
             }
         }
