@@ -1,7 +1,7 @@
 //! What the person claims: reads a claims file into a plan.
 //!
 //! A claims file is TOML. It names one scheme (`[scheme]`) or several (`[schemes.NAME]`) and then states claims, each in a table of its own:
-//! `[[order]]`, `[[modes]]`, `[[stability]]` and `[[invariants]]`. Unknown keys are errors. The keys are documented on the types of [`file`].
+//! `[[order]]`, `[[modes]]`, `[[stability]]`, `[[invariants]]` and `[[operator]]`. Unknown keys are errors. The keys are documented on the types of [`mod@file`].
 
 mod entries;
 pub mod file;

@@ -1,7 +1,7 @@
 //! Results as pages, figures, tables and files for machines.
 //!
 //! Data flows one way: every number that an output shows is an f64 of the results, only rounded for reading. Each output is one file in
-//! this folder behind [`Exporter`]; `chart` holds the charts as data, `table` the tables, `facts` the sentences that several outputs share.
+//! this folder behind `Exporter`; `chart` holds the charts as data, `table` the tables, `facts` the sentences that several outputs share.
 
 mod annotations;
 mod chart;
